@@ -151,6 +151,18 @@ class TableReadTest {
         }
 
         @Test
+        void read_asText_keepsIdentifiersAsWritten() throws IOException {
+            Path path = file("faults.csv", "vehicle,n\n007,1\n12345678901234567890,2\n");
+            Table table = Table.read(path.toString(), Columns.asText("vehicle"));
+
+            assertThat(((TextColumn) table.column("vehicle")).levels()).containsExactly("007", "12345678901234567890");
+            assertThat(table.column("n")).isInstanceOf(NumberColumn.class);
+            assertThatIllegalArgumentException()
+                    .isThrownBy(() -> Table.read(path.toString(), Columns.asText("vehicel")))
+                    .withMessageContainingAll("'vehicel'", "faults.csv", "Did you mean 'vehicle'?");
+        }
+
+        @Test
         void read_packedAndTabbedFiles() throws IOException {
             Path packed = folder.resolve("packed.csv.gz");
             try (OutputStream out = new GZIPOutputStream(Files.newOutputStream(packed))) {
@@ -228,7 +240,7 @@ class TableReadTest {
         @Test
         void read_integersTooLong_namesColumnRowAndValue() throws IOException {
             assertRefused("faults.csv", "id,n\n1,1\n9007199254740993,2\n")
-                    .withMessageContainingAll("'id'", "faults.csv", "row 2", "9007199254740993", "as text");
+                    .withMessageContainingAll("'id'", "faults.csv", "row 2", "9007199254740993", "asText(\"id\")");
             assertRefused("faults.csv", "id\n12345678901234567890123\n").withMessageContaining("row 1");
             assertRefused("faults.json", "[{\"id\": 9007199254740993}]").withMessageContaining("9007199254740993");
         }
