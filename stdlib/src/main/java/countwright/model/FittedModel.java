@@ -40,130 +40,130 @@ public final class FittedModel implements Displayable {
 
     /** Returns the counts, one for each row used. */
     public double[] counts() {
-        throw pending();
+        return pending();
     }
 
     /** Returns the exposures, one for each row used; all 1 where the model has no exposure. */
     public double[] exposures() {
-        throw pending();
+        return pending();
     }
 
     /** Returns the confidence level of intervals, 0.95 unless chosen. */
     public double level() {
-        throw pending();
+        return pending();
     }
 
     /** Returns the same fit with intervals of another confidence level, above 0 and below 1. */
     public FittedModel at(double newLevel) {
-        throw pending();
+        return pending();
     }
 
     /** Returns the rate ratios, in the order of the terms. */
     public List<RateRatio> rateRatios() {
-        throw pending();
+        return pending();
     }
 
     /** Returns the coefficients on the log scale: the baseline first, then in the order of the terms. */
     public List<Coefficient> coefficients() {
-        throw pending();
+        return pending();
     }
 
     /** Returns the coefficient of a name. */
     public Coefficient coefficient(String name) {
-        throw pending();
+        return pending();
     }
 
     /** Returns the log-scale coefficients with their standard errors, to be shown. */
     public Grid coefficientTable() {
-        throw pending();
+        return pending();
     }
 
     /** Returns the covariance matrix of the coefficients. */
     public Covariance covariance() {
-        throw pending();
+        return pending();
     }
 
     /** Returns the maximised log-likelihood, complete with every constant. */
     public double logLikelihood() {
-        throw pending();
+        return pending();
     }
 
     /** Returns the deviance: twice the log-likelihood by which a perfect fit would be better. */
     public double deviance() {
-        throw pending();
+        return pending();
     }
 
     /** Returns the deviance of the model with a baseline rate only and the same exposure and offset. */
     public double nullDeviance() {
-        throw pending();
+        return pending();
     }
 
     /** Returns the rows used less the coefficients estimated. */
     public int residualDegreesOfFreedom() {
-        throw pending();
+        return pending();
     }
 
     /** Returns the sum of squared Pearson residuals. */
     public double pearsonChiSquare() {
-        throw pending();
+        return pending();
     }
 
     /** Returns the Pearson chi-square divided by the residual degrees of freedom; near 1 if the variance is right. */
     public double dispersion() {
-        throw pending();
+        return pending();
     }
 
     /** Returns Akaike's criterion, {@code -2 logLikelihood + 2 k}. */
     public double aic() {
-        throw pending();
+        return pending();
     }
 
     /** Returns Schwarz's criterion, {@code -2 logLikelihood + k log(n)}. */
     public double bic() {
-        throw pending();
+        return pending();
     }
 
     /** Returns the fitted mean counts, one for each row used. */
     public double[] fittedMeans() {
-        throw pending();
+        return pending();
     }
 
     /** Returns the fitted rates: mean counts per unit of exposure, one for each row used. */
     public double[] fittedRates() {
-        throw pending();
+        return pending();
     }
 
     /** Returns the residuals of a kind, one for each row used. */
     public double[] residuals(Residual kind) {
-        throw pending();
+        return pending();
     }
 
     /** Returns the leverages, each between 0 and 1, that sum to the number of coefficients. */
     public double[] leverage() {
-        throw pending();
+        return pending();
     }
 
     /** Returns Cook's distances, one for each row used. */
     public double[] cooksDistance() {
-        throw pending();
+        return pending();
     }
 
     /** Returns predictions for the rows of a table, which needs the columns of the terms and, if it has it, the exposure. */
     public Predictions predict(Table scenarios) {
-        throw pending();
+        return pending();
     }
 
     /** Returns what the reader should know about the fit: rows left out, columns dropped, doubtful estimates. */
     public List<String> notices() {
-        throw pending();
+        return pending();
     }
 
     @Override
     public MimeBundle display() {
-        throw pending();
+        return pending();
     }
 
-    private static UnsupportedOperationException pending() {
-        return new UnsupportedOperationException("not there yet");
+    private static <T> T pending() {
+        throw new UnsupportedOperationException("not there yet");
     }
 }
