@@ -163,6 +163,7 @@ public final class FittedModel implements Displayable {
         return pending();
     }
 
+    @SuppressWarnings("TypeParameterUnusedInFormals")
     private static <T> T pending() {
         throw new UnsupportedOperationException("not there yet");
     }
