@@ -55,7 +55,8 @@ class FittedModelPropertyTest {
     void leverage_sumsToTheNumberOfCoefficients() {
         double[] leverage = fitted.leverage();
         assertDigits(fitted.coefficients().size(), Arrays.stream(leverage).sum(), 12);
-        assertThat(Arrays.stream(leverage).boxed()).allSatisfy(h -> assertThat(h).isBetween(0.0, 1.0));
+        assertThat(Arrays.stream(leverage).boxed())
+                .allSatisfy(h -> assertThat(h).isBetween(0.0, 1.0));
     }
 
     @Test

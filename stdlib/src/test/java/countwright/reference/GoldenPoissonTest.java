@@ -151,7 +151,7 @@ class GoldenPoissonTest {
     private static int place(String key, List<String> ours) {
         String start = switch (key) {
             case "(Intercept)" -> "baseline";
-            case "agecat^2" -> "agecat (per 1) × agecat";
+            case "agecat^2" -> "agecat² (";
             case "smoker[yes]:agecat" -> "smoker yes vs no × agecat";
             case "treatment[progabide]:log(base/4)" -> "treatment progabide vs placebo × logBase";
             case "log(base/4)" -> "logBase (";
