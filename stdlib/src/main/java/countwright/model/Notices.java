@@ -32,7 +32,7 @@ final class Notices {
         if (!unbounded.isEmpty()) {
             notices.add("No finite estimate, because there is not one event in its rows: " + list(unbounded)
                     + ". Its rate is estimated as 0; merge the level with another, leave it out, or give an exact upper limit"
-                    + " for its rate. The other estimates are not affected.");
+                    + " for its rate.");
         }
         List<String> aliased = named(fit, ColumnState.ALIASED);
         if (!aliased.isEmpty()) {
