@@ -106,7 +106,9 @@ public final class Predictions implements Displayable {
                 .orElse(1);
         RateUnit unit = RateUnit.fitting(typical, spec.exposure());
         List<String> shown = shownColumns(expected);
-        Grid grid = Grid.titled("Predicted " + spec.response()).numberColumn("row");
+        String caption = "Predicted " + spec.response()
+                + (spec.exposure().isPresent() ? ", with the " + unit.label("").strip() : "");
+        Grid grid = Grid.titled(caption).numberColumn("row");
         for (String name : shown) {
             grid = table.column(name).kind().equals("numbers") ? grid.numberColumn(name) : grid.textColumn(name);
         }
@@ -114,7 +116,7 @@ public final class Predictions implements Displayable {
         if (expected) {
             grid = grid.numberColumn("expected " + spec.response()).numberColumn(interval);
         }
-        grid = grid.numberColumn(spec.exposure().isPresent() ? unit.label("").strip() : "expected " + spec.response())
+        grid = grid.numberColumn(spec.exposure().isPresent() ? "rate" : "expected " + spec.response())
                 .numberColumn(interval);
         List<List<String>> lines = new ArrayList<>();
         for (Prediction prediction : predictions) {

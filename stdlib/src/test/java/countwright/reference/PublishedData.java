@@ -102,10 +102,10 @@ public final class PublishedData {
 
     private static Table births() {
         Table births = table("births");
-        births = with(births, "sin1", row -> Math.sin(2 * Math.PI * row.index() / 365.25));
-        births = with(births, "cos1", row -> Math.cos(2 * Math.PI * row.index() / 365.25));
-        births = with(births, "sin2", row -> Math.sin(4 * Math.PI * row.index() / 365.25));
-        births = with(births, "cos2", row -> Math.cos(4 * Math.PI * row.index() / 365.25));
+        births = with(births, "sin1", row -> StrictMath.sin(2 * Math.PI * row.index() / 365.25));
+        births = with(births, "cos1", row -> StrictMath.cos(2 * Math.PI * row.index() / 365.25));
+        births = with(births, "sin2", row -> StrictMath.sin(4 * Math.PI * row.index() / 365.25));
+        births = with(births, "cos2", row -> StrictMath.cos(4 * Math.PI * row.index() / 365.25));
         return with(births, "sinceYear", row -> row.number("year") - 2000);
     }
 
