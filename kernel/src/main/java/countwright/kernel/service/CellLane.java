@@ -5,6 +5,7 @@ import countwright.kernel.wire.KernelSockets;
 import java.time.Duration;
 import java.util.ArrayList;
 import java.util.List;
+import java.util.Optional;
 import java.util.concurrent.BlockingQueue;
 import java.util.concurrent.CountDownLatch;
 import java.util.concurrent.LinkedBlockingQueue;
@@ -21,7 +22,10 @@ final class CellLane {
     private final KernelSockets sockets;
     private final Outbox outbox;
     private final SafeAnswer execute;
-    private final BlockingQueue<Request> waiting = new LinkedBlockingQueue<>();
+
+    /** What waits; an empty element only wakes the thread, to see that the lane is closed. */
+    private final BlockingQueue<Optional<Request>> waiting = new LinkedBlockingQueue<>();
+
     private final Thread thread;
     private volatile boolean closed;
 
@@ -38,13 +42,14 @@ final class CellLane {
     }
 
     void add(Request request) {
-        waiting.add(request);
+        waiting.add(Optional.of(request));
     }
 
     /** Aborts what waits and ends once the running cell has ended, waiting for that no longer than given. */
     void close(Duration patience) throws InterruptedException {
         closed = true;
-        abortWaiting();
+        takeWaiting().forEach(this::abort);
+        waiting.add(Optional.empty());
         thread.join(patience.toMillis());
         thread.interrupt();
     }
@@ -52,9 +57,9 @@ final class CellLane {
     private void run() {
         try {
             while (!closed) {
-                Request request = waiting.poll(1, TimeUnit.HOURS);
-                if (request != null) {
-                    runCell(request);
+                Optional<Request> next = waiting.take();
+                if (next.isPresent()) {
+                    runCell(next.get());
                 }
             }
         } catch (InterruptedException e) {
@@ -65,24 +70,18 @@ final class CellLane {
 
     private void runCell(Request request) throws InterruptedException {
         outbox.cellBusy(request.header());
-        boolean abortOthers = false;
+        List<Request> aborted = List.of();
         try {
             ObjectNode reply = execute.answer(request).orElseGet(Replies::ok);
-            abortOthers = reply.path("status").stringValue("").equals("error") && stopsOnError(request);
-            if (abortOthers) {
+            if (reply.path("status").stringValue("").equals("error") && stopsOnError(request)) {
                 // Before the reply goes out: what is sent in answer to it is a new beginning and must not be aborted.
-                List<Request> aborted = takeAllSent();
-                outbox.reply(request, reply);
-                outbox.cellIdle(request.header());
-                aborted.forEach(this::abort);
-            } else {
-                outbox.reply(request, reply);
+                aborted = takeAllSent();
             }
+            outbox.reply(request, reply);
         } finally {
-            if (!abortOthers) {
-                outbox.cellIdle(request.header());
-            }
+            outbox.cellIdle(request.header());
         }
+        aborted.forEach(this::abort);
     }
 
     private static boolean stopsOnError(Request request) {
@@ -98,15 +97,13 @@ final class CellLane {
         CountDownLatch delivered = new CountDownLatch(1);
         sockets.whenAllIsDelivered(Channel.SHELL, delivered::countDown);
         delivered.await(1, TimeUnit.SECONDS);
-        List<Request> taken = new ArrayList<>();
-        waiting.drainTo(taken);
-        return taken;
+        return takeWaiting();
     }
 
-    private void abortWaiting() {
-        List<Request> taken = new ArrayList<>();
+    private List<Request> takeWaiting() {
+        List<Optional<Request>> taken = new ArrayList<>();
         waiting.drainTo(taken);
-        taken.forEach(this::abort);
+        return taken.stream().flatMap(Optional::stream).toList();
     }
 
     private void abort(Request request) {
