@@ -83,7 +83,7 @@ public final class HtmlReport {
                 </head>
                 <body>
                 <div class="page%s">
-                %s<main id="report">
+                %s%s<main id="report">
                 %s%s</main>
                 %s</div>
                 </body>
@@ -93,10 +93,24 @@ public final class HtmlReport {
                         SafeHtml.escape(title),
                         style(),
                         contentsWorthwhile(headings) ? " has-contents" : "",
+                        heading(body),
                         contents(headings),
                         stopped(),
                         body,
                         footer());
+    }
+
+    /** Takes a title at the very top out of the body, so that the list of contents can stand below it. */
+    private static String heading(StringBuilder body) {
+        String opening = "<section class=\"prose\">\n";
+        int end = body.indexOf("</h1>");
+        if (end < 0 || body.indexOf(opening + "<h1") != 0) {
+            return "";
+        }
+        int afterTitle = end + "</h1>".length();
+        String title = body.substring(opening.length(), afterTitle);
+        body.delete(opening.length(), afterTitle);
+        return "<header>\n" + title + "\n</header>\n";
     }
 
     private String code(Cell.Code cell, int number) {
