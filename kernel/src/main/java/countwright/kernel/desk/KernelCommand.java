@@ -58,6 +58,11 @@ public final class KernelCommand {
         return Optional.ofNullable(System.getProperty(HOME_PROPERTY)).map(Path::of);
     }
 
+    /** Returns a command of these words. */
+    static KernelCommand of(List<String> template) {
+        return new KernelCommand(template);
+    }
+
     private static KernelCommand ofRunningJava(Optional<Path> home) {
         List<String> command = new ArrayList<>();
         command.add(Path.of(System.getProperty("java.home"), "bin", "java").toString());

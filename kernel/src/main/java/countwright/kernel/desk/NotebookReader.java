@@ -24,7 +24,8 @@ final class NotebookReader {
     private static final JsonMapper JSON = JsonMapper.builder().build();
 
     private final String name;
-    private final Set<String> idsSeen = new HashSet<>();
+    private final Set<String> idsGiven = new HashSet<>();
+    private final Set<String> idsUsed = new HashSet<>();
 
     NotebookReader(String name) {
         this.name = name;
@@ -44,6 +45,7 @@ final class NotebookReader {
         if (!cells.isArray()) {
             throw new DeskException(name + " has no list of cells.");
         }
+        cells.forEach(cell -> idsGiven.add(cell.path("id").asString("")));
         List<Cell> read = new ArrayList<>();
         for (JsonNode cell : cells) {
             read.add(cell(cell, read.size() + 1));
@@ -82,11 +84,11 @@ final class NotebookReader {
 
     /** Ids came with format 4.5; those made here depend on the place of the cell only, so a rerun gives the same. */
     private String id(String given, int number) {
-        if (CELL_ID.matcher(given).matches() && idsSeen.add(given)) {
+        if (CELL_ID.matcher(given).matches() && idsUsed.add(given)) {
             return given;
         }
         String made = "cell-" + number;
-        for (int copy = 2; !idsSeen.add(made); copy++) {
+        for (int copy = 2; idsGiven.contains(made) || !idsUsed.add(made); copy++) {
             made = "cell-" + number + "-" + copy;
         }
         return made;
