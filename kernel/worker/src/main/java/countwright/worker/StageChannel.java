@@ -1,0 +1,70 @@
+package countwright.worker;
+
+import countwright.show.MimeBundle;
+import countwright.show.Stage;
+import java.util.Map;
+import java.util.Optional;
+import java.util.concurrent.ArrayBlockingQueue;
+import java.util.concurrent.BlockingQueue;
+import java.util.concurrent.ConcurrentHashMap;
+import java.util.concurrent.atomic.AtomicInteger;
+
+/** The stage of a session: shows and asks through the kernel. */
+final class StageChannel implements Stage {
+
+    private final Outbox outbox;
+    private final AtomicInteger questions = new AtomicInteger();
+    private final Map<Integer, BlockingQueue<Frame.ToWorker>> waiting = new ConcurrentHashMap<>();
+
+    StageChannel(Outbox outbox) {
+        this.outbox = outbox;
+    }
+
+    @Override
+    public void display(MimeBundle bundle) {
+        outbox.put(new Frame.Shown(CellThread.checkSize(bundle), Optional.empty()));
+    }
+
+    @Override
+    public void display(MimeBundle bundle, String displayId) {
+        outbox.put(new Frame.Shown(CellThread.checkSize(bundle), Optional.of(displayId)));
+    }
+
+    @Override
+    public void update(MimeBundle bundle, String displayId) {
+        outbox.put(new Frame.Updated(CellThread.checkSize(bundle), displayId));
+    }
+
+    @Override
+    public void clear(Clearing when) {
+        outbox.put(new Frame.Cleared(when));
+    }
+
+    @Override
+    public String ask(String prompt, Echo echo) {
+        int question = questions.incrementAndGet();
+        BlockingQueue<Frame.ToWorker> reply = new ArrayBlockingQueue<>(1);
+        waiting.put(question, reply);
+        try {
+            outbox.put(new Frame.Asked(question, prompt, echo));
+            Frame.ToWorker frame = reply.take();
+            if (frame instanceof Frame.Refuse refuse) {
+                throw new IllegalStateException(refuse.reason());
+            }
+            return ((Frame.Answer) frame).line();
+        } catch (InterruptedException e) {
+            Thread.currentThread().interrupt();
+            throw new IllegalStateException("interrupted while waiting for input", e);
+        } finally {
+            waiting.remove(question);
+        }
+    }
+
+    /** Passes on a reply; one that nobody waits for any more is dropped. */
+    void reply(int question, Frame.ToWorker reply) {
+        BlockingQueue<Frame.ToWorker> asked = waiting.get(question);
+        if (asked != null) {
+            var unused = asked.offer(reply);
+        }
+    }
+}
