@@ -35,6 +35,7 @@ public final class KernelSockets implements AutoCloseable {
     private final Map<Channel, SocketLoop> loops = new EnumMap<>(Channel.class);
     private final MessageCodec codec;
     private final WireLimits limits;
+    private volatile Deliveries receiver = (channel, envelope) -> {};
     private final String session = UUID.randomUUID().toString();
 
     private KernelSockets(ConnectionFile connection, WireLimits limits) {
@@ -43,11 +44,11 @@ public final class KernelSockets implements AutoCloseable {
     }
 
     /**
-     * Binds all sockets and starts to receive.
+     * Binds all sockets; heartbeats and subscriptions are answered from now on, requests wait for {@link #start}.
      *
      * @throws IllegalStateException if an address is taken or not of this machine; nothing stays bound then
      */
-    public static KernelSockets bind(ConnectionFile connection, WireLimits limits, Deliveries deliveries) {
+    public static KernelSockets bind(ConnectionFile connection, WireLimits limits) {
         KernelSockets sockets = new KernelSockets(connection, limits);
         Map<Channel, ZMQ.Socket> bound = new EnumMap<>(Channel.class);
         try {
@@ -62,9 +63,18 @@ public final class KernelSockets implements AutoCloseable {
         if (connection.key().isEmpty()) {
             LOG.log(Level.WARNING, "The key is empty: anyone who reaches the ports of this kernel can run code in it.");
         }
-        bound.forEach((channel, socket) -> sockets.loops.put(channel, sockets.loop(channel, socket, deliveries)));
-        sockets.loops.values().forEach(SocketLoop::start);
+        bound.forEach((channel, socket) -> sockets.loops.put(channel, sockets.newLoop(channel, socket)));
+        sockets.loop(Channel.HEARTBEAT).start();
+        sockets.loop(Channel.IOPUB).start();
         return sockets;
+    }
+
+    /** Starts to deliver what comes in on shell, control and stdin. To be called once. */
+    public void start(Deliveries deliveries) {
+        receiver = deliveries;
+        loop(Channel.STDIN).start();
+        loop(Channel.CONTROL).start();
+        loop(Channel.SHELL).start();
     }
 
     /** Returns the session id that this kernel's messages carry. */
@@ -130,18 +140,17 @@ public final class KernelSockets implements AutoCloseable {
                 + " Let the front end start the kernel again with other ports.");
     }
 
-    private SocketLoop loop(Channel channel, ZMQ.Socket socket, Deliveries deliveries) {
-        String name = channel.protocolName();
-        return new SocketLoop(name, context, socket, limits, frames -> {
+    private SocketLoop newLoop(Channel channel, ZMQ.Socket socket) {
+        return new SocketLoop(channel.protocolName(), context, socket, limits, frames -> {
             switch (channel) {
                 case HEARTBEAT -> loop(Channel.HEARTBEAT).send(frames);
                 case IOPUB -> welcome(frames.get(0));
-                default -> receive(channel, frames, deliveries);
+                case SHELL, CONTROL, STDIN -> receive(channel, frames);
             }
         });
     }
 
-    private void receive(Channel channel, List<byte[]> frames, Deliveries deliveries) {
+    private void receive(Channel channel, List<byte[]> frames) {
         Envelope envelope;
         try {
             envelope = codec.decode(frames);
@@ -151,7 +160,7 @@ public final class KernelSockets implements AutoCloseable {
                     () -> "Ignored a message on " + channel.protocolName() + ": " + e.getMessage() + ".");
             return;
         }
-        deliveries.deliver(channel, envelope);
+        receiver.deliver(channel, envelope);
     }
 
     /** A subscription comes as one frame: 1 for on or 0 for off, then the topic. */

@@ -53,11 +53,17 @@ final class MessageCodec {
                         .orElseGet(() -> bytes(JsonNodeFactory.instance.objectNode())),
                 bytes(message.metadata()),
                 bytes(message.content()));
-        List<byte[]> frames = new ArrayList<>(envelope.route().frames());
+        List<byte[]> frames = signedFrames(envelope.route(), json);
+        frames.addAll(message.buffers());
+        return frames;
+    }
+
+    /** Puts route, delimiter and signature in front of the four JSON frames. */
+    List<byte[]> signedFrames(Route route, List<byte[]> json) {
+        List<byte[]> frames = new ArrayList<>(route.frames());
         frames.add(DELIMITER_FRAME);
         frames.add(signer.sign(json));
         frames.addAll(json);
-        frames.addAll(message.buffers());
         return frames;
     }
 

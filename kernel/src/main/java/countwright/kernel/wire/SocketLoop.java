@@ -83,10 +83,14 @@ final class SocketLoop {
         wake();
     }
 
-    /** Sends what is queued, then closes the socket. Returns at once. */
+    /** Sends what is queued, then closes the socket. Returns at once, unless the loop was never started. */
     void close() {
         closing = true;
-        wake();
+        if (thread.getState() == Thread.State.NEW) {
+            run();
+        } else {
+            wake();
+        }
     }
 
     /** Waits until the socket is closed. */
