@@ -20,6 +20,12 @@ public sealed interface Family permits Poisson {
     /** Returns the variance {@code V(mu)}. */
     double variance(double mu);
 
+    /** Returns the derivative of the log density by {@code eta}. */
+    double score(double y, double mu);
+
+    /** Returns the Fisher information of a count on {@code eta}: the variance of the score. */
+    double information(double mu);
+
     /** Returns the logarithm of the probability of a count, complete with every normalising constant. */
     double logDensity(double y, double mu);
 

@@ -36,6 +36,16 @@ final class Poisson implements Family {
     }
 
     @Override
+    public double score(double y, double mu) {
+        return y - mu;
+    }
+
+    @Override
+    public double information(double mu) {
+        return mu;
+    }
+
+    @Override
     public double logDensity(double y, double mu) {
         if (y == 0) {
             return -mu;
