@@ -129,7 +129,9 @@ public final class Chart implements Displayable {
         if (rows > 0) {
             chart.setCustomYAxisTickLabelsFormatter(value -> {
                 int row = rows - (int) Math.rint(value);
-                return value == Math.rint(value) && row >= 0 && row < rows ? figure.rows().get(row).name() : " ";
+                return value == Math.rint(value) && row >= 0 && row < rows
+                        ? figure.rows().get(row).name()
+                        : " ";
             });
         }
         return chart;
@@ -137,7 +139,8 @@ public final class Chart implements Displayable {
 
     @Override
     public String toString() {
-        return figure.title() + "\n" + summary + "\n\n" + numbers.strip() + (figure.caption().isEmpty() ? "" : "\n\n" + figure.caption());
+        return figure.title() + "\n" + summary + "\n\n" + numbers.strip()
+                + (figure.caption().isEmpty() ? "" : "\n\n" + figure.caption());
     }
 
     Figure figure() {
@@ -172,9 +175,7 @@ public final class Chart implements Displayable {
 
     private byte[] png(Layout layout) {
         BufferedImage image = new BufferedImage(
-                PIXELS_PER_CSS_PIXEL * Style.WIDTH,
-                PIXELS_PER_CSS_PIXEL * layout.height(),
-                BufferedImage.TYPE_INT_RGB);
+                PIXELS_PER_CSS_PIXEL * Style.WIDTH, PIXELS_PER_CSS_PIXEL * layout.height(), BufferedImage.TYPE_INT_RGB);
         Graphics2D g = image.createGraphics();
         g.scale(PIXELS_PER_CSS_PIXEL, PIXELS_PER_CSS_PIXEL);
         new Painter(figure, layout).paint(g);

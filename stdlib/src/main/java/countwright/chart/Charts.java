@@ -137,7 +137,8 @@ public final class Charts {
                 fit.response(),
                 groupColumn,
                 groups.size(),
-                MeanVarianceChart.spreads(groups, fit.counts(), fit.means(), rowsLost),
+                MeanVarianceChart.spreads(
+                        groups, fit.counts().get(), fit.means().get(), rowsLost),
                 "Variance: around the fitted mean of each row, brought to the average fitted mean of the group.");
     }
 }

@@ -18,8 +18,7 @@ final class Counted {
     private final double[] exposures;
     private final int leftOut;
 
-    private Counted(
-            Table table, String countName, String unit, double[] counts, double[] exposures, int leftOut) {
+    private Counted(Table table, String countName, String unit, double[] counts, double[] exposures, int leftOut) {
         this.table = table;
         this.countName = countName;
         this.unit = unit;
@@ -114,7 +113,7 @@ final class Counted {
     }
 
     private static String named(String countColumn, Optional<String> exposureColumn, String groupColumn) {
-        return "'" + countColumn + "'" + exposureColumn.map(name -> ", '" + name + "'").orElse("") + " and '"
-                + groupColumn + "'";
+        return "'" + countColumn + "'"
+                + exposureColumn.map(name -> ", '" + name + "'").orElse("") + " and '" + groupColumn + "'";
     }
 }

@@ -14,6 +14,7 @@ import java.util.List;
 import java.util.Optional;
 import java.util.TreeSet;
 import java.util.function.Function;
+import java.util.function.Supplier;
 
 /**
  * What charts read of a fitted model, each part when it is wanted.
@@ -38,9 +39,9 @@ record Fit(
         Optional<String> offset,
         List<Term> terms,
         Table table,
-        double[] counts,
-        double[] exposures,
-        double[] means,
+        Supplier<double[]> counts,
+        Supplier<double[]> exposures,
+        Supplier<double[]> means,
         int coefficients,
         double level,
         Function<Residual, double[]> residuals,
@@ -54,9 +55,9 @@ record Fit(
                 model.spec().offset(),
                 model.terms(),
                 model.table(),
-                model.counts(),
-                model.exposures(),
-                model.fittedMeans(),
+                model::counts,
+                model::exposures,
+                model::fittedMeans,
                 model.rowCount() - model.residualDegreesOfFreedom(),
                 model.level(),
                 model::residuals,
@@ -110,7 +111,9 @@ record Fit(
         throw new IllegalArgumentException("the model has no covariate '" + column + "'."
                 + (near.isEmpty() ? "" : " Did you mean " + String.join(" or ", near) + "?") + " Its covariates are "
                 + String.join(", ", covariates) + "."
-                + (table.has(column) ? " '" + column + "' is a column of the table, but in no term of the model." : ""));
+                + (table.has(column)
+                        ? " '" + column + "' is a column of the table, but in no term of the model."
+                        : ""));
     }
 
     private static boolean readsAsNumber(Term term, String column) {

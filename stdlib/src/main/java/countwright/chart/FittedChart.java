@@ -36,6 +36,8 @@ final class FittedChart {
 
     private Chart curve() {
         double[] values = fit.table().numbers(covariate).toArray();
+        double[] counts = fit.counts().get();
+        double[] exposures = fit.exposures().get();
         double low = Arrays.stream(values).min().orElseThrow();
         double high = Arrays.stream(values).max().orElseThrow();
         double[] grid = grid(low, high);
@@ -50,11 +52,11 @@ final class FittedChart {
         double[] observed = new double[pools.size()];
         for (int i = 0; i < pooledX.length; i++) {
             Groups.Group pool = pools.get(i);
-            double exposure = pool.sum(fit.exposures());
-            for (int row : pool.rows()) {
-                pooledX[i] += values[row] * fit.exposures()[row] / exposure;
+            double exposure = pool.sum(exposures);
+            for (int row : pool.rows().toArray()) {
+                pooledX[i] += values[row] * exposures[row] / exposure;
             }
-            observed[i] = pool.sum(fit.counts()) / exposure;
+            observed[i] = pool.sum(counts) / exposure;
         }
 
         double top = Math.max(highest(upper), highest(observed));
@@ -66,12 +68,16 @@ final class FittedChart {
         String span = unit.label() + ": " + unit.text(rates[0]) + " at " + covariate + " " + NumberText.plain(grid[0])
                 + (grid.length == 1
                         ? ""
-                        : ", " + unit.text(rates[rates.length - 1]) + " at "
-                                + NumberText.plain(grid[grid.length - 1]));
+                        : ", " + unit.text(rates[rates.length - 1]) + " at " + NumberText.plain(grid[grid.length - 1]));
         Figure figure = Figure.titled(title, x, y)
                 .subtitle(span)
                 .caption(caption(pools.size(), single))
-                .layer(Layer.band(fit.levelText() + " interval of the mean", Ink.BAND, grid, unit.scaled(lower), unit.scaled(upper)))
+                .layer(Layer.band(
+                        fit.levelText() + " interval of the mean",
+                        Ink.BAND,
+                        grid,
+                        unit.scaled(lower),
+                        unit.scaled(upper)))
                 .layer(Layer.line("fitted", Ink.FITTED, grid, unit.scaled(rates)))
                 .layer(Layer.points(pointName(single), pointInk, pooledX, unit.scaled(observed)));
         String summary = "Fitted " + span + "." + scenarios.sentence();
@@ -80,7 +86,9 @@ final class FittedChart {
 
     private String pointName(boolean single) {
         String what = fit.exposure().isEmpty() ? "count" : "rate";
-        return single ? "observed " + what : fit.exposure().isEmpty() ? "observed mean, pooled" : "observed rate, pooled";
+        return single
+                ? "observed " + what
+                : fit.exposure().isEmpty() ? "observed mean, pooled" : "observed rate, pooled";
     }
 
     private String caption(int pools, boolean single) {
@@ -100,8 +108,13 @@ final class FittedChart {
     private Grid numbers(RateUnit unit, double[] grid) {
         double[] chosen = grid.length == 1
                 ? grid
-                : new double[] {grid[0], grid[(grid.length - 1) / 4], grid[(grid.length - 1) / 2],
-                    grid[3 * (grid.length - 1) / 4], grid[grid.length - 1]};
+                : new double[] {
+                    grid[0],
+                    grid[(grid.length - 1) / 4],
+                    grid[(grid.length - 1) / 2],
+                    grid[3 * (grid.length - 1) / 4],
+                    grid[grid.length - 1]
+                };
         Table at = scenarios.at(chosen);
         List<Prediction> predictions = fit.predict().apply(at);
         NumberColumn values = at.numbers(covariate);

@@ -17,12 +17,14 @@ final class FittedLevelsChart {
 
     static Chart of(Fit fit, String covariate, Scenarios scenarios) {
         List<Groups.Group> groups = Groups.byValue(fit.table().column(covariate));
-        int[] firstRows = groups.stream().mapToInt(g -> g.rows()[0]).toArray();
+        int[] firstRows = groups.stream().mapToInt(Groups.Group::firstRow).toArray();
         List<Prediction> predictions = fit.predict().apply(scenarios.atRows(firstRows));
+        double[] counts = fit.counts().get();
+        double[] exposures = fit.exposures().get();
         List<LevelRate> all = new ArrayList<>();
         for (int i = 0; i < groups.size(); i++) {
-            double count = groups.get(i).sum(fit.counts());
-            double exposure = groups.get(i).sum(fit.exposures());
+            double count = groups.get(i).sum(counts);
+            double exposure = groups.get(i).sum(exposures);
             all.add(new LevelRate(groups.get(i).name(), predictions.get(i), count / exposure, count, exposure));
         }
         List<LevelRate> shown = all.stream()
@@ -40,8 +42,11 @@ final class FittedLevelsChart {
         double highestRate = 0;
         double highestEnd = 0;
         for (LevelRate level : shown) {
-            highestRate = Math.max(highestRate, Math.max(level.observed(), level.fitted().rate()));
-            highestEnd = Math.max(highestEnd, Math.max(level.observed(), finiteOr(level.fitted().rateUpper(), 0)));
+            highestRate = Math.max(
+                    highestRate, Math.max(level.observed(), level.fitted().rate()));
+            highestEnd = Math.max(
+                    highestEnd,
+                    Math.max(level.observed(), finiteOr(level.fitted().rateUpper(), 0)));
         }
         RateUnit unit = RateUnit.forRates(fit.response(), fit.exposure(), highestRate);
         // An interval without end (a level without events) must not squeeze all others into a corner.

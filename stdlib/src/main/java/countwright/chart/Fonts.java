@@ -63,7 +63,9 @@ public final class Fonts {
             xml.append("  <dir prefix=\"xdg\">fonts</dir>\n");
             xml.append("  <dir>").append(escaped(fonts.toString())).append("</dir>\n");
             xml.append("  <include ignore_missing=\"yes\">/etc/fonts/conf.d</include>\n");
-            xml.append("  <cachedir>").append(escaped(home.resolve("cache").toString())).append("</cachedir>\n");
+            xml.append("  <cachedir>")
+                    .append(escaped(home.resolve("cache").toString()))
+                    .append("</cachedir>\n");
             xml.append("</fontconfig>\n");
             return Files.writeString(home.resolve("fonts.conf"), xml);
         } catch (IOException failure) {
@@ -132,7 +134,8 @@ public final class Fonts {
                 GraphicsEnvironment.getLocalGraphicsEnvironment().registerFont(font);
                 return font;
             } catch (IOException | FontFormatException failure) {
-                throw new IllegalStateException("the font " + name + " cannot be read: " + failure.getMessage(), failure);
+                throw new IllegalStateException(
+                        "the font " + name + " cannot be read: " + failure.getMessage(), failure);
             }
         }
     }

@@ -7,12 +7,37 @@ import java.util.Comparator;
 import java.util.LinkedHashMap;
 import java.util.List;
 import java.util.Map;
+import java.util.stream.IntStream;
 
 /** Rows put together: by the value of a column, or by neighbourhood on a number. */
 final class Groups {
 
-    /** Some rows of a table under one name. */
-    record Group(String name, int[] rows) {
+    /** Some rows of a table under one name; at least one. */
+    static final class Group {
+
+        private final String name;
+        private final int[] rows;
+
+        private Group(String name, int[] rows) {
+            this.name = name;
+            this.rows = rows;
+        }
+
+        String name() {
+            return name;
+        }
+
+        int size() {
+            return rows.length;
+        }
+
+        int firstRow() {
+            return rows[0];
+        }
+
+        IntStream rows() {
+            return Arrays.stream(rows);
+        }
 
         double sum(double[] values) {
             double sum = 0;
@@ -30,12 +55,13 @@ final class Groups {
         Map<String, List<Integer>> rows = new LinkedHashMap<>();
         for (int row = 0; row < column.size(); row++) {
             if (!column.isMissing(row)) {
-                rows.computeIfAbsent(column.text(row), name -> new ArrayList<>()).add(row);
+                rows.computeIfAbsent(column.text(row), name -> new ArrayList<>())
+                        .add(row);
             }
         }
         List<Group> groups = new ArrayList<>();
-        rows.forEach((name, members) ->
-                groups.add(new Group(name, members.stream().mapToInt(Integer::intValue).toArray())));
+        rows.forEach((name, members) -> groups.add(
+                new Group(name, members.stream().mapToInt(Integer::intValue).toArray())));
         return groups;
     }
 

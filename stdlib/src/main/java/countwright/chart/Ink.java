@@ -28,6 +28,8 @@ enum Ink {
 
     private final Color color;
     private final Marking marking;
+
+    @SuppressWarnings("ImmutableEnumChecker") // a BasicStroke cannot change once made
     private final BasicStroke stroke;
 
     Ink(Color color, Marking marking, float width, float... dash) {

@@ -122,7 +122,12 @@ final class Layout {
 
     private double header() {
         double y = Style.MARGIN - 4;
-        y = lines(Lettering.wrap(figure.title(), Style.title(), fullWidth(), 3), Style.title(), Style.TEXT, Style.MARGIN, y);
+        y = lines(
+                Lettering.wrap(figure.title(), Style.title(), fullWidth(), 3),
+                Style.title(),
+                Style.TEXT,
+                Style.MARGIN,
+                y);
         List<String> subtitle = Lettering.wrap(figure.subtitle(), Style.subtitle(), fullWidth(), 4);
         return lines(subtitle, Style.subtitle(), Style.MUTED_TEXT, Style.MARGIN, y + 1);
     }
@@ -148,7 +153,10 @@ final class Layout {
         double y = top + 6;
         for (Entry entry : entries) {
             List<String> lines = Lettering.wrap(entry.name(), font, fullWidth() - SAMPLE_WIDTH - 6, 2);
-            double width = lines.stream().mapToDouble(line -> Lettering.width(line, font)).max().orElse(0);
+            double width = lines.stream()
+                    .mapToDouble(line -> Lettering.width(line, font))
+                    .max()
+                    .orElse(0);
             double entryWidth = SAMPLE_WIDTH + 6 + width;
             if (x > Style.MARGIN && x + entryWidth > Style.WIDTH - Style.MARGIN) {
                 x = Style.MARGIN;
@@ -184,7 +192,9 @@ final class Layout {
         double lowestFree = Double.POSITIVE_INFINITY;
         for (Axis.Tick tick : figure.y().ticks()) {
             double position = pageY(tick.value());
-            if (position + font.getSize2D() * 0.7 > lowestFree || position < plot.y - 1 || position > plot.getMaxY() + 1) {
+            if (position + font.getSize2D() * 0.7 > lowestFree
+                    || position < plot.y - 1
+                    || position > plot.getMaxY() + 1) {
                 continue;
             }
             yMarks.add(new Mark(position));

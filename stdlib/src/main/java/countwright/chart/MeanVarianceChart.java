@@ -31,13 +31,13 @@ final class MeanVarianceChart {
     static List<Spread> spreads(List<Groups.Group> groups, double[] counts, double[] means, double rowsLost) {
         List<Spread> spreads = new ArrayList<>();
         for (Groups.Group group : groups) {
-            int n = group.rows().length;
+            int n = group.size();
             double mean = group.sum(means) / n;
             if (n < 2 || !(mean > 0)) {
                 continue;
             }
             double chiSquare = 0;
-            for (int row : group.rows()) {
+            for (int row : group.rows().toArray()) {
                 double difference = counts[row] - means[row];
                 chiSquare += difference * difference / means[row];
             }
@@ -52,7 +52,7 @@ final class MeanVarianceChart {
         double[] means = new double[counts.length];
         for (Groups.Group group : groups) {
             double rate = group.sum(counts) / group.sum(exposures);
-            for (int row : group.rows()) {
+            for (int row : group.rows().toArray()) {
                 means[row] = rate * exposures[row];
             }
         }
@@ -84,7 +84,12 @@ final class MeanVarianceChart {
                                         + " not shown: a single row, no event"
                                         + (log ? " or no variation, which has no place on a log axis." : ".")))
                 .guide(new Figure.Guide(
-                        "variance = mean, as for Poisson counts", Ink.REFERENCE, lineStart, lineStart, lineEnd, lineEnd))
+                        "variance = mean, as for Poisson counts",
+                        Ink.REFERENCE,
+                        lineStart,
+                        lineStart,
+                        lineEnd,
+                        lineEnd))
                 .layer(Layer.points("one group", Ink.OBSERVED, means, variances));
         return Chart.of(figure, subtitle(spreads), grid(group, spreads).toString());
     }
@@ -134,6 +139,7 @@ final class MeanVarianceChart {
         }
         return sorted.size() <= LISTED
                 ? grid
-                : grid.note("The " + LISTED + " groups with the largest ratio, of " + NumberText.count(sorted.size()) + ".");
+                : grid.note("The " + LISTED + " groups with the largest ratio, of " + NumberText.count(sorted.size())
+                        + ".");
     }
 }

@@ -11,7 +11,7 @@ final class NearName {
     static boolean isNear(String typed, String name) {
         String a = typed.toLowerCase(Locale.ROOT);
         String b = name.toLowerCase(Locale.ROOT);
-        if (a.length() >= 3 && b.startsWith(a) || b.length() >= 3 && a.startsWith(b)) {
+        if (Math.min(a.length(), b.length()) >= 3 && (b.startsWith(a) || a.startsWith(b))) {
             return true;
         }
         return distance(a, b) <= Math.max(1, Math.min(a.length(), b.length()) / 3);

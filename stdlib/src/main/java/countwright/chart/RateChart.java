@@ -19,12 +19,14 @@ final class RateChart {
 
     static Chart of(Table table, String count, String exposure, String group) {
         Counted counted = Counted.read(table, count, Optional.of(exposure), group);
+        double[] counts = counted.counts();
+        double[] exposures = counted.exposures();
         List<GroupRate> all = new ArrayList<>();
         double totalCount = 0;
         double totalExposure = 0;
         for (Groups.Group members : Groups.byValue(counted.table().column(group))) {
-            double events = members.sum(counted.counts());
-            double amount = members.sum(counted.exposures());
+            double events = members.sum(counts);
+            double amount = members.sum(exposures);
             totalCount += events;
             totalExposure += amount;
             all.add(new GroupRate(members.name(), events, amount, ExactRate.of(events, amount, LEVEL)));
@@ -46,9 +48,12 @@ final class RateChart {
             double totalCount,
             double totalExposure) {
         int size = shown.size();
-        double[] rates = unit.scaled(shown.stream().mapToDouble(g -> g.rate().rate()).toArray());
-        double[] lower = unit.scaled(shown.stream().mapToDouble(g -> g.rate().lower()).toArray());
-        double[] upper = unit.scaled(shown.stream().mapToDouble(g -> g.rate().upper()).toArray());
+        double[] rates =
+                unit.scaled(shown.stream().mapToDouble(g -> g.rate().rate()).toArray());
+        double[] lower =
+                unit.scaled(shown.stream().mapToDouble(g -> g.rate().lower()).toArray());
+        double[] upper =
+                unit.scaled(shown.stream().mapToDouble(g -> g.rate().upper()).toArray());
         double[] y = new double[size];
         List<Figure.NamedRow> rows = new ArrayList<>();
         Grid grid = Grid.titled("")
@@ -75,7 +80,8 @@ final class RateChart {
         Axis rowAxis = Axis.rows(size);
         String left = size == groupCount
                 ? ""
-                : " Shown are the " + size + " of " + NumberText.count(groupCount) + " groups with the largest exposure.";
+                : " Shown are the " + size + " of " + NumberText.count(groupCount)
+                        + " groups with the largest exposure.";
         Figure figure = Figure.titled("Observed rate by " + group, x, rowAxis)
                 .subtitle("All together: " + NumberText.plain(totalCount) + " " + counted.countName() + " in "
                         + NumberText.rounded(totalExposure) + " " + counted.unit() + ", or " + unit.text(pooled)
@@ -94,7 +100,10 @@ final class RateChart {
                 + (size == 1
                         ? "."
                         : " and lowest in " + bottom.name() + " at "
-                                + unit.text(bottom.rate().rate(), bottom.rate().lower(), bottom.rate().upper()) + ".");
+                                + unit.text(
+                                        bottom.rate().rate(),
+                                        bottom.rate().lower(),
+                                        bottom.rate().upper()) + ".");
         return Chart.of(figure, summary, grid.toString());
     }
 

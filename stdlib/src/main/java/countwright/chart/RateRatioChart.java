@@ -24,10 +24,15 @@ final class RateRatioChart {
         List<RateRatio> shown = drawable.subList(0, Math.min(RateChart.MOST_ROWS, drawable.size()));
         double least = shown.stream().mapToDouble(RateRatio::ratio).min().orElseThrow();
         double greatest = shown.stream().mapToDouble(RateRatio::ratio).max().orElseThrow();
-        double low = Math.min(1, Math.max(
-                shown.stream().mapToDouble(RateRatio::lower).min().orElseThrow(), Math.min(1, least) / WIDEST));
-        double high = Math.max(1, Math.min(
-                shown.stream().mapToDouble(RateRatio::upper).max().orElseThrow(), Math.max(1, greatest) * WIDEST));
+        double low = Math.min(
+                1,
+                Math.max(
+                        shown.stream().mapToDouble(RateRatio::lower).min().orElseThrow(), Math.min(1, least) / WIDEST));
+        double high = Math.max(
+                1,
+                Math.min(
+                        shown.stream().mapToDouble(RateRatio::upper).max().orElseThrow(),
+                        Math.max(1, greatest) * WIDEST));
         Axis x = Axis.log("rate ratio (log axis)", low, high, 8);
         return draw(fit, shown, x);
     }
@@ -60,21 +65,24 @@ final class RateRatioChart {
         Axis rowAxis = Axis.rows(size);
         int left = fit.rateRatios().size() - size;
         Figure figure = Figure.titled("Rate ratios for " + fit.response(), x, rowAxis)
-                .subtitle(size == 1
-                        ? ""
-                        : "The " + fit.levelText() + " interval leaves out 1 for " + awayFromOne + " of " + size)
+                .subtitle(
+                        size == 1
+                                ? ""
+                                : "The " + fit.levelText() + " interval leaves out 1 for " + awayFromOne + " of "
+                                        + size)
                 .caption("Right of 1: a higher rate. Each ratio holds with the other terms unchanged."
                         + (runsOff ? " Some intervals go beyond the axis; their ends are in the numbers." : "")
-                        + (left == 0
-                                ? ""
-                                : " " + NumberText.count(left, "ratio is", "ratios are") + " not shown."))
+                        + (left == 0 ? "" : " " + NumberText.count(left, "ratio is", "ratios are") + " not shown."))
                 .rows("rate ratio (" + fit.levelText() + " interval)", rows)
                 .guide(Figure.Guide.up("no difference", Ink.REFERENCE, rowAxis, 1))
                 .layer(Layer.barsAcross(fit.levelText() + " interval", Ink.FITTED, lower, upper, y))
                 .layer(Layer.points("estimate", Ink.FITTED, ratios, y));
         StringBuilder summary = new StringBuilder();
         for (RateRatio r : shown.subList(0, Math.min(6, size))) {
-            summary.append(summary.isEmpty() ? "" : "; ").append(r.name()).append(": ").append(text(r.ratio()));
+            summary.append(summary.isEmpty() ? "" : "; ")
+                    .append(r.name())
+                    .append(": ")
+                    .append(text(r.ratio()));
         }
         return Chart.of(figure, summary + (size > 6 ? "; and " + (size - 6) + " more." : "."), grid.toString());
     }

@@ -19,7 +19,7 @@ final class ResidualChart {
     private ResidualChart() {}
 
     static Chart of(Fit fit, Residual kind) {
-        double[] means = fit.means();
+        double[] means = fit.means().get();
         double[] residuals = fit.residuals().apply(kind);
         if (means.length == 0) {
             throw new IllegalArgumentException("there is nothing to draw: the model used no row.");
@@ -39,7 +39,11 @@ final class ResidualChart {
         }
         double low = Arrays.stream(x).min().orElseThrow();
         double high = Arrays.stream(x).max().orElseThrow();
-        double reach = Math.max(2.4, Math.max(Arrays.stream(y).max().orElseThrow(), -Arrays.stream(y).min().orElseThrow()));
+        double reach = Math.max(
+                2.4,
+                Math.max(
+                        Arrays.stream(y).max().orElseThrow(),
+                        -Arrays.stream(y).min().orElseThrow()));
         boolean log = high / low > LOG_FROM_RATIO && low > 0;
         String xTitle = "fitted mean " + fit.response();
         Axis xAxis = log ? Axis.log(xTitle, low, high, 7) : Axis.linear(xTitle, low, high, 7);
@@ -71,8 +75,10 @@ final class ResidualChart {
 
     private static Figure averages(Figure figure, double[] x, double[] y) {
         List<Groups.Group> bins = Groups.byQuantile(x, BINS);
-        double[] middles = bins.stream().mapToDouble(bin -> bin.sum(x) / bin.rows().length).toArray();
-        double[] averages = bins.stream().mapToDouble(bin -> bin.sum(y) / bin.rows().length).toArray();
+        double[] middles =
+                bins.stream().mapToDouble(bin -> bin.sum(x) / bin.size()).toArray();
+        double[] averages =
+                bins.stream().mapToDouble(bin -> bin.sum(y) / bin.size()).toArray();
         return figure.layer(Layer.line("", Ink.AVERAGE, middles, averages))
                 .layer(Layer.points(
                         "average of about " + NumberText.count(Math.round((double) x.length / bins.size())) + " rows",

@@ -72,10 +72,10 @@ final class Scenarios {
 
     private static int mostFrequentRow(Column column) {
         return Groups.byValue(column).stream()
-                .max(Comparator.comparingInt((Groups.Group group) -> group.rows().length)
+                .max(Comparator.comparingInt(Groups.Group::size)
                         .thenComparing(Groups.Group::name, Comparator.reverseOrder()))
                 .orElseThrow(() -> new IllegalArgumentException(
                         "there is nothing to draw: column '" + column.name() + "' has no value in the rows used."))
-                .rows()[0];
+                .firstRow();
     }
 }

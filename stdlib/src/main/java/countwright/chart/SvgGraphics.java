@@ -87,7 +87,9 @@ final class SvgGraphics extends Graphics2D {
         if (stroke instanceof BasicStroke basic && evenScale && isInsideClip(basic.createStrokedShape(onPage))) {
             if (color.getAlpha() > 0) {
                 out.append("<path d=\"").append(SvgText.path(onPage)).append("\" fill=\"none\"");
-                out.append(SvgText.paint("stroke", color)).append(SvgText.stroke(basic)).append("/>\n");
+                out.append(SvgText.paint("stroke", color))
+                        .append(SvgText.stroke(basic))
+                        .append("/>\n");
             }
             return;
         }
@@ -129,7 +131,8 @@ final class SvgGraphics extends Graphics2D {
     @Override
     public void drawString(String text, float x, float y) {
         if (!text.isEmpty()) {
-            fill(new TextLayout(text, font, getFontRenderContext()).getOutline(AffineTransform.getTranslateInstance(x, y)));
+            fill(new TextLayout(text, font, getFontRenderContext())
+                    .getOutline(AffineTransform.getTranslateInstance(x, y)));
         }
     }
 
@@ -509,7 +512,16 @@ final class SvgGraphics extends Graphics2D {
 
     @Override
     public boolean drawImage(
-            Image image, int dx1, int dy1, int dx2, int dy2, int sx1, int sy1, int sx2, int sy2, ImageObserver observer) {
+            Image image,
+            int dx1,
+            int dy1,
+            int dx2,
+            int dy2,
+            int sx1,
+            int sy1,
+            int sx2,
+            int sy2,
+            ImageObserver observer) {
         throw noPictures();
     }
 

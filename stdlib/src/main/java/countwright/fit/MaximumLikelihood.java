@@ -130,10 +130,7 @@ public final class MaximumLikelihood {
             coefficients[column] = point.coefficients[column] + fraction * direction[column];
         }
         LikelihoodPass pass = source.fold(LikelihoodPass.at(coefficients, unbounded, family));
-        return new Point(
-                coefficients,
-                pass,
-                Cholesky.of(pass.information(), point.factor.kept()));
+        return new Point(coefficients, pass, Cholesky.of(pass.information(), point.factor.kept()));
     }
 
     private Convergence verdict(int steps, double decrement, double[] lastStep) {
