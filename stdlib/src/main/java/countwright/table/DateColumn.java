@@ -27,6 +27,11 @@ public final class DateColumn implements Column {
         return new DateColumn(name, epochDays);
     }
 
+    /** Returns a column that keeps the days it is given; the least integer marks a missing value. */
+    static DateColumn keeping(String name, int[] epochDays) {
+        return new DateColumn(name, epochDays);
+    }
+
     /** Returns the date in a row, or nothing where it is missing. */
     public Optional<LocalDate> date(int row) {
         return isMissing(row) ? Optional.empty() : Optional.of(LocalDate.ofEpochDay(epochDays[row]));

@@ -21,6 +21,11 @@ public final class DateTimeColumn implements Column {
         return new DateTimeColumn(name, Arrays.copyOf(moments, moments.length));
     }
 
+    /** Returns a column that keeps the array it is given; null marks a missing value. */
+    static DateTimeColumn keeping(String name, @Nullable LocalDateTime[] moments) {
+        return new DateTimeColumn(name, moments);
+    }
+
     /** Returns the date-time in a row, or nothing where it is missing. */
     public Optional<LocalDateTime> moment(int row) {
         return Optional.ofNullable(moments[row]);

@@ -2,6 +2,7 @@ package countwright.table;
 
 import countwright.show.Displayable;
 import countwright.show.MimeBundle;
+import java.nio.file.Path;
 import java.util.ArrayList;
 import java.util.Arrays;
 import java.util.LinkedHashMap;
@@ -29,6 +30,31 @@ public final class Table implements Displayable {
      */
     public static Table of(Column... columns) {
         return of("table", Arrays.asList(columns));
+    }
+
+    /**
+     * Reads a file: CSV, TSV, Parquet or JSON (an array of objects, or one object a line), told apart by the end of its
+     * name.
+     *
+     * <p>In CSV the first line names the columns; blank lines and lines that begin with '#' may stand above it. Fields are
+     * separated by whichever of comma, semicolon, tab and '|' the header line has most of; a field may stand in double
+     * quotes. The file is in UTF-8. A column becomes numbers if all its values are numbers with a decimal point, dates if
+     * all are written 2024-12-31, date-times if all are written 2024-12-31T23:59 (with a blank for the T, seconds and
+     * fractions if wanted); else it becomes text. A date-time with an offset from UTC is taken over in UTC. Missing is an
+     * empty field or NA; a column of which every value is missing becomes numbers. In Parquet and JSON the types are those of
+     * the file; true and false become texts.
+     *
+     * @param path the file, absolute or from the working folder
+     * @throws IllegalArgumentException if the file is not there or cannot be read, saying where and what to do; if a column
+     *     is of a type a table cannot hold, or holds whole numbers beyond 2^53, whose digits would be lost
+     */
+    public static Table read(String path) {
+        return TableReader.read(TableFile.find(path));
+    }
+
+    /** Reads a file as {@link #read(String)} does. */
+    public static Table read(Path path) {
+        return TableReader.read(TableFile.find(path));
     }
 
     static Table of(String source, List<? extends Column> columns) {
