@@ -8,11 +8,11 @@ import countwright.model.FittedModel;
 import countwright.model.Prediction;
 import countwright.model.RateRatio;
 import countwright.model.Residual;
+import countwright.table.NearNames;
 import countwright.table.Table;
 import java.util.ArrayList;
 import java.util.List;
 import java.util.Optional;
-import java.util.TreeSet;
 import java.util.function.Function;
 import java.util.function.Supplier;
 
@@ -102,15 +102,9 @@ record Fit(
             throw new IllegalArgumentException("the model has no covariate '" + column
                     + "'; it has a baseline rate only. Add a term with on(...).");
         }
-        TreeSet<String> near = new TreeSet<>();
-        for (String covariate : covariates) {
-            if (NearName.isNear(column, covariate)) {
-                near.add("'" + covariate + "'");
-            }
-        }
-        throw new IllegalArgumentException("the model has no covariate '" + column + "'."
-                + (near.isEmpty() ? "" : " Did you mean " + String.join(" or ", near) + "?") + " Its covariates are "
-                + String.join(", ", covariates) + "."
+        String question = NearNames.question(column, covariates);
+        throw new IllegalArgumentException("the model has no covariate '" + column + "'. "
+                + (question.isEmpty() ? "" : question + " ") + "Its covariates are " + NearNames.list(covariates) + "."
                 + (table.has(column)
                         ? " '" + column + "' is a column of the table, but in no term of the model."
                         : ""));

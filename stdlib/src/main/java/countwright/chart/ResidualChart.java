@@ -52,7 +52,7 @@ final class ResidualChart {
 
         int[] drawn = drawn(y);
         long beyond = Arrays.stream(y).filter(r -> Math.abs(r) > 2).count();
-        String share = NumberText.plain(beyond) + " of " + NumberText.count(y.length, "row", "rows") + " ("
+        String share = NumberText.count(beyond) + " of " + NumberText.count(y.length, "row", "rows") + " ("
                 + NumberText.rounded(100.0 * beyond / y.length) + "%) lie beyond \u00b12";
         String title = Character.toUpperCase(name.charAt(0)) + name.substring(1) + "s against fitted means";
         Figure figure = Figure.titled(title, xAxis, yAxis)
