@@ -84,8 +84,24 @@ public final class CountModel {
         return family;
     }
 
-    /** Fits the model to a table by maximum likelihood. */
+    /**
+     * Fits the model to a table by maximum likelihood. Rows in which a value that the model reads is missing are left out,
+     * and the result says so.
+     *
+     * @throws IllegalArgumentException if a column is unknown or of the wrong kind; a count is negative or not whole; an
+     *     exposure is not above 0 and finite; a term has nothing to vary with; a reference level is unknown or has no
+     *     events; or there are fewer rows than coefficients. The message names the row, the value and the remedy.
+     */
     public FittedModel fit(Table table) {
-        return new FittedModel(this, table);
+        return Fitting.fit(this, table);
+    }
+
+    @Override
+    public String toString() {
+        String per = exposure.map(name -> " per " + name).orElse("");
+        String plus = offset.map(name -> ", offset " + name).orElse("");
+        List<String> labels = terms.stream().map(Term::label).toList();
+        String on = labels.isEmpty() ? "a baseline only" : String.join(", ", labels);
+        return response + per + plus + ", " + family.name() + ", on " + on;
     }
 }

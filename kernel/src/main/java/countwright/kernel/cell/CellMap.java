@@ -1,0 +1,35 @@
+package countwright.kernel.cell;
+
+import java.util.Map;
+import java.util.Optional;
+import java.util.concurrent.ConcurrentHashMap;
+import jdk.jshell.Snippet;
+
+/** Remembers which cell each snippet came from, so that errors can point at the line the user wrote. */
+final class CellMap {
+
+    /** A cell and the line of it, counted from 1, on which the snippet starts. */
+    private record Origin(CellText cell, int firstLine) {}
+
+    /** A line of a cell. */
+    record Location(CellText cell, int line) {}
+
+    private final Map<String, Origin> origins = new ConcurrentHashMap<>();
+
+    void remember(Snippet snippet, CellText cell, int start) {
+        origins.put(snippet.id(), new Origin(cell, cell.placeOf(start).line()));
+    }
+
+    /** Returns where a stack frame is in the user's cells; JShell names the file of such a frame after its snippet. */
+    Optional<Location> locate(StackTraceElement frame) {
+        String file = frame.getFileName();
+        if (file == null || !file.startsWith("#")) {
+            return Optional.empty();
+        }
+        Origin origin = origins.get(file.substring(1));
+        if (origin == null) {
+            return Optional.empty();
+        }
+        return Optional.of(new Location(origin.cell(), origin.firstLine() + Math.max(0, frame.getLineNumber() - 1)));
+    }
+}

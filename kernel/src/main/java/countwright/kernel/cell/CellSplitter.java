@@ -1,0 +1,88 @@
+package countwright.kernel.cell;
+
+import java.util.ArrayList;
+import java.util.List;
+import jdk.jshell.SourceCodeAnalysis;
+import jdk.jshell.SourceCodeAnalysis.CompletionInfo;
+
+/** Cuts a cell into the pieces that JShell takes one at a time. */
+final class CellSplitter {
+
+    /**
+     * A statement, expression or declaration of a cell.
+     *
+     * @param start its position in the cell, in UTF-16 units; leading blanks and comments belong to it
+     * @param source its text, with a semicolon added where one may be left out
+     * @param whole whether it is complete as it stands
+     * @param showsValue whether it lacks the closing semicolon that keeps a value from being shown
+     */
+    record Piece(int start, String source, boolean whole, boolean showsValue) {}
+
+    private CellSplitter() {}
+
+    static List<Piece> split(String code, SourceCodeAnalysis analysis) {
+        List<Piece> pieces = new ArrayList<>();
+        String remaining = code;
+        while (!remaining.isBlank()) {
+            CompletionInfo info = analysis.analyzeCompletion(remaining);
+            int start = code.length() - remaining.length();
+            switch (info.completeness()) {
+                case EMPTY -> {
+                    return pieces;
+                }
+                case COMPLETE, COMPLETE_WITH_SEMI -> {
+                    int end = code.length() - info.remaining().length();
+                    pieces.add(new Piece(start, info.source(), true, !endsWithSemicolon(code.substring(start, end))));
+                    if (info.remaining().length() >= remaining.length()) {
+                        return pieces;
+                    }
+                    remaining = info.remaining();
+                }
+                case CONSIDERED_INCOMPLETE, DEFINITELY_INCOMPLETE, UNKNOWN -> {
+                    pieces.add(new Piece(start, remaining, false, false));
+                    return pieces;
+                }
+            }
+        }
+        return pieces;
+    }
+
+    /** Tells whether the last thing that is neither blank nor comment is a semicolon. */
+    static boolean endsWithSemicolon(String source) {
+        char last = ' ';
+        int i = 0;
+        while (i < source.length()) {
+            char c = source.charAt(i);
+            if (source.startsWith("//", i)) {
+                i = endOf(source, "\n", i + 2);
+            } else if (source.startsWith("/*", i)) {
+                i = endOf(source, "*/", i + 2);
+            } else if (source.startsWith("\"\"\"", i)) {
+                i = endOfQuoted(source, "\"\"\"", i + 3);
+                last = '"';
+            } else if (c == '"' || c == '\'') {
+                i = endOfQuoted(source, String.valueOf(c), i + 1);
+                last = c;
+            } else {
+                if (!Character.isWhitespace(c)) {
+                    last = c;
+                }
+                i++;
+            }
+        }
+        return last == ';';
+    }
+
+    private static int endOf(String source, String mark, int from) {
+        int found = source.indexOf(mark, from);
+        return found < 0 ? source.length() : found + mark.length();
+    }
+
+    private static int endOfQuoted(String source, String quote, int from) {
+        int i = from;
+        while (i < source.length() && !source.startsWith(quote, i)) {
+            i += source.charAt(i) == '\\' ? 2 : 1;
+        }
+        return Math.min(source.length(), i + quote.length());
+    }
+}

@@ -1,0 +1,150 @@
+package countwright.kernel.cell;
+
+import countwright.kernel.cell.CellText.Place;
+import java.util.ArrayList;
+import java.util.Collection;
+import java.util.List;
+import java.util.Locale;
+import java.util.Optional;
+import java.util.regex.Matcher;
+import java.util.regex.Pattern;
+import java.util.stream.Stream;
+import jdk.jshell.DeclarationSnippet;
+import jdk.jshell.Diag;
+import jdk.jshell.ImportSnippet;
+import jdk.jshell.JShell;
+import jdk.jshell.Snippet;
+
+/** Tells of code that does not compile: the line as written, a caret under the place, what is wrong, what to do. */
+final class CompileReport {
+
+    private static final Pattern SYMBOL = Pattern.compile("symbol:\\s+(\\w+)\\s+([^\\s(<]+)");
+    private static final Pattern LOCATION = Pattern.compile("location:\\s+(.+)");
+
+    private final JShell shell;
+
+    CompileReport(JShell shell) {
+        this.shell = shell;
+    }
+
+    CellOutcome.Failure of(Snippet snippet, CellSplitter.Piece piece, CellText cell) {
+        List<String> lines = new ArrayList<>();
+        String first = "";
+        List<Diag> errors = shell.diagnostics(snippet).filter(Diag::isError).toList();
+        // The parser's complaints after the first are mostly about what the first left in disorder.
+        boolean syntax = errors.stream().anyMatch(CompileReport::isSyntax);
+        for (Diag error : syntax ? errors.subList(0, 1) : errors) {
+            String explanation = explain(error, piece);
+            if (first.isEmpty()) {
+                first = explanation;
+            } else {
+                lines.add("");
+            }
+            lines.addAll(point(error, piece, cell));
+            lines.add(explanation);
+        }
+        if (lines.isEmpty()) {
+            first = unresolved(snippet).orElse("this piece of code cannot be compiled.");
+            Place place = cell.placeOf(piece.start() + leadingBlanks(piece.source()));
+            lines.add(header(cell, place));
+            lines.add(first);
+        }
+        return new CellOutcome.Failure("CompileError", first.lines().findFirst().orElse(first), lines);
+    }
+
+    /** Says what a declaration waits for, if it does. */
+    Optional<String> unresolved(Snippet snippet) {
+        if (!(snippet instanceof DeclarationSnippet declaration)) {
+            return Optional.empty();
+        }
+        List<String> waitsFor = shell.unresolvedDependencies(declaration).toList();
+        if (waitsFor.isEmpty()) {
+            return Optional.empty();
+        }
+        return Optional.of(
+                "'" + declaration.name() + "' refers to " + String.join(", ", waitsFor) + ", not declared so far.");
+    }
+
+    private static boolean isSyntax(Diag error) {
+        return error.getCode().startsWith("compiler.err.expected")
+                || error.getCode().startsWith("compiler.err.premature")
+                || error.getCode().startsWith("compiler.err.illegal.start")
+                || error.getCode().startsWith("compiler.err.unclosed");
+    }
+
+    private static List<String> point(Diag error, CellSplitter.Piece piece, CellText cell) {
+        int start = piece.start() + (int) Math.max(0, error.getStartPosition());
+        int end = piece.start() + (int) Math.max(error.getEndPosition(), error.getStartPosition());
+        Place place = cell.placeOf(start);
+        String line = cell.line(place.line());
+        int caretStart = Math.min(place.column() - 1, line.length());
+        int caretLength = Math.max(1, Math.min(end - start, line.length() - caretStart));
+        StringBuilder margin = new StringBuilder();
+        for (int i = 0; i < caretStart; i++) {
+            margin.append(line.charAt(i) == '\t' ? '\t' : ' ');
+        }
+        return List.of(header(cell, place), "    " + line, "    " + margin + "^".repeat(caretLength));
+    }
+
+    private static String header(CellText cell, Place place) {
+        return capitalised(cell.name()) + ", line " + place.line() + ", column " + place.column();
+    }
+
+    private String explain(Diag error, CellSplitter.Piece piece) {
+        String code = error.getCode();
+        String message = String.valueOf(error.getMessage(Locale.ENGLISH));
+        if (code.startsWith("compiler.err.cant.resolve")) {
+            return explainUnknown(message);
+        }
+        if (code.startsWith("compiler.err.premature.eof") || !piece.whole()) {
+            return message.lines().findFirst().orElse(message)
+                    + ".\nThe cell ends before this statement does: close the open bracket, brace or quote.";
+        }
+        if (code.startsWith("compiler.err.expected") && message.startsWith("';'")) {
+            return "A semicolon is missing here.\nOnly the last expression of a cell may go without one, to show its value.";
+        }
+        return capitalised(message.strip());
+    }
+
+    private String explainUnknown(String message) {
+        Matcher symbol = SYMBOL.matcher(message);
+        if (!symbol.find()) {
+            return capitalised(message.strip());
+        }
+        String kind = symbol.group(1);
+        String name = symbol.group(2);
+        Matcher location = LOCATION.matcher(message);
+        String owner = location.find() ? location.group(1).strip() : "";
+        boolean member = !owner.isEmpty() && !owner.equals("class");
+        String text = "'" + name + "' is not known: "
+                + (member ? memberSentence(kind, owner) : "no " + kind + " of that name has been declared or imported.");
+        Optional<String> near = member ? Optional.empty() : NearNames.nearest(name, declaredNames());
+        if (near.isPresent()) {
+            return text + "\nDid you mean '" + near.get() + "'?";
+        }
+        return member
+                ? text
+                : text + "\nIf another cell declares it, run that cell first; otherwise declare it or correct the spelling.";
+    }
+
+    private static String memberSentence(String kind, String owner) {
+        return owner + " has no such " + kind + ".";
+    }
+
+    private Collection<String> declaredNames() {
+        Stream<String> declared = shell.snippets()
+                .filter(snippet -> shell.status(snippet).isActive())
+                .filter(DeclarationSnippet.class::isInstance)
+                .map(snippet -> ((DeclarationSnippet) snippet).name());
+        Stream<String> imported = shell.imports().map(ImportSnippet::name);
+        return Stream.concat(declared, imported).distinct().toList();
+    }
+
+    private static int leadingBlanks(String source) {
+        return source.length() - source.stripLeading().length();
+    }
+
+    private static String capitalised(String text) {
+        return text.isEmpty() ? text : Character.toUpperCase(text.charAt(0)) + text.substring(1);
+    }
+}

@@ -1,0 +1,169 @@
+package countwright.kernel.cell;
+
+import countwright.kernel.worker.Worker;
+import countwright.kernel.worker.WorkerLostException;
+import countwright.show.MimeBundle;
+import countwright.worker.Bytes;
+import countwright.worker.CompiledClass;
+import countwright.worker.Fault;
+import countwright.worker.Frame;
+import java.util.Arrays;
+import java.util.List;
+import java.util.Optional;
+import java.util.concurrent.CompletableFuture;
+import java.util.concurrent.CompletionException;
+import java.util.concurrent.locks.ReentrantLock;
+import jdk.jshell.spi.ExecutionControl;
+import org.jspecify.annotations.Nullable;
+
+/**
+ * JShell's way to execute, carried out by the worker.
+ *
+ * <p>The compiler lock is let go while user code runs, so that completion and inspection answer during a long cell.
+ */
+final class WorkerExecution implements ExecutionControl {
+
+    private final CompletableFuture<Worker> worker;
+    private final ReentrantLock compilerLock;
+    private Frame.Want want = Frame.Want.NOTHING;
+    private Optional<MimeBundle> value = Optional.empty();
+    private boolean stopped;
+    private Optional<String> loss = Optional.empty();
+
+    WorkerExecution(CompletableFuture<Worker> worker, ReentrantLock compilerLock) {
+        this.worker = worker;
+        this.compilerLock = compilerLock;
+    }
+
+    /** Prepares for the next snippet: whether its value is wanted, and forgetting how the last one went. */
+    void prepare(Frame.Want nextWant) {
+        want = nextWant;
+        value = Optional.empty();
+        stopped = false;
+    }
+
+    /** Returns the value of the last snippet, if it was wanted and there is one. */
+    Optional<MimeBundle> value() {
+        return value;
+    }
+
+    /** Returns whether the last snippet was stopped by an interrupt. */
+    boolean wasStopped() {
+        return stopped;
+    }
+
+    /** Returns how the worker was lost, if it was. */
+    Optional<String> loss() {
+        return loss;
+    }
+
+    @Override
+    public void load(ClassBytecodes[] classes)
+            throws ClassInstallException, NotImplementedException, EngineTerminationException {
+        Frame.Reply reply = request(new Frame.Load(Arrays.stream(classes)
+                .map(each -> new CompiledClass(each.name(), Bytes.of(each.bytecodes())))
+                .toList()));
+        if (reply instanceof Frame.Failed failed) {
+            if (failed.fault() instanceof Fault.NotInstalled notInstalled) {
+                boolean[] installed = new boolean[classes.length];
+                List<Boolean> told = notInstalled.installed();
+                for (int i = 0; i < Math.min(installed.length, told.size()); i++) {
+                    installed[i] = told.get(i);
+                }
+                throw new ClassInstallException(notInstalled.message(), installed);
+            }
+            throw new ClassInstallException(failed.fault().toString(), new boolean[classes.length]);
+        }
+    }
+
+    /** Not offered: JShell then defines the class under a new name, which keeps running code undisturbed. */
+    @Override
+    public void redefine(ClassBytecodes[] classes) throws NotImplementedException {
+        throw new NotImplementedException("redefinition is done by defining anew");
+    }
+
+    @Override
+    public String invoke(String className, String methodName)
+            throws RunException, EngineTerminationException, InternalException {
+        Frame.Invoke invoke = new Frame.Invoke(className, methodName, want);
+        Frame.Reply reply;
+        int holds = compilerLock.getHoldCount();
+        for (int i = 0; i < holds; i++) {
+            compilerLock.unlock();
+        }
+        try {
+            reply = request(invoke);
+        } finally {
+            for (int i = 0; i < holds; i++) {
+                compilerLock.lock();
+            }
+        }
+        if (reply instanceof Frame.Done done) {
+            value = done.value();
+            return done.text();
+        }
+        Fault fault = ((Frame.Failed) reply).fault();
+        if (fault instanceof Fault.Thrown thrown) {
+            throw exceptionOf(thrown);
+        }
+        if (fault instanceof Fault.Unresolved unresolved) {
+            throw new ResolutionException(unresolved.id(), unresolved.frames().toArray(new StackTraceElement[0]));
+        }
+        if (fault instanceof Fault.Stopped) {
+            stopped = true;
+            throw new StoppedException();
+        }
+        throw new InternalException(fault.toString());
+    }
+
+    @Override
+    public String varValue(String className, String variableName)
+            throws RunException, EngineTerminationException, InternalException {
+        Frame.Reply reply = request(new Frame.ReadVariable(className, variableName));
+        if (reply instanceof Frame.Done done) {
+            return done.text();
+        }
+        throw new InternalException(((Frame.Failed) reply).fault().toString());
+    }
+
+    @Override
+    public void addToClasspath(String path) throws EngineTerminationException, InternalException {
+        if (request(new Frame.AddToClassPath(path)) instanceof Frame.Failed failed) {
+            throw new InternalException(failed.fault().toString());
+        }
+    }
+
+    /** Interrupts go to the worker directly, since they must not wait for JShell. */
+    @Override
+    public void stop() {}
+
+    @Override
+    public @Nullable Object extensionCommand(String command, @Nullable Object argument) throws NotImplementedException {
+        throw new NotImplementedException(command);
+    }
+
+    /** The session closes the worker itself, with its own patience. */
+    @Override
+    public void close() {}
+
+    private Frame.Reply request(Frame.Request request) throws EngineTerminationException {
+        try {
+            return worker.join().request(request);
+        } catch (WorkerLostException e) {
+            loss = Optional.of(String.valueOf(e.getMessage()));
+            throw new EngineTerminationException(String.valueOf(e.getMessage()));
+        } catch (CompletionException e) {
+            loss = Optional.of("it could not be started: " + e.getCause().getMessage());
+            throw new EngineTerminationException(loss.orElseThrow());
+        }
+    }
+
+    private static UserException exceptionOf(Fault.Thrown thrown) {
+        UserException exception = new UserException(
+                thrown.message().orElse(null),
+                thrown.className(),
+                thrown.frames().toArray(new StackTraceElement[0]));
+        thrown.cause().ifPresent(cause -> exception.initCause(exceptionOf(cause)));
+        return exception;
+    }
+}

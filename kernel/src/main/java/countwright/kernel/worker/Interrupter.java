@@ -1,0 +1,88 @@
+package countwright.kernel.worker;
+
+import countwright.worker.Frame;
+import java.lang.System.Logger;
+import java.lang.System.Logger.Level;
+import java.util.concurrent.Executors;
+import java.util.concurrent.RejectedExecutionException;
+import java.util.concurrent.ScheduledExecutorService;
+import java.util.concurrent.TimeUnit;
+
+/**
+ * Stops what runs in a worker: first by Thread.interrupt, for code that listens; after a grace by throwing into the cell
+ * thread, again and again, for code that catches everything. If that has not helped by the next interrupt, the worker
+ * itself is ended, which costs the variables.
+ */
+final class Interrupter implements AutoCloseable {
+
+    private static final Logger LOG = System.getLogger(Interrupter.class.getName());
+    private static final long GRACE_MILLIS = 300;
+    private static final long RETRY_MILLIS = 100;
+
+    /** Before this many tries a second interrupt is taken for impatience, not for a wish to lose the variables. */
+    private static final int TRIES_BEFORE_KILL = 12;
+
+    private final Worker worker;
+    private final Debugger debugger;
+    private final ScheduledExecutorService clock;
+    private long interruptedRequest = -1;
+    private int tries;
+    private volatile boolean killed;
+
+    Interrupter(Worker worker, Debugger debugger) {
+        this.worker = worker;
+        this.debugger = debugger;
+        this.clock = Executors.newSingleThreadScheduledExecutor(task -> {
+            Thread thread = new Thread(task, "interrupter");
+            thread.setDaemon(true);
+            return thread;
+        });
+    }
+
+    /** Starts to stop what runs now; does nothing if nothing runs. */
+    synchronized void interrupt() {
+        if (!worker.isWaiting()) {
+            return;
+        }
+        long request = worker.requestsEnded();
+        if (request == interruptedRequest) {
+            if (tries >= TRIES_BEFORE_KILL) {
+                LOG.log(Level.WARNING, "the cell cannot be stopped; ending worker {0}", worker.processId());
+                killed = true;
+                worker.kill();
+            }
+            return;
+        }
+        interruptedRequest = request;
+        tries = 0;
+        worker.send(new Frame.Interrupt());
+        schedule(GRACE_MILLIS);
+    }
+
+    boolean hasKilled() {
+        return killed;
+    }
+
+    private synchronized void stopByForce() {
+        if (!worker.isWaiting() || worker.requestsEnded() != interruptedRequest) {
+            return;
+        }
+        tries++;
+        debugger.stopUserCode();
+        schedule(RETRY_MILLIS);
+    }
+
+    private void schedule(long millis) {
+        try {
+            clock.schedule(this::stopByForce, millis, TimeUnit.MILLISECONDS);
+        } catch (RejectedExecutionException closed) {
+            LOG.log(Level.DEBUG, "the worker is going anyway");
+        }
+    }
+
+    @Override
+    public void close() {
+        clock.shutdownNow();
+        debugger.close();
+    }
+}

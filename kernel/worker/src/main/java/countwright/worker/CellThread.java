@@ -1,0 +1,230 @@
+package countwright.worker;
+
+import countwright.show.MimeBundle;
+import countwright.show.Renderer;
+import java.lang.reflect.InvocationTargetException;
+import java.lang.reflect.Method;
+import java.util.ArrayList;
+import java.util.IdentityHashMap;
+import java.util.List;
+import java.util.Map;
+import java.util.Optional;
+import java.util.concurrent.BlockingQueue;
+import java.util.concurrent.LinkedBlockingQueue;
+import jdk.jshell.execution.DirectExecutionControl;
+import jdk.jshell.spi.ExecutionControl.ClassBytecodes;
+import jdk.jshell.spi.ExecutionControl.ClassInstallException;
+import jdk.jshell.spi.SPIResolutionException;
+import org.jspecify.annotations.Nullable;
+
+/**
+ * The one thread on which cells run: it carries out the kernel's requests in order and answers each once.
+ *
+ * <p>A cell that does not listen to {@link Thread#interrupt} is stopped from outside through the debugger interface: the
+ * kernel suspends this thread, reads {@link #phase}, and only where it is {@link #USER_CODE} lets {@link #STOP} be thrown
+ * here. Any other phase means that a stop could break our own state (a frame half queued, an answer lost), and the kernel
+ * tries again a moment later. The names of these static fields are therefore part of the protocol.
+ */
+public final class CellThread extends Thread {
+
+    /** The phase in which an asynchronous stop does no harm. */
+    public static final int USER_CODE = 1;
+
+    /** How many causes of an exception are reported. */
+    static final int DEEPEST_CAUSE = 16;
+
+    private static final int OURS = 0;
+    private static final int MOST_FRAMES = 400;
+    private static final long LARGEST_BUNDLE = 64L << 20;
+
+    /** What the kernel throws into this thread. Made beforehand, since nothing can be made while it is suspended. */
+    static final CellStop STOP = new CellStop();
+
+    // Both are read by the kernel through the debugger interface.
+    static volatile int phase = OURS;
+    static volatile @Nullable Thread current;
+
+    private final BlockingQueue<Frame.Request> requests = new LinkedBlockingQueue<>();
+    private final Outbox outbox;
+    private final ClassKeeper classes = new ClassKeeper();
+
+    CellThread(Outbox outbox) {
+        super(null, null, "cell", 16L << 20);
+        this.outbox = outbox;
+        setDaemon(true);
+    }
+
+    /** Queues a request. */
+    void accept(Frame.Request request) {
+        requests.add(request);
+    }
+
+    /** Marks a stretch of our own code on this thread in which it must not be stopped; does nothing on other threads. */
+    static int guard() {
+        int before = phase;
+        if (Thread.currentThread() == current) {
+            phase = OURS;
+        }
+        return before;
+    }
+
+    /** Ends the stretch that {@link #guard} began, given what it returned. */
+    static void unguard(int before) {
+        if (Thread.currentThread() == current) {
+            phase = before;
+        }
+    }
+
+    @Override
+    public void run() {
+        current = this;
+        while (true) {
+            Frame.Reply reply;
+            try {
+                reply = answer(requests.take());
+            } catch (InterruptedException lateInterrupt) {
+                continue;
+            } catch (Throwable unexpected) {
+                phase = OURS;
+                reply = new Frame.Failed(new Fault.Internal(unexpected.toString()));
+            }
+            outbox.put(reply);
+        }
+    }
+
+    private Frame.Reply answer(Frame.Request request) {
+        try {
+            if (request instanceof Frame.Invoke invoke) {
+                return invoke(invoke);
+            }
+            if (request instanceof Frame.Load load) {
+                classes.load(load.classes().stream()
+                        .map(compiled -> new ClassBytecodes(
+                                compiled.name(), compiled.bytecode().toArray()))
+                        .toArray(ClassBytecodes[]::new));
+                return done("");
+            }
+            if (request instanceof Frame.ReadVariable read) {
+                return done(classes.varValue(read.className(), read.variableName()));
+            }
+            Frame.AddToClassPath add = (Frame.AddToClassPath) request;
+            classes.addToClasspath(add.path());
+            return done("");
+        } catch (ClassInstallException e) {
+            List<Boolean> installed = new ArrayList<>();
+            for (boolean each : e.installed()) {
+                installed.add(each);
+            }
+            return new Frame.Failed(new Fault.NotInstalled(String.valueOf(e.getMessage()), installed));
+        } catch (Exception | LinkageError e) {
+            return new Frame.Failed(new Fault.Internal(e.toString()));
+        }
+    }
+
+    private Frame.Reply invoke(Frame.Invoke request) {
+        Method method;
+        try {
+            Class<?> owner = classes.find(request.className());
+            method = owner.getDeclaredMethod(request.methodName());
+            method.setAccessible(true);
+            setContextClassLoader(owner.getClassLoader());
+        } catch (ReflectiveOperationException | LinkageError e) {
+            return new Frame.Failed(new Fault.Internal(e.toString()));
+        }
+        // Two layers, because a stop may arrive anywhere until the phase is ours again, also in the inner handlers.
+        try {
+            return invokeStoppably(method, request.want());
+        } catch (CellStop late) {
+            phase = OURS;
+            return new Frame.Failed(new Fault.Stopped());
+        } finally {
+            phase = OURS;
+            // An interrupt that came too late must not reach the next cell.
+            interrupted();
+        }
+    }
+
+    private static Frame.Reply invokeStoppably(Method method, Frame.Want want) {
+        try {
+            phase = USER_CODE;
+            Object value = method.invoke(null);
+            Optional<MimeBundle> bundle = want == Frame.Want.BUNDLE ? render(value) : Optional.empty();
+            phase = OURS;
+            return new Frame.Done("", bundle);
+        } catch (InvocationTargetException e) {
+            phase = OURS;
+            return new Frame.Failed(faultOf(e.getCause() == null ? e : e.getCause()));
+        } catch (CellStop stop) {
+            phase = OURS;
+            return new Frame.Failed(new Fault.Stopped());
+        } catch (Throwable e) {
+            // The method was found and is accessible, so this came from rendering its value.
+            phase = OURS;
+            return new Frame.Failed(faultOf(e));
+        }
+    }
+
+    private static Optional<MimeBundle> render(@Nullable Object value) {
+        return Renderer.render(value).map(CellThread::checkSize);
+    }
+
+    /** Refuses what would not fit through the stream, before any of it is on its way. */
+    static MimeBundle checkSize(MimeBundle bundle) {
+        long size = 0;
+        for (String form : bundle.data().values()) {
+            size += form.length();
+        }
+        if (size > LARGEST_BUNDLE) {
+            throw new IllegalArgumentException("what is to be shown has " + size + " characters; at most "
+                    + LARGEST_BUNDLE + " can be. Show a part of it, or write it to a file.");
+        }
+        return bundle;
+    }
+
+    private static Frame.Done done(String text) {
+        return new Frame.Done(text, Optional.empty());
+    }
+
+    private static Fault faultOf(Throwable thrown) {
+        if (thrown instanceof CellStop) {
+            return new Fault.Stopped();
+        }
+        if (thrown instanceof SPIResolutionException unresolved) {
+            return new Fault.Unresolved(unresolved.id(), framesOf(unresolved));
+        }
+        return thrownFault(thrown, new IdentityHashMap<>());
+    }
+
+    private static Fault.Thrown thrownFault(Throwable thrown, Map<Throwable, Boolean> seen) {
+        seen.put(thrown, true);
+        Throwable cause = thrown.getCause();
+        boolean tell = cause != null && !seen.containsKey(cause) && seen.size() <= DEEPEST_CAUSE;
+        return new Fault.Thrown(
+                thrown.getClass().getName(),
+                messageOf(thrown),
+                framesOf(thrown),
+                tell && cause != null ? Optional.of(thrownFault(cause, seen)) : Optional.empty());
+    }
+
+    private static Optional<String> messageOf(Throwable thrown) {
+        try {
+            return Optional.ofNullable(thrown.getLocalizedMessage());
+        } catch (RuntimeException | Error e) {
+            return Optional.of("(its message could not be read: getMessage threw "
+                    + e.getClass().getName() + ")");
+        }
+    }
+
+    private static List<StackTraceElement> framesOf(Throwable thrown) {
+        StackTraceElement[] frames = thrown.getStackTrace();
+        return List.of(frames).subList(0, Math.min(frames.length, MOST_FRAMES));
+    }
+
+    /** JShell's own class loading and redefinition, without its way of running. */
+    private static final class ClassKeeper extends DirectExecutionControl {
+
+        Class<?> find(String className) throws ClassNotFoundException {
+            return findClass(className);
+        }
+    }
+}

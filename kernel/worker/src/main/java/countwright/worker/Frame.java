@@ -1,0 +1,89 @@
+package countwright.worker;
+
+import countwright.show.MimeBundle;
+import countwright.show.Stage;
+import java.util.List;
+import java.util.Optional;
+
+/**
+ * What crosses the stream between the kernel and the worker. Requests are answered once, in order; events come from the
+ * worker at any time, and everything the worker sends keeps the order in which it was said.
+ */
+public sealed interface Frame {
+
+    /** A frame the kernel sends. */
+    sealed interface ToWorker extends Frame {}
+
+    /** A frame the worker sends. */
+    sealed interface ToKernel extends Frame {}
+
+    /** A request that the cell thread carries out and answers with {@link Done} or {@link Failed}. */
+    sealed interface Request extends ToWorker {}
+
+    /** The answer to the oldest unanswered request. */
+    sealed interface Reply extends ToKernel {}
+
+    /** Defines classes. */
+    record Load(List<CompiledClass> classes) implements Request {
+        public Load {
+            classes = List.copyOf(classes);
+        }
+    }
+
+    /** Runs a static method without parameters, and says whether its value is wanted as a bundle. */
+    record Invoke(String className, String methodName, Want want) implements Request {}
+
+    /** Reads a static field as text. */
+    record ReadVariable(String className, String variableName) implements Request {}
+
+    /** Adds folders or archives to what user code can see. */
+    record AddToClassPath(String path) implements Request {}
+
+    /** Asks the cell thread to stop by {@link Thread#interrupt}. */
+    record Interrupt() implements ToWorker {}
+
+    /** Gives the line that was asked for. */
+    record Answer(int question, String line) implements ToWorker {}
+
+    /** Says that a question will not be answered, and why. */
+    record Refuse(int question, String reason) implements ToWorker {}
+
+    /** Ends the worker. */
+    record Leave() implements ToWorker {}
+
+    /** Says that the worker is connected; the token proves that it is the one the kernel started. */
+    record Ready(String token, long processId) implements ToKernel {}
+
+    /** A request was carried out. */
+    record Done(String text, Optional<MimeBundle> value) implements Reply {}
+
+    /** A request failed. */
+    record Failed(Fault fault) implements Reply {}
+
+    /** Bytes of UTF-8 text written to an output stream; a character may be split between two frames. */
+    record Output(Channel channel, Bytes bytes) implements ToKernel {}
+
+    /** A bundle to show. */
+    record Shown(MimeBundle bundle, Optional<String> displayId) implements ToKernel {}
+
+    /** A bundle that replaces an earlier one. */
+    record Updated(MimeBundle bundle, String displayId) implements ToKernel {}
+
+    /** What was shown so far is to be removed. */
+    record Cleared(Stage.Clearing when) implements ToKernel {}
+
+    /** A question for the person at the front end. */
+    record Asked(int question, String prompt, Stage.Echo echo) implements ToKernel {}
+
+    /** The two output streams of the worker. */
+    enum Channel {
+        OUT,
+        ERR
+    }
+
+    /** Whether a value is wanted. */
+    enum Want {
+        NOTHING,
+        BUNDLE
+    }
+}

@@ -1,0 +1,121 @@
+package countwright.worker;
+
+import countwright.show.Show;
+import countwright.show.WarmUp;
+import java.io.BufferedReader;
+import java.io.IOException;
+import java.io.InputStreamReader;
+import java.net.InetAddress;
+import java.net.Socket;
+import java.nio.charset.StandardCharsets;
+import java.util.ServiceLoader;
+
+/**
+ * The worker's entry point. The kernel writes one line to standard input: the loopback port to connect to and a token
+ * that proves who connected, neither of which shows in the list of processes.
+ */
+public final class WorkerMain {
+
+    /** Exit status when the kernel has gone. */
+    static final int LOST_KERNEL = 86;
+
+    /** Long enough for a first cell to be under way: loading native parts must not compete with it. */
+    private static final long WARM_UP_DELAY_MILLIS = 700;
+
+    private static final long LAST_WORDS_MILLIS = 500;
+
+    private WorkerMain() {}
+
+    public static void main(String[] arguments) throws IOException {
+        String line = new BufferedReader(new InputStreamReader(System.in, StandardCharsets.US_ASCII)).readLine();
+        if (line == null || line.indexOf(' ') < 0) {
+            throw new IOException("the worker is started by the kernel, not by hand");
+        }
+        int space = line.indexOf(' ');
+        int port = Integer.parseInt(line.substring(0, space));
+        String token = line.substring(space + 1);
+        try (Socket socket = new Socket(InetAddress.getLoopbackAddress(), port)) {
+            // Without this the two sides wait for each other's delayed acknowledgements, some 190 ms a snippet.
+            socket.setTcpNoDelay(true);
+            serve(new FrameStream(socket.getInputStream(), socket.getOutputStream()), token);
+        } finally {
+            exit();
+        }
+    }
+
+    private static void serve(FrameStream stream, String token) {
+        Outbox outbox = new Outbox(stream);
+        StageChannel stage = new StageChannel(outbox);
+        CellThread cells = new CellThread(outbox);
+        outbox.start();
+        outbox.put(new Frame.Ready(token, ProcessHandle.current().pid()));
+        StandardStreams.redirect(outbox, stage);
+        Show.onto(stage);
+        cells.start();
+        Runtime.getRuntime().addShutdownHook(new Thread(() -> sayLastWords(outbox), "last words"));
+        startWarmUp();
+        try {
+            while (true) {
+                Frame frame = stream.read();
+                if (frame instanceof Frame.Request request) {
+                    cells.accept(request);
+                } else if (frame instanceof Frame.Interrupt) {
+                    cells.interrupt();
+                } else if (frame instanceof Frame.Answer answer) {
+                    stage.answer(answer);
+                } else if (frame instanceof Frame.Refuse refuse) {
+                    stage.refuse(refuse);
+                } else if (frame instanceof Frame.Leave) {
+                    return;
+                }
+            }
+        } catch (IOException kernelGone) {
+            return;
+        }
+    }
+
+    /** What a cell printed before System.exit still reaches the notebook. */
+    private static void sayLastWords(Outbox outbox) {
+        System.out.flush();
+        System.err.flush();
+        try {
+            outbox.drain(LAST_WORDS_MILLIS);
+        } catch (InterruptedException e) {
+            Thread.currentThread().interrupt();
+        }
+    }
+
+    private static void startWarmUp() {
+        Thread warming = new Thread(
+                () -> {
+                    try {
+                        Thread.sleep(WARM_UP_DELAY_MILLIS);
+                        ServiceLoader.load(WarmUp.class).forEach(WarmUp::warmUp);
+                    } catch (InterruptedException | RuntimeException | Error e) {
+                        // The real use comes later and reports better.
+                        return;
+                    }
+                },
+                "warm-up");
+        warming.setDaemon(true);
+        warming.setPriority(Thread.MIN_PRIORITY);
+        warming.start();
+    }
+
+    /** Leaves even if user code blocks the orderly way. */
+    private static void exit() {
+        Thread last = new Thread(
+                () -> {
+                    try {
+                        Thread.sleep(LAST_WORDS_MILLIS);
+                    } catch (InterruptedException e) {
+                        Thread.currentThread().interrupt();
+                    }
+                    Runtime.getRuntime().halt(0);
+                },
+                "exit");
+        last.setDaemon(true);
+        last.start();
+        System.exit(0);
+    }
+}
