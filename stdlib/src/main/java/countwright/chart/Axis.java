@@ -24,6 +24,8 @@ record Axis(String title, Scale scale, double min, double max, List<Tick> ticks)
         abstract double position(double value);
     }
 
+    private static final char MINUS = '\u2212';
+
     record Tick(double value, String label) {}
 
     Axis {
@@ -81,7 +83,8 @@ record Axis(String title, Scale scale, double min, double max, List<Tick> ticks)
         int decimals = (int) Math.max(0, -Math.floor(Math.log10(step) + 1e-9));
         List<Tick> ticks = new ArrayList<>();
         for (long k = (long) Math.ceil(min / step - 1e-9); k * step <= max + step * 1e-9; k++) {
-            ticks.add(new Tick(k * step, NumberText.fixed(k * step, decimals)));
+            String label = NumberText.fixed(k * step, decimals).replace('-', MINUS);
+            ticks.add(new Tick(k * step, label));
         }
         return ticks;
     }

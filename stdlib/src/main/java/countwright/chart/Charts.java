@@ -28,10 +28,14 @@ public final class Charts {
      * <p>Other covariates are held at a typical value: the median of a number (the lower one of two), the most frequent
      * level of anything else, the first in order where two are equally frequent. The caption names them.
      *
-     * <p>A covariate taken as a number gives a curve. Points are the observed rates of single rows, or with more than 60
-     * rows of 20 bins with about equal numbers of rows: all events of a bin over all its exposure, at the mean of the
-     * covariate weighted by exposure. A covariate taken as levels gives one estimate and one observed rate (all events
-     * over all exposure) for each level, the highest estimate on top; of more than 60 levels those with most exposure.
+     * <p>A covariate taken as a number gives a curve. Points are single rows, or with more than 60 rows 20 bins with about
+     * equal numbers of rows, each at the mean of the covariate weighted by exposure. Where the model has no other
+     * covariate a point is the observed rate: all events over all exposure. Where it has, a point is adjusted to the
+     * values held, as {@code fitted rate * observed events / fitted events}, so that its distance from the curve shows
+     * where the model misses and nothing else.
+     *
+     * <p>A covariate taken as levels gives one estimate and one observed rate (all events over all exposure, not
+     * adjusted) for each level, the highest estimate on top; of more than 60 levels those with most exposure.
      *
      * @param covariate name of a column that some term of the model reads
      * @throws IllegalArgumentException if no term reads that column, naming those that some term reads
@@ -46,9 +50,9 @@ public final class Charts {
     }
 
     /**
-     * Returns the residuals of a kind against fitted means, with guides at 0 and ±2. The vertical axis is symmetric and
-     * holds every residual; the horizontal is logarithmic where the means differ by more than a factor of 20. From 100
-     * rows on, averages of 20 bins with about equal numbers of rows show a trend. Of more than 4,000 rows an even share is
+     * Returns the residuals of a kind against fitted means, with guides at 0 and ±2. The vertical axis holds every
+     * residual; the horizontal is logarithmic where the means differ by more than a factor of 20. From 100
+     * rows on, averages of 20 bins with about equal numbers of rows show a trend. Of more than 6,000 rows an even share is
      * drawn, and every row beyond ±3.
      */
     public static Chart residuals(FittedModel model, Residual kind) {

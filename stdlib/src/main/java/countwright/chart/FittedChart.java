@@ -2,26 +2,65 @@ package countwright.chart;
 
 import countwright.model.Prediction;
 import countwright.show.Grid;
-import countwright.table.NumberColumn;
-import countwright.table.Table;
 import java.util.Arrays;
 import java.util.List;
 
-/** What a model fits over one covariate taken as a number, beside what was observed. */
+/**
+ * What a model fits over one covariate taken as a number, beside what was observed.
+ *
+ * <p>With other covariates in the model, plain observed rates would lie off the curve wherever the rows differ from the
+ * typical values it is drawn for, which looks like a bad fit and is none. Each point is therefore adjusted as a
+ * standardised ratio is: the fitted rate at the typical values, times observed over fitted events of its rows. A point off
+ * the curve then says that the model misses there.
+ */
 final class FittedChart {
 
     private static final int CURVE_POINTS = 121;
     private static final int MOST_SINGLE_ROWS = 60;
     private static final int BINS = 20;
 
+    /** The curve with its interval at some values of the covariate. */
+    private static final class Curve {
+
+        private final double[] values;
+        private final List<Prediction> rows;
+
+        Curve(double[] values, List<Prediction> rows) {
+            this.values = values;
+            this.rows = rows;
+        }
+
+        double[] values() {
+            return values;
+        }
+
+        List<Prediction> rows() {
+            return rows;
+        }
+
+        double[] rates() {
+            return rows.stream().mapToDouble(Prediction::rate).toArray();
+        }
+
+        double[] lower() {
+            return rows.stream().mapToDouble(Prediction::rateLower).toArray();
+        }
+
+        double[] upper() {
+            return rows.stream().mapToDouble(Prediction::rateUpper).toArray();
+        }
+    }
+
     private final Fit fit;
     private final String covariate;
     private final Scenarios scenarios;
+    private final boolean adjusted;
 
     private FittedChart(Fit fit, String covariate) {
         this.fit = fit;
         this.covariate = covariate;
         this.scenarios = new Scenarios(fit, covariate);
+        this.adjusted = fit.covariates().size() > 1 || fit.offset().isPresent();
     }
 
     static Chart of(Fit fit, String covariate) {
@@ -30,102 +69,121 @@ final class FittedChart {
             throw new IllegalArgumentException("there is nothing to draw: the model used no row.");
         }
         return fit.isNumberIn(covariate)
-                ? new FittedChart(fit, covariate).curve()
+                ? new FittedChart(fit, covariate).chart()
                 : FittedLevelsChart.of(fit, covariate, new Scenarios(fit, covariate));
     }
 
-    private Chart curve() {
+    private Chart chart() {
         double[] values = fit.table().numbers(covariate).toArray();
-        double[] counts = fit.counts().get();
-        double[] exposures = fit.exposures().get();
         double low = Arrays.stream(values).min().orElseThrow();
         double high = Arrays.stream(values).max().orElseThrow();
-        double[] grid = grid(low, high);
-        List<Prediction> curve = fit.predict().apply(scenarios.at(grid));
-        double[] rates = curve.stream().mapToDouble(Prediction::rate).toArray();
-        double[] lower = curve.stream().mapToDouble(Prediction::rateLower).toArray();
-        double[] upper = curve.stream().mapToDouble(Prediction::rateUpper).toArray();
-
+        Curve curve = at(grid(low, high));
         boolean single = values.length <= MOST_SINGLE_ROWS;
         List<Groups.Group> pools = Groups.byQuantile(values, single ? values.length : BINS);
-        double[] pooledX = new double[pools.size()];
-        double[] observed = new double[pools.size()];
-        for (int i = 0; i < pooledX.length; i++) {
-            Groups.Group pool = pools.get(i);
-            double exposure = pool.sum(exposures);
-            for (int row : pool.rows().toArray()) {
-                pooledX[i] += values[row] * exposures[row] / exposure;
-            }
-            observed[i] = pool.sum(counts) / exposure;
-        }
+        double[] x = centres(pools, values);
+        double[] observed = observed(pools, x);
 
-        double top = Math.max(highest(upper), highest(observed));
-        RateUnit unit = RateUnit.forRates(fit.response(), fit.exposure(), Math.max(highest(rates), highest(observed)));
-        Axis x = Axis.linear(covariate, low, high, 8);
-        Axis y = Axis.linearWithRoomAtZero(unit.label(), top * unit.factor(), 6);
-        Ink pointInk = Ink.OBSERVED;
-        String title = (fit.exposure().isEmpty() ? "Fitted mean count over " : "Fitted rate over ") + covariate;
-        String span = unit.label() + ": " + unit.text(rates[0]) + " at " + covariate + " " + NumberText.plain(grid[0])
-                + (grid.length == 1
-                        ? ""
-                        : ", " + unit.text(rates[rates.length - 1]) + " at " + NumberText.plain(grid[grid.length - 1]));
-        Figure figure = Figure.titled(title, x, y)
-                .subtitle(span)
-                .caption(caption(pools.size(), single))
-                .layer(Layer.band(
-                        fit.levelText() + " interval of the mean",
-                        Ink.BAND,
-                        grid,
-                        unit.scaled(lower),
-                        unit.scaled(upper)))
-                .layer(Layer.line("fitted", Ink.FITTED, grid, unit.scaled(rates)))
-                .layer(Layer.points(pointName(single), pointInk, pooledX, unit.scaled(observed)));
-        String summary = "Fitted " + span + "." + scenarios.sentence();
-        return Chart.of(figure, summary, numbers(unit, grid).toString());
+        RateUnit unit =
+                RateUnit.forRates(fit.response(), fit.exposure(), Math.max(highest(curve.rates()), highest(observed)));
+        double top = Math.max(highest(curve.upper()), highest(observed)) * unit.factor();
+        Figure empty = Figure.titled(
+                        (fit.exposure().isEmpty() ? "Fitted mean count over " : "Fitted rate over ") + covariate,
+                        Axis.linear(covariate, low, high, 8),
+                        Axis.linearWithRoomAtZero(unit.label(), top, 6))
+                .subtitle(span(unit, curve))
+                .caption(caption(pools.size(), single));
+        Figure figure = withCurve(empty, unit, curve)
+                .layer(Layer.points(pointName(single), Ink.OBSERVED, x, unit.scaled(observed)));
+        String summary = "Fitted " + unit.label() + ": " + span(unit, curve) + "." + scenarios.sentence();
+        return Chart.of(figure, summary, numbers(unit, curve).toString());
+    }
+
+    private Figure withCurve(Figure figure, RateUnit unit, Curve curve) {
+        String interval = fit.levelText() + " interval of the mean";
+        double[] rates = unit.scaled(curve.rates());
+        double[] lower = unit.scaled(curve.lower());
+        double[] upper = unit.scaled(curve.upper());
+        if (curve.values().length == 1) {
+            return figure.layer(Layer.barsUp(interval, Ink.FITTED, curve.values(), lower, upper))
+                    .layer(Layer.points("fitted", Ink.FITTED, curve.values(), rates));
+        }
+        return figure.layer(Layer.band(interval, Ink.BAND, curve.values(), lower, upper))
+                .layer(Layer.line("fitted", Ink.FITTED, curve.values(), rates));
+    }
+
+    private Curve at(double[] values) {
+        return new Curve(values, fit.predict().apply(scenarios.at(values)));
+    }
+
+    /** Returns the mean of the covariate in each pool, weighted by exposure. */
+    private double[] centres(List<Groups.Group> pools, double[] values) {
+        double[] exposures = fit.exposures().get();
+        return pools.stream()
+                .mapToDouble(pool -> pool.rows()
+                                .mapToDouble(row -> values[row] * exposures[row])
+                                .sum()
+                        / pool.sum(exposures))
+                .toArray();
+    }
+
+    private double[] observed(List<Groups.Group> pools, double[] x) {
+        double[] counts = fit.counts().get();
+        double[] against = adjusted ? fit.means().get() : fit.exposures().get();
+        double[] typical = at(x).rates();
+        double[] observed = new double[x.length];
+        for (int i = 0; i < x.length; i++) {
+            double ratio = pools.get(i).sum(counts) / pools.get(i).sum(against);
+            observed[i] = adjusted ? typical[i] * ratio : ratio;
+        }
+        return observed;
     }
 
     private String pointName(boolean single) {
         String what = fit.exposure().isEmpty() ? "count" : "rate";
-        return single
-                ? "observed " + what
-                : fit.exposure().isEmpty() ? "observed mean, pooled" : "observed rate, pooled";
+        return "observed " + (single ? what : "mean " + what) + (adjusted ? ", adjusted" : "");
+    }
+
+    private String span(RateUnit unit, Curve curve) {
+        int last = curve.values().length - 1;
+        String start = unit.text(curve.rates()[0]) + " at " + covariate + " " + NumberText.plain(curve.values()[0]);
+        return last == 0
+                ? start
+                : "From " + start + " to " + unit.text(curve.rates()[last]) + " at " + covariate + " "
+                        + NumberText.plain(curve.values()[last]);
     }
 
     private String caption(int pools, boolean single) {
         int rows = fit.table().rowCount();
-        String points = single && pools == rows
-                ? "Each point is one row."
-                : single
-                        ? "Each point pools the rows with one value of " + covariate + "."
-                        : "Each point pools one of " + pools + " bins of " + covariate + " with about "
-                                + NumberText.count(Math.round((double) rows / pools)) + " rows each"
-                                + (fit.exposure().isEmpty() ? "" : ": all events over all exposure") + ".";
-        return points
-                + (fit.covariates().size() > 1 ? " Points are not adjusted for other covariates." : "")
-                + scenarios.sentence();
+        String points;
+        if (single) {
+            points = pools == rows ? "One point for each row" : "One point for each value of " + covariate;
+        } else {
+            points = "Points: " + pools + " bins of " + covariate + " with about "
+                    + NumberText.count(Math.round((double) rows / pools)) + " rows each";
+        }
+        return scenarios.sentence().strip()
+                + (scenarios.sentence().isEmpty() ? "" : " ")
+                + points
+                + (adjusted ? ", at the fitted rate times observed / fitted events of its rows." : ".");
     }
 
-    private Grid numbers(RateUnit unit, double[] grid) {
-        double[] chosen = grid.length == 1
-                ? grid
-                : new double[] {
-                    grid[0],
-                    grid[(grid.length - 1) / 4],
-                    grid[(grid.length - 1) / 2],
-                    grid[3 * (grid.length - 1) / 4],
-                    grid[grid.length - 1]
-                };
-        Table at = scenarios.at(chosen);
-        List<Prediction> predictions = fit.predict().apply(at);
-        NumberColumn values = at.numbers(covariate);
+    private Grid numbers(RateUnit unit, Curve curve) {
+        int last = curve.values().length - 1;
+        double start = curve.values()[0];
+        double end = curve.values()[last];
+        Curve chosen = last == 0
+                ? curve
+                : at(new double[] {
+                    start, start + 0.25 * (end - start), 0.5 * (start + end), end - 0.25 * (end - start), end
+                });
         Grid table = Grid.titled("")
                 .numberColumn(covariate)
                 .numberColumn("fitted " + unit.label())
                 .numberColumn(fit.levelText() + " interval of the mean");
-        for (int i = 0; i < chosen.length; i++) {
-            Prediction p = predictions.get(i);
+        for (int i = 0; i < chosen.values().length; i++) {
+            Prediction p = chosen.rows().get(i);
             table = table.row(
-                    NumberText.plain(values.value(i)),
+                    NumberText.plain(chosen.values()[i]),
                     unit.text(p.rate()),
                     unit.text(p.rateLower()) + " to " + unit.text(p.rateUpper()));
         }

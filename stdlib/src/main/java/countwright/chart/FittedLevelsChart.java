@@ -9,7 +9,8 @@ import java.util.List;
 /** What a model fits for the levels of one covariate, beside what was observed. */
 final class FittedLevelsChart {
 
-    private static final double OFFSET = 0.17;
+    /** How far, in rows, an observed rate stands below the estimate it belongs to. */
+    private static final double BELOW = 0.27;
 
     private record LevelRate(String name, Prediction fitted, double observed, double count, double exposure) {}
 
@@ -70,8 +71,8 @@ final class FittedLevelsChart {
             lower[i] = p.rateLower() * unit.factor();
             upper[i] = finiteOr(p.rateUpper(), 1e6 * highestRate) * unit.factor();
             observed[i] = level.observed() * unit.factor();
-            fittedY[i] = size - i + OFFSET;
-            observedY[i] = size - i - OFFSET;
+            fittedY[i] = size - i;
+            observedY[i] = size - i - BELOW;
             rows.add(new Figure.NamedRow(level.name(), unit.text(p.rate(), p.rateLower(), p.rateUpper())));
             grid = grid.row(
                     level.name(),
@@ -79,23 +80,29 @@ final class FittedLevelsChart {
                     unit.text(p.rateLower()) + " to " + unit.text(p.rateUpper()),
                     unit.text(level.observed()));
         }
+        boolean adjusted = fit.covariates().size() > 1;
         String what = fit.exposure().isEmpty() ? "mean count" : "rate";
         String left = size == levels
                 ? ""
                 : " Shown are the " + size + " of " + NumberText.count(levels) + " levels with the largest exposure.";
+        LevelRate top = shown.get(0);
+        LevelRate bottom = shown.get(size - 1);
         Figure figure = Figure.titled(
                         "Fitted " + what + " by " + covariate,
                         Axis.linearWithRoomAtZero(unit.label(), axisEnd, 7),
                         Axis.rows(size))
+                .subtitle("From " + unit.text(bottom.fitted().rate()) + " in " + bottom.name() + " to "
+                        + unit.text(top.fitted().rate()) + " in " + top.name())
                 .caption("Highest fitted " + what + " on top." + scenarios.sentence()
-                        + (fit.covariates().size() > 1 ? " Observed " + what + "s are not adjusted for them." : "")
+                        + (adjusted
+                                ? " Observed " + what + "s are all events over all exposure, not adjusted for them."
+                                : "")
                         + left)
                 .rows("fitted (" + fit.levelText() + " interval)", rows)
                 .layer(Layer.barsAcross(fit.levelText() + " interval of the mean", Ink.FITTED, lower, upper, fittedY))
-                .layer(Layer.points("observed", Ink.OBSERVED_BESIDE, observed, observedY))
+                .layer(Layer.points(
+                        adjusted ? "observed, not adjusted" : "observed", Ink.OBSERVED_BESIDE, observed, observedY))
                 .layer(Layer.points("fitted", Ink.FITTED, fitted, fittedY));
-        LevelRate top = shown.get(0);
-        LevelRate bottom = shown.get(size - 1);
         String summary = "Fitted " + unit.label() + " is highest in " + top.name() + " at " + text(unit, top)
                 + (size == 1 ? "." : " and lowest in " + bottom.name() + " at " + text(unit, bottom) + ".")
                 + scenarios.sentence();

@@ -36,7 +36,9 @@ enum Ink {
         this.color = color;
         this.marking = marking;
         float @Nullable [] pattern = dash.length == 0 ? null : dash;
-        this.stroke = new BasicStroke(width, BasicStroke.CAP_BUTT, BasicStroke.JOIN_ROUND, 10f, pattern, 0f);
+        // The charting library draws a curve piece by piece: round ends close the joints.
+        int cap = pattern == null ? BasicStroke.CAP_ROUND : BasicStroke.CAP_BUTT;
+        this.stroke = new BasicStroke(width, cap, BasicStroke.JOIN_ROUND, 10f, pattern, 0f);
     }
 
     Color color() {

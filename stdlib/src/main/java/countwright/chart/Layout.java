@@ -23,14 +23,20 @@ final class Layout {
     }
 
     /** The sample of an ink in the key, centred at a point. */
-    record Sample(Layer.Form form, Ink ink, double x, double y) {}
+    record Sample(Layer.Form form, Ink ink, double x, double y) {
+
+        double width() {
+            return form == Layer.Form.POINTS ? POINT_SAMPLE : LINE_SAMPLE;
+        }
+    }
 
     /** A tick or row at its place along an axis. */
     record Mark(double position) {}
 
     private record Entry(String name, Layer.Form form, Ink ink) {}
 
-    private static final double SAMPLE_WIDTH = 24;
+    private static final double LINE_SAMPLE = 24;
+    private static final double POINT_SAMPLE = 11;
     private static final double GAP = 8;
 
     private final Figure figure;
@@ -47,7 +53,7 @@ final class Layout {
         y = key(y);
         List<String> yTitle = Lettering.wrap(figure.y().title(), Style.axisTitle(), fullWidth(), 2);
         Rows rows = Rows.of(figure.rows());
-        int top = (int) Math.ceil(aboveThePlot(y, yTitle, rows) + 9);
+        int top = (int) Math.ceil(aboveThePlot(y, yTitle, rows) + 6);
 
         int left = (int) Math.ceil(Style.MARGIN + (rows.isEmpty() ? widest(figure.y()) : rows.nameWidth()) + GAP);
         int right = (int) Math.floor(Style.WIDTH - Style.MARGIN - (rows.isEmpty() ? 0 : rows.numbersWidth() + GAP + 4));
@@ -112,10 +118,6 @@ final class Layout {
         return plot.y + (1 - figure.y().fraction(value)) * plot.height;
     }
 
-    static double sampleWidth() {
-        return SAMPLE_WIDTH;
-    }
-
     private static double fullWidth() {
         return Style.WIDTH - 2.0 * Style.MARGIN;
     }
@@ -152,22 +154,22 @@ final class Layout {
         double x = Style.MARGIN;
         double y = top + 6;
         for (Entry entry : entries) {
-            List<String> lines = Lettering.wrap(entry.name(), font, fullWidth() - SAMPLE_WIDTH - 6, 2);
+            double indent = (entry.form() == Layer.Form.POINTS ? POINT_SAMPLE : LINE_SAMPLE) + 6;
+            List<String> lines = Lettering.wrap(entry.name(), font, fullWidth() - indent, 2);
             double width = lines.stream()
                     .mapToDouble(line -> Lettering.width(line, font))
                     .max()
                     .orElse(0);
-            double entryWidth = SAMPLE_WIDTH + 6 + width;
-            if (x > Style.MARGIN && x + entryWidth > Style.WIDTH - Style.MARGIN) {
+            if (x > Style.MARGIN && x + indent + width > Style.WIDTH - Style.MARGIN) {
                 x = Style.MARGIN;
                 y += lineHeight;
             }
-            samples.add(new Sample(entry.form(), entry.ink(), x + SAMPLE_WIDTH / 2, y + lineHeight / 2));
-            double end = lines(lines, font, Style.TEXT, x + SAMPLE_WIDTH + 6, y + 1);
+            samples.add(new Sample(entry.form(), entry.ink(), x + (indent - 6) / 2, y + lineHeight / 2));
+            double end = lines(lines, font, Style.TEXT, x + indent, y + 1);
             if (lines.size() > 1) {
                 y = end - lineHeight;
             }
-            x += entryWidth + 18;
+            x += indent + width + 20;
         }
         return y + lineHeight;
     }

@@ -126,7 +126,7 @@ final class Painter {
 
     private static void paintSample(Graphics2D g, Layout.Sample sample) {
         Ink ink = sample.ink();
-        double half = Layout.sampleWidth() / 2;
+        double half = sample.width() / 2;
         g.setColor(ink.color());
         g.setStroke(ink.stroke());
         switch (sample.form()) {

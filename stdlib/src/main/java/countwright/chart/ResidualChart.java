@@ -10,7 +10,7 @@ import java.util.List;
 final class ResidualChart {
 
     private static final int CROWD = 200;
-    private static final int MOST_POINTS = 4_000;
+    private static final int MOST_POINTS = 6_000;
     private static final int BINS = 20;
     private static final int ROWS_FOR_AVERAGES = 100;
     private static final double ALWAYS_SHOWN = 3;
@@ -39,16 +39,14 @@ final class ResidualChart {
         }
         double low = Arrays.stream(x).min().orElseThrow();
         double high = Arrays.stream(x).max().orElseThrow();
-        double reach = Math.max(
-                2.4,
-                Math.max(
-                        Arrays.stream(y).max().orElseThrow(),
-                        -Arrays.stream(y).min().orElseThrow()));
+        double lowest = Math.min(-2.4, Arrays.stream(y).min().orElseThrow());
+        double highest = Math.max(2.4, Arrays.stream(y).max().orElseThrow());
+        double air = 0.04 * (highest - lowest);
         boolean log = high / low > LOG_FROM_RATIO && low > 0;
         String xTitle = "fitted mean " + fit.response();
         Axis xAxis = log ? Axis.log(xTitle, low, high, 7) : Axis.linear(xTitle, low, high, 7);
         Axis yAxis = new Axis(
-                name, Axis.Scale.LINEAR, -1.07 * reach, 1.07 * reach, Axis.linearTicks(-1.07 * reach, 1.07 * reach, 6));
+                name, Axis.Scale.LINEAR, lowest - air, highest + air, Axis.linearTicks(lowest - air, highest + air, 6));
 
         int[] drawn = drawn(y);
         long beyond = Arrays.stream(y).filter(r -> Math.abs(r) > 2).count();
@@ -62,7 +60,7 @@ final class ResidualChart {
                 .guide(Figure.Guide.across("\u00b12", Ink.LIMIT, xAxis, 2))
                 .guide(Figure.Guide.across("", Ink.LIMIT, xAxis, -2))
                 .layer(Layer.points(
-                        drawn.length > CROWD ? "one row" : "one row ",
+                        "one row",
                         drawn.length > CROWD ? Ink.OBSERVED_CROWD : Ink.OBSERVED,
                         pick(x, drawn),
                         pick(y, drawn)));
@@ -88,9 +86,9 @@ final class ResidualChart {
     }
 
     private static String caption(int usable, int drawn, int all, double medianMean) {
-        StringBuilder caption = new StringBuilder("Dashed: zero. Dotted: \u00b12.");
+        StringBuilder caption = new StringBuilder();
         if (drawn < usable) {
-            caption.append(" Drawn are ")
+            caption.append("Drawn are ")
                     .append(NumberText.count(drawn))
                     .append(" of ")
                     .append(NumberText.count(usable))
@@ -106,7 +104,7 @@ final class ResidualChart {
             caption.append(" Most fitted means are below 3: residuals then lie in stripes, one for each count, and the"
                     + " guide at \u00b12 is rough.");
         }
-        return caption.toString();
+        return caption.toString().strip();
     }
 
     private static Grid quantiles(String name, double[] residuals) {

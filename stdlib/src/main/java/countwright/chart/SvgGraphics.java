@@ -76,7 +76,18 @@ final class SvgGraphics extends Graphics2D {
 
     @Override
     public void fill(Shape shape) {
-        paint(transform.createTransformedShape(shape));
+        Shape onPage = transform.createTransformedShape(shape);
+        boolean moved = (transform.getType() & ~AffineTransform.TYPE_TRANSLATION) == 0;
+        // Written as what it is, a dot takes a third of the space: residual charts hold thousands.
+        if (moved && shape instanceof Ellipse2D dot && dot.getWidth() == dot.getHeight() && isInsideClip(onPage)) {
+            if (color.getAlpha() > 0) {
+                out.append(SvgText.circle(onPage.getBounds2D()))
+                        .append(SvgText.paint("fill", color))
+                        .append("/>\n");
+            }
+            return;
+        }
+        paint(onPage);
     }
 
     @Override

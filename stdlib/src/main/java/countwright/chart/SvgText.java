@@ -4,6 +4,7 @@ import java.awt.BasicStroke;
 import java.awt.Color;
 import java.awt.Shape;
 import java.awt.geom.PathIterator;
+import java.awt.geom.Rectangle2D;
 import java.util.Locale;
 
 /** Shapes, colours and strokes as the attributes of SVG. */
@@ -46,6 +47,16 @@ final class SvgText {
             }
         }
         return data.toString();
+    }
+
+    /** Returns the start of a circle inside a square. */
+    static String circle(Rectangle2D square) {
+        return String.format(
+                Locale.ROOT,
+                "<circle cx=\"%.2f\" cy=\"%.2f\" r=\"%.2f\"",
+                square.getCenterX(),
+                square.getCenterY(),
+                square.getWidth() / 2);
     }
 
     static String paint(String attribute, Color color) {
