@@ -2,7 +2,6 @@ package countwright.chart;
 
 import countwright.show.Displayable;
 import countwright.show.MimeBundle;
-import java.awt.Color;
 import java.awt.Graphics2D;
 import java.awt.image.BufferedImage;
 import java.io.ByteArrayOutputStream;
@@ -14,8 +13,6 @@ import java.nio.file.Path;
 import java.util.Locale;
 import javax.imageio.ImageIO;
 import org.knowm.xchart.XYChart;
-import org.knowm.xchart.style.Styler.LegendPosition;
-import org.knowm.xchart.style.XYStyler;
 
 /**
  * A finished figure. It shows itself as a PNG picture at twice its display size, as SVG, and in plain text as the numbers
@@ -105,36 +102,7 @@ public final class Chart implements Displayable {
      * plain axes and titles drawn by that library. Its changes do not reach this figure.
      */
     public XYChart xchart() {
-        Layout layout = layout();
-        XYChart chart = new XYChart(Style.WIDTH, layout.height());
-        chart.setTitle(figure.title());
-        chart.setXAxisTitle(figure.x().title());
-        chart.setYAxisTitle(figure.y().title());
-        XYStyler styler = chart.getStyler();
-        styler.setBaseFont(Style.label());
-        styler.setChartTitleFont(Style.title());
-        styler.setAxisTitleFont(Style.axisTitle());
-        styler.setAxisTickLabelsFont(Style.label());
-        styler.setLegendFont(Style.label());
-        styler.setChartBackgroundColor(Style.BACKGROUND);
-        styler.setPlotBackgroundColor(Style.BACKGROUND);
-        styler.setPlotBorderColor(Style.GRID);
-        styler.setPlotGridLinesColor(Style.GRID);
-        styler.setLegendPosition(LegendPosition.OutsideS);
-        styler.setLegendBorderColor(new Color(255, 255, 255, 0));
-        Painter painter = new Painter(figure, layout);
-        painter.setRanges(styler);
-        painter.addLayers(chart);
-        int rows = figure.rows().size();
-        if (rows > 0) {
-            chart.setCustomYAxisTickLabelsFormatter(value -> {
-                int row = rows - (int) Math.rint(value);
-                return value == Math.rint(value) && row >= 0 && row < rows
-                        ? figure.rows().get(row).name()
-                        : " ";
-            });
-        }
-        return chart;
+        return LibraryChart.of(figure, layout());
     }
 
     @Override

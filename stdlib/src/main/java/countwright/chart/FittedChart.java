@@ -164,7 +164,7 @@ final class FittedChart {
         return scenarios.sentence().strip()
                 + (scenarios.sentence().isEmpty() ? "" : " ")
                 + points
-                + (adjusted ? ", at the fitted rate times observed / fitted events of its rows." : ".");
+                + (adjusted ? ", at the fitted rate times observed / fitted events." : ".");
     }
 
     private Grid numbers(RateUnit unit, Curve curve) {

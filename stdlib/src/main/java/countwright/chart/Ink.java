@@ -52,4 +52,9 @@ enum Ink {
     BasicStroke stroke() {
         return stroke;
     }
+
+    /** Returns the stroke of interval bars, which end exactly at their ends. */
+    BasicStroke barStroke() {
+        return new BasicStroke(stroke.getLineWidth(), BasicStroke.CAP_BUTT, BasicStroke.JOIN_ROUND);
+    }
 }

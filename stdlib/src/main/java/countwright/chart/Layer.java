@@ -90,7 +90,11 @@ final class Layer {
         series.setLineStyle(ink.stroke());
         series.setMarker(SeriesMarkers.NONE);
         switch (form) {
-            case LINE, BARS -> series.setXYSeriesRenderStyle(XYSeriesRenderStyle.Line);
+            case LINE -> series.setXYSeriesRenderStyle(XYSeriesRenderStyle.Line);
+            case BARS -> {
+                series.setXYSeriesRenderStyle(XYSeriesRenderStyle.Line);
+                series.setLineStyle(ink.barStroke());
+            }
             case BAND -> {
                 series.setXYSeriesRenderStyle(XYSeriesRenderStyle.PolygonArea);
                 series.setLineStyle(SeriesLines.NONE);

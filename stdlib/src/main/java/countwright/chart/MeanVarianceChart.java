@@ -2,8 +2,10 @@ package countwright.chart;
 
 import countwright.show.Grid;
 import java.util.ArrayList;
+import java.util.Arrays;
 import java.util.Comparator;
 import java.util.List;
+import java.util.stream.DoubleStream;
 
 /** Variance against mean of the counts of groups, beside the line on which Poisson counts lie. */
 final class MeanVarianceChart {
@@ -70,8 +72,11 @@ final class MeanVarianceChart {
                 log ? spreads.stream().filter(s -> s.variance() > 0).toList() : spreads;
         double[] means = shown.stream().mapToDouble(Spread::mean).toArray();
         double[] variances = shown.stream().mapToDouble(Spread::variance).toArray();
+        // The vertical axis holds the means too, or the line would be out of sight where the variances are far from it.
+        double[] both = DoubleStream.concat(Arrays.stream(means), Arrays.stream(variances))
+                .toArray();
         Axis x = axis("mean of " + count + " in the group", means, log);
-        Axis y = axis("variance of " + count + " in the group", variances, log);
+        Axis y = axis("variance of " + count + " in the group", both, log);
         double lineEnd = Math.min(x.max(), y.max());
         double lineStart = log ? Math.max(x.min(), y.min()) : 0;
         int left = groupCount - shown.size();
@@ -97,15 +102,15 @@ final class MeanVarianceChart {
     private static boolean wantsLog(List<Spread> spreads) {
         double[] positive = spreads.stream()
                 .filter(s -> s.variance() > 0)
-                .flatMapToDouble(s -> java.util.stream.DoubleStream.of(s.mean(), s.variance()))
+                .flatMapToDouble(s -> DoubleStream.of(s.mean(), s.variance()))
                 .sorted()
                 .toArray();
         return positive.length >= 6 && positive[positive.length - 1] / positive[0] > LOG_FROM_RATIO;
     }
 
     private static Axis axis(String title, double[] values, boolean log) {
-        double low = java.util.Arrays.stream(values).min().orElse(0);
-        double high = java.util.Arrays.stream(values).max().orElse(1);
+        double low = Arrays.stream(values).min().orElse(0);
+        double high = Arrays.stream(values).max().orElse(1);
         return log ? Axis.log(title, low, high, 7) : Axis.linearWithRoomAtZero(title, high, 6);
     }
 

@@ -1,6 +1,5 @@
 package countwright.chart;
 
-import java.awt.BasicStroke;
 import java.awt.Color;
 import java.awt.Graphics2D;
 import java.awt.Rectangle;
@@ -132,7 +131,7 @@ final class Painter {
         switch (sample.form()) {
             case LINE -> g.draw(new Line2D.Double(sample.x() - half, sample.y(), sample.x() + half, sample.y()));
             case BARS -> {
-                g.setStroke(new BasicStroke(ink.stroke().getLineWidth()));
+                g.setStroke(ink.barStroke());
                 g.draw(new Line2D.Double(sample.x() - half, sample.y(), sample.x() + half, sample.y()));
             }
             case BAND -> g.fill(new Rectangle2D.Double(sample.x() - half, sample.y() - 6, 2 * half, 12));

@@ -60,12 +60,13 @@ class ChartTest {
         XYChart library = RateRatioChart.of(FIT).xchart();
 
         assertThat(library.getTitle()).isEqualTo("Rate ratios for faults");
-        BufferedImage picture =
-                new BufferedImage(library.getWidth(), library.getHeight(), BufferedImage.TYPE_INT_RGB);
+        BufferedImage picture = new BufferedImage(library.getWidth(), library.getHeight(), BufferedImage.TYPE_INT_RGB);
         library.paint(picture.createGraphics(), library.getWidth(), library.getHeight());
         ImageIO.write(picture, "png", Path.of("target", "xchart.png").toFile());
         library.getStyler().setLegendVisible(false);
-        assertThat(chart.xchart().getStyler().isLegendVisible()).as("another chart").isTrue();
+        assertThat(chart.xchart().getStyler().isLegendVisible())
+                .as("another chart")
+                .isTrue();
     }
 
     @Test
