@@ -121,6 +121,9 @@ sealed interface Effect {
 
         @Override
         public String name(int index) {
+            if (first instanceof Linear linear && first.equals(second)) {
+                return linear.column() + "² (per 1)";
+            }
             return first.name(index / second.width()) + " × " + second.name(index % second.width());
         }
 

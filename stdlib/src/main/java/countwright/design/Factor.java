@@ -1,6 +1,7 @@
 package countwright.design;
 
 import countwright.table.Column;
+import countwright.table.NearNames;
 import countwright.table.NumberColumn;
 import countwright.table.Table;
 import countwright.table.TextColumn;
@@ -43,8 +44,8 @@ public final class Factor {
         if (reference < 0) {
             String wanted = chosenReference.orElseThrow();
             throw new IllegalArgumentException("levels(\"" + name + "\") has no level '" + wanted
-                    + "' to be the reference in the rows used; its levels are " + Nearest.list(levels) + "."
-                    + Nearest.hint(wanted, levels));
+                    + "' to be the reference in the rows used; its levels are " + NearNames.list(levels) + "."
+                    + question(wanted, levels));
         }
         return new Factor(name, levels, reference);
     }
@@ -147,16 +148,21 @@ public final class Factor {
         return List.copyOf(texts);
     }
 
+    private static String question(String given, List<String> levels) {
+        String question = NearNames.question(given, levels);
+        return question.isEmpty() ? "" : " " + question;
+    }
+
     private IllegalArgumentException unknown(Table table, Column values, int row) {
         String place = "row " + (row + 1) + " of column '" + column + "' in " + table.source();
         if (values.isMissing(row)) {
             return new IllegalArgumentException(place + " is missing, but the model needs a level there: "
-                    + Nearest.list(levels) + ". Fill it in, or leave the row out.");
+                    + NearNames.list(levels) + ". Fill it in, or leave the row out.");
         }
         String given = levelText(values, row);
         return new IllegalArgumentException(place + " is '" + given
-                + "', a level the model was not fitted to; it knows " + Nearest.list(levels) + "."
-                + Nearest.hint(given, levels));
+                + "', a level the model was not fitted to; it knows " + NearNames.list(levels) + "."
+                + question(given, levels));
     }
 
     @Override

@@ -28,6 +28,6 @@ public record InteractionTerm(MainTerm first, MainTerm second) implements Term {
 
     @Override
     public String label() {
-        return first.label() + " × " + second.label();
+        return first.equals(second) ? first.label() + "²" : first.label() + " × " + second.label();
     }
 }

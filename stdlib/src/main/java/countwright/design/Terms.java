@@ -25,7 +25,7 @@ public final class Terms {
      * {@code on(linear("age"), levels("doorType"), interaction(linear("age"), levels("doorType")))} for slopes and levels
      * that both differ. Without {@code levels("doorType")} the door types share one baseline and differ in slope only.
      *
-     * <p>Linear × linear gives one coefficient; linear × levels one difference of slopes for each level but the reference;
+     * <p>Linear × linear gives one coefficient, and for a column with itself that of its square; linear × levels one difference of slopes for each level but the reference;
      * levels × levels one for each pair of levels in which neither is the reference. A factor that stands in a main term
      * with a chosen reference has the same reference in its interactions, unless they choose their own.
      */

@@ -120,6 +120,11 @@ public final class FittedModel implements Displayable {
                 .toList();
     }
 
+    /** Returns the rate ratios and the baseline rate with their intervals, to be shown. */
+    public Grid rateRatioTable() {
+        return new ModelReport(this).ratios();
+    }
+
     /** Returns the rate at the baseline, with its Wald interval. */
     public BaselineRate baselineRate() {
         double z = Interval.halfWidth(level);

@@ -5,6 +5,7 @@ import countwright.design.InteractionTerm;
 import countwright.design.LinearTerm;
 import countwright.design.Term;
 import countwright.fit.ColumnState;
+import countwright.fit.Convergence;
 import countwright.fit.Estimate;
 import countwright.show.Grid;
 import countwright.show.MimeBundle;
@@ -17,6 +18,9 @@ import java.util.Set;
 
 /** Lays out a fitted model for its reader: what drives the rate and how sure that is, then how well the model holds. */
 final class ModelReport {
+
+    /** A standard error of a log ratio that says nothing: the interval would span over 30 powers of ten. */
+    private static final double MEANINGLESS = 20;
 
     private final FittedModel model;
 
@@ -33,42 +37,61 @@ final class ModelReport {
         return html.isEmpty() ? MimeBundle.text(text) : MimeBundle.text(text).withHtml(html);
     }
 
-    private Grid ratios() {
+    /** Returns the rate ratios and the baseline rate, with the warning not to use them where there is one. */
+    Grid ratios() {
         Grid grid = Grid.titled(title())
                 .textColumn("effect")
                 .numberColumn("rate ratio")
                 .numberColumn(Interval.percent(model.level()) + " interval")
                 .numberColumn("p");
-        Estimate estimate = model.fit().estimate();
         Iterator<RateRatio> ratios = model.rateRatios().iterator();
+        Estimate estimate = model.fit().estimate();
         for (int column = 1; column < estimate.columnCount(); column++) {
-            String name = model.fit().design().columnNames().get(column);
+            String name = model.design().columnNames().get(column);
             if (estimate.state(column) == ColumnState.ESTIMATED) {
-                RateRatio ratio = ratios.next();
-                double standardError = ratio.ratio() * model.fit().standardError(column);
-                grid = grid.row(
-                        name,
-                        Numbers.estimate(ratio.ratio(), standardError),
-                        Numbers.interval(ratio.lower(), ratio.upper()),
-                        Numbers.pValue(ratio.pValue()));
-            } else if (estimate.state(column) == ColumnState.UNBOUNDED) {
-                grid = grid.row(name, "no events", Numbers.ABSENT, Numbers.ABSENT);
+                grid = row(grid, column, ratios.next());
             } else {
-                grid = grid.row(name, "left out", Numbers.ABSENT, Numbers.ABSENT);
+                String reason = estimate.state(column) == ColumnState.UNBOUNDED ? "no events" : "left out";
+                grid = grid.row(name, reason, Numbers.ABSENT, Numbers.ABSENT);
             }
         }
-        return baseline(grid);
+        grid = baseline(grid);
+        for (String warning : Notices.ofConvergence(model.fit())) {
+            grid = grid.note(warning);
+        }
+        return grid;
+    }
+
+    private Grid row(Grid grid, int column, RateRatio ratio) {
+        if (grows(column)) {
+            return grid.row(ratio.name(), "not finite", Numbers.ABSENT, Numbers.ABSENT);
+        }
+        if (model.fit().standardError(column) > MEANINGLESS) {
+            return grid.row(ratio.name(), "not determined", Numbers.ABSENT, Numbers.ABSENT);
+        }
+        double standardError = ratio.ratio() * model.fit().standardError(column);
+        Rounded rounded = Rounded.of(ratio.ratio(), standardError, ratio.lower(), ratio.upper());
+        return grid.row(ratio.name(), rounded.estimate(), rounded.interval(), Numbers.pValue(ratio.pValue()));
+    }
+
+    private boolean grows(int column) {
+        return model.convergence() instanceof Convergence.NoFiniteMaximum none
+                && none.columns().contains(column);
     }
 
     private Grid baseline(Grid grid) {
         BaselineRate baseline = model.baselineRate();
-        RateUnit unit = RateUnit.fitting(baseline.rate(), model.spec().exposure());
+        RateUnit unit =
+                RateUnit.fitting(grows(0) ? 1 : baseline.rate(), model.spec().exposure());
         double standardError = baseline.rate() * model.fit().standardError(0);
-        Grid withRow = grid.row(
-                unit.label("baseline"),
-                Numbers.estimate(unit.scaled(baseline.rate()), unit.scaled(standardError)),
-                Numbers.interval(unit.scaled(baseline.lower()), unit.scaled(baseline.upper())),
-                "");
+        Rounded rounded = grows(0)
+                ? new Rounded("not finite", Numbers.ABSENT)
+                : Rounded.of(
+                        unit.scaled(baseline.rate()),
+                        unit.scaled(standardError),
+                        unit.scaled(baseline.lower()),
+                        unit.scaled(baseline.upper()));
+        Grid withRow = grid.row(unit.label("baseline"), rounded.estimate(), rounded.interval(), "");
         List<String> settings = baselineSettings();
         return settings.isEmpty() ? withRow : withRow.note("Baseline: " + String.join(", ", settings) + ".");
     }
@@ -83,15 +106,15 @@ final class ModelReport {
         }
         int df = model.residualDegreesOfFreedom();
         String dispersion = df > 0 ? Numbers.significant(model.dispersion(), 3) : Numbers.ABSENT;
-        grid = grid.row("degrees of freedom left", Numbers.count(df))
+        grid = grid.row("residual degrees of freedom", Numbers.count(df))
                 .row("deviance", Numbers.significant(model.deviance(), 4))
                 .row("deviance of the baseline alone", Numbers.significant(model.nullDeviance(), 4))
                 .row("Pearson chi-square", Numbers.significant(model.pearsonChiSquare(), 4))
-                .row("dispersion (Pearson / degrees of freedom)", dispersion)
+                .row("dispersion (Pearson / residual df)", dispersion)
                 .row("log-likelihood", Numbers.fixed(model.logLikelihood(), 2))
                 .row("AIC", Numbers.fixed(model.aic(), 2))
                 .row("BIC", Numbers.fixed(model.bic(), 2));
-        for (String notice : model.notices()) {
+        for (String notice : Notices.ofData(model)) {
             grid = grid.note(notice);
         }
         return grid;
@@ -99,7 +122,8 @@ final class ModelReport {
 
     private String title() {
         String per = model.spec().exposure().map(name -> " per " + name).orElse("");
-        return "What drives the rate: " + model.spec().response() + per + " ("
+        String driven = per.isEmpty() ? "What drives the mean count: " : "What drives the rate: ";
+        return driven + model.spec().response() + per + " ("
                 + model.spec().family().name() + ", log link)";
     }
 

@@ -12,18 +12,27 @@ final class Notices {
 
     private static final int NAMED = 8;
 
+    /** A departure of the dispersion from 1 that is not worth a word however many rows show it. */
+    private static final double SLIGHT = 0.1;
+
     private Notices() {}
 
     static List<String> of(FittedModel model) {
+        List<String> notices = new ArrayList<>(ofConvergence(model.fit()));
+        notices.addAll(ofData(model));
+        return List.copyOf(notices);
+    }
+
+    /** Returns the sentences on rows, columns and dispersion. */
+    static List<String> ofData(FittedModel model) {
         Fit fit = model.fit();
         List<String> notices = new ArrayList<>();
-        convergence(fit, notices);
         fit.leftOut().ifPresent(notices::add);
         List<String> unbounded = named(fit, ColumnState.UNBOUNDED);
         if (!unbounded.isEmpty()) {
             notices.add("No finite estimate, because there is not one event in its rows: " + list(unbounded)
                     + ". Its rate is estimated as 0; merge the level with another, leave it out, or give an exact upper limit"
-                    + " for its rate. The other estimates are not affected.");
+                    + " for its rate.");
         }
         List<String> aliased = named(fit, ColumnState.ALIASED);
         if (!aliased.isEmpty()) {
@@ -34,14 +43,15 @@ final class Notices {
         if (!empty.isEmpty()) {
             notices.add("Left out, because no row with events bears on it: " + list(empty) + ".");
         }
-        dispersion(model, notices);
+        notices.addAll(ofDispersion(model));
         return List.copyOf(notices);
     }
 
-    private static void convergence(Fit fit, List<String> notices) {
+    /** Returns a warning if the estimates are not the maximum of the likelihood. */
+    static List<String> ofConvergence(Fit fit) {
         Convergence end = fit.estimate().convergence();
         if (end instanceof Convergence.NotConverged stopped) {
-            notices.add("The iteration stopped after " + stopped.iterations()
+            return List.of("The iteration stopped after " + stopped.iterations()
                     + " steps without reaching the maximum (Newton"
                     + " decrement " + Numbers.significant(stopped.decrement(), 2)
                     + "): do not use these estimates. Look for extreme values in the columns of the terms, or use fewer"
@@ -49,36 +59,39 @@ final class Notices {
         } else if (end instanceof Convergence.NoFiniteMaximum none) {
             List<String> names =
                     none.columns().stream().map(fit.design().columnNames()::get).toList();
-            notices.add(
+            return List.of(
                     "There is no finite maximum: some combination of terms singles out rows without any event, so these"
-                            + " coefficients would grow for ever: " + (names.isEmpty() ? "(not isolated)" : list(names))
+                            + " coefficients grow without end: " + (names.isEmpty() ? "(not isolated)" : list(names))
                             + ". Do not use them; merge levels, or leave out the interaction or term that singles those rows out.");
         }
+        return List.of();
     }
 
-    private static void dispersion(FittedModel model, List<String> notices) {
+    /** Returns a sentence on the dispersion if it is not near 1 by more than chance. */
+    static List<String> ofDispersion(FittedModel model) {
         int df = model.residualDegreesOfFreedom();
         if (df <= 0) {
-            notices.add(
+            return List.of(
                     "There are as many coefficients as rows that bear on them, so nothing is left to judge the fit by.");
-            return;
         }
+        // Under the model the statistic has mean 1 and a standard deviation near sqrt(2 / df).
+        double margin = Math.max(SLIGHT, 2 * Math.sqrt(2.0 / df));
         double dispersion = model.dispersion();
-        double chance = 2 * Math.sqrt(2.0 / df);
-        String value = Numbers.significant(dispersion, 2);
-        if (dispersion > 1 + Math.max(0.1, chance)) {
-            notices.add("Dispersion " + value + ": the counts vary more than a "
-                    + model.spec().family().name()
+        String start = "Dispersion " + Numbers.significant(dispersion, 2) + ": the counts vary ";
+        String family = model.spec().family().name();
+        if (dispersion > 1 + margin) {
+            return List.of(start + "more than a " + family
                     + " model allows. These intervals are too narrow, by a factor of about "
                     + Numbers.significant(Math.sqrt(dispersion), 2)
                     + " if the excess is alike everywhere; look for a missing term or exposure, or for rows that belong"
                     + " together.");
-        } else if (dispersion < 1 - Math.max(0.1, chance)) {
-            notices.add("Dispersion " + value + ": the counts vary less than a "
-                    + model.spec().family().name()
+        }
+        if (dispersion < 1 - margin) {
+            return List.of(start + "less than a " + family
                     + " model expects, as when they are limited or evened out. These intervals are wider than they need"
                     + " be.");
         }
+        return List.of();
     }
 
     private static List<String> named(Fit fit, ColumnState state) {

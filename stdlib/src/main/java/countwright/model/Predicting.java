@@ -2,11 +2,14 @@ package countwright.model;
 
 import countwright.fit.RowFits;
 import countwright.fit.RowSource;
+import countwright.table.NearNames;
 import countwright.table.NumberColumn;
 import countwright.table.Table;
 import java.util.ArrayList;
+import java.util.LinkedHashSet;
 import java.util.List;
 import java.util.Optional;
+import java.util.Set;
 import java.util.function.DoublePredicate;
 
 /** From a fitted model and new rows to predictions. */
@@ -16,6 +19,7 @@ final class Predicting {
 
     static Predictions predict(FittedModel model, Table scenarios) {
         CountModel spec = model.spec();
+        checkColumns(spec, scenarios);
         Optional<NumberColumn> exposures =
                 spec.exposure().filter(scenarios::has).map(scenarios::numbers);
         exposures.ifPresent(column -> check(
@@ -45,8 +49,9 @@ final class Predicting {
         model.spec()
                 .exposure()
                 .filter(name -> !scenarios.has(name))
-                .ifPresent(name -> notes.add("The table has no column '" + name + "', so these are rates per 1 " + name
-                        + "; add the column to get expected counts."));
+                .ifPresent(name -> notes.add("The table has no column '" + name
+                        + "', so there are rates but no expected counts; the values of the rates are per 1 " + name
+                        + "."));
         if (doubtful) {
             notes.add(
                     "Some rows have a value for a coefficient that was left out of the fit; they are predicted as if what"
@@ -57,10 +62,23 @@ final class Predicting {
                     "A rate of 0 stands for a level without a single event in the fit; the fit gives no upper limit for"
                             + " it.");
         }
-        Notices.of(model).stream()
-                .filter(notice -> notice.startsWith("Dispersion") || notice.contains("Do not use"))
-                .forEach(notes::add);
+        notes.addAll(Notices.ofConvergence(model.fit()));
+        notes.addAll(Notices.ofDispersion(model));
         return notes;
+    }
+
+    private static void checkColumns(CountModel spec, Table scenarios) {
+        Set<String> needed = new LinkedHashSet<>();
+        spec.terms().forEach(term -> needed.addAll(term.columns()));
+        spec.offset().ifPresent(needed::add);
+        for (String name : needed) {
+            if (!scenarios.has(name)) {
+                String question = NearNames.question(name, scenarios.columnNames());
+                throw new IllegalArgumentException("a prediction needs the column '" + name + "', but "
+                        + scenarios.source() + " has " + NearNames.list(scenarios.columnNames()) + "."
+                        + (question.isEmpty() ? "" : " " + question + " Rename it with named(\"" + name + "\")."));
+            }
+        }
     }
 
     private static void check(Table table, NumberColumn column, DoublePredicate permitted, String rule) {

@@ -135,13 +135,18 @@ public final class Predictions implements Displayable {
         }
         double relativeError = logRates.get(prediction.row()).standardError();
         if (expected) {
-            cells.add(Numbers.estimate(prediction.mean(), prediction.mean() * relativeError));
-            cells.add(Numbers.interval(prediction.meanLower(), prediction.meanUpper()));
+            double mean = prediction.mean();
+            add(cells, Rounded.of(mean, mean * relativeError, prediction.meanLower(), prediction.meanUpper()));
         }
         double rate = unit.scaled(prediction.rate());
-        cells.add(Numbers.estimate(rate, rate * relativeError));
-        cells.add(Numbers.interval(unit.scaled(prediction.rateLower()), unit.scaled(prediction.rateUpper())));
+        double lower = unit.scaled(prediction.rateLower());
+        add(cells, Rounded.of(rate, rate * relativeError, lower, unit.scaled(prediction.rateUpper())));
         return cells;
+    }
+
+    private static void add(List<String> cells, Rounded rounded) {
+        cells.add(rounded.estimate());
+        cells.add(rounded.interval());
     }
 
     private List<String> shownColumns(boolean expected) {

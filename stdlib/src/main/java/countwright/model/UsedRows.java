@@ -154,7 +154,7 @@ final class UsedRows {
             return numbers;
         }
         throw new IllegalArgumentException(
-                role + " '" + name + "' holds " + column.kind() + ", but " + content
+                role + " '" + name + "' in " + table.source() + " holds " + column.kind() + ", but " + content
                         + " are numbers. Choose a column of numbers, or mend the values that keep it from being read as numbers.");
     }
 
