@@ -1,6 +1,11 @@
 package countwright.kernel.cli;
 
+import countwright.kernel.cell.JShellEngine;
 import countwright.kernel.desk.DeskException;
+import countwright.kernel.service.KernelServer;
+import countwright.kernel.wire.ConnectionFile;
+import countwright.kernel.worker.WorkerSettings;
+import java.io.IOException;
 import java.nio.file.Path;
 import java.util.concurrent.Callable;
 import picocli.CommandLine.Command;
@@ -19,12 +24,17 @@ final class ConnectCommand implements Callable<Integer> {
     private Path connectionFile = Path.of("");
 
     @Override
-    public Integer call() {
-        return serve(connectionFile);
-    }
-
-    /** Serves one front end until it asks for shutdown. This is the one place where kernel and command line meet. */
-    private static int serve(Path connectionFile) {
-        throw new DeskException("the kernel is not part of this build, so " + connectionFile + " was not served.");
+    public Integer call() throws InterruptedException {
+        ConnectionFile connection;
+        try {
+            connection = ConnectionFile.read(connectionFile);
+        } catch (IOException e) {
+            throw new DeskException("cannot read the connection file " + connectionFile + ": " + e.getMessage());
+        }
+        // A broken installation is told at once; the worker itself starts behind the first answers.
+        WorkerSettings settings = WorkerSettings.ofInstallation();
+        KernelServer server = KernelServer.start(connection, () -> JShellEngine.start(settings));
+        var unused = server.awaitShutdown();
+        return 0;
     }
 }
