@@ -12,7 +12,7 @@ import java.util.function.Supplier;
 final class EngineGate {
 
     private final CompletableFuture<CellEngine> engine = new CompletableFuture<>();
-    private volatile CompletableFuture<CellEngine> cellsWait = engine;
+    private volatile Turn turn = new Turn(new CompletableFuture<>());
 
     /** Starts the engine on a thread of its own. */
     EngineGate(Supplier<? extends CellEngine> start) {
@@ -34,20 +34,17 @@ final class EngineGate {
         return await(engine.copy());
     }
 
-    /** Waits for the engine on behalf of a cell: {@link #interrupt} ends the wait. */
-    CellEngine awaitForCell() throws InterruptedException, NoEngineException {
-        CompletableFuture<CellEngine> wait = engine.copy();
-        cellsWait = wait;
-        return await(wait);
+    /** Begins the turn of a cell: from now on an interrupt is meant for it. Called by the thread that runs cells. */
+    Turn beginTurn() {
+        Turn begun = new Turn(engine.copy());
+        turn = begun;
+        return begun;
     }
 
-    /** Asks the running cell to stop, or the one that waits for the engine. */
+    /** Asks the running cell to stop, also one that is about to run or waits for the engine. */
     void interrupt() {
-        ready().ifPresentOrElse(CellEngine::interrupt, () -> {
-            if (cellsWait != engine) {
-                cellsWait.completeExceptionally(new CancellationException());
-            }
-        });
+        turn.interrupt();
+        ready().ifPresent(CellEngine::interrupt);
     }
 
     /** Ends the engine; one that is still starting is ended when it is up. */
@@ -68,7 +65,7 @@ final class EngineGate {
         try {
             return wait.get();
         } catch (CancellationException e) {
-            throw new NoEngineException("InterruptedException", "The cell was interrupted before it began.", e);
+            throw interruptedBefore(e);
         } catch (ExecutionException e) {
             Throwable cause = Optional.ofNullable(e.getCause()).orElse(e);
             throw new NoEngineException(
@@ -78,6 +75,35 @@ final class EngineGate {
                                     .orElse(cause.getClass().getSimpleName())
                             + " Restart the kernel; if it happens again, see the kernel's log.",
                     cause);
+        }
+    }
+
+    private static NoEngineException interruptedBefore(Throwable cause) {
+        return new NoEngineException("InterruptedException", "The cell was interrupted before it began.", cause);
+    }
+
+    /** One cell's use of the engine. */
+    static final class Turn {
+
+        private final CompletableFuture<CellEngine> wait;
+        private volatile boolean interrupted;
+
+        private Turn(CompletableFuture<CellEngine> wait) {
+            this.wait = wait;
+        }
+
+        /** Waits for the engine, or for an interrupt. */
+        CellEngine await() throws InterruptedException, NoEngineException {
+            CellEngine engine = EngineGate.await(wait);
+            if (interrupted) {
+                throw interruptedBefore(new CancellationException());
+            }
+            return engine;
+        }
+
+        private void interrupt() {
+            interrupted = true;
+            wait.completeExceptionally(new CancellationException());
         }
     }
 

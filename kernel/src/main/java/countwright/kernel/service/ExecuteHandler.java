@@ -45,13 +45,14 @@ final class ExecuteHandler implements Handler {
         boolean counts = !silent && content.flag("store_history", true) && !code.isBlank();
         Map<String, String> expressions = content.texts("user_expressions");
         CellBroadcast broadcast = new CellBroadcast(request, outbox, inputDesk);
+        EngineGate.Turn turn = engine.beginTurn();
         if (counts) {
             executionCount++;
         }
         if (!silent) {
             broadcast.input(code, executionCount);
         }
-        CellOutcome outcome = evaluate(code, broadcast);
+        CellOutcome outcome = evaluate(code, broadcast, turn);
         inputDesk.cancel("The cell ended before the question was answered.");
         Optional<MimeBundle> result = outcome instanceof Success success ? success.result() : Optional.empty();
         if (counts) {
@@ -67,7 +68,7 @@ final class ExecuteHandler implements Handler {
             result.ifPresent(bundle -> broadcast.result(bundle, executionCount));
         }
         ObjectNode reply = finished(Replies.ok());
-        reply.set("user_expressions", evaluated(expressions));
+        reply.set("user_expressions", evaluated(expressions, turn));
         return Optional.of(reply);
     }
 
@@ -78,12 +79,12 @@ final class ExecuteHandler implements Handler {
         return reply;
     }
 
-    private CellOutcome evaluate(String code, CellBroadcast broadcast) {
+    private CellOutcome evaluate(String code, CellBroadcast broadcast, EngineGate.Turn turn) {
         try {
             // A blank cell does nothing: it need not wait for the engine.
             return code.isBlank()
                     ? new Success(Optional.empty())
-                    : engine.awaitForCell().evaluate(code, executionCount, broadcast);
+                    : turn.await().evaluate(code, executionCount, broadcast);
         } catch (EngineGate.NoEngineException e) {
             return new Failure(e.kind(), e.text(), List.of(e.kind() + ": " + e.text()));
         } catch (InterruptedException e) {
@@ -96,12 +97,12 @@ final class ExecuteHandler implements Handler {
         }
     }
 
-    private ObjectNode evaluated(Map<String, String> expressions) {
+    private ObjectNode evaluated(Map<String, String> expressions, EngineGate.Turn turn) {
         ObjectNode all = Replies.object();
         if (expressions.isEmpty()) {
             return all;
         }
-        Map<String, CellOutcome> outcomes = outcomes(expressions);
+        Map<String, CellOutcome> outcomes = outcomes(expressions, turn);
         for (String name : expressions.keySet()) {
             CellOutcome outcome = outcomes.getOrDefault(name, kernelFailure("The expression was not evaluated."));
             all.set(name, outcome instanceof Failure failure ? Replies.error(failure) : value((Success) outcome));
@@ -109,9 +110,9 @@ final class ExecuteHandler implements Handler {
         return all;
     }
 
-    private Map<String, CellOutcome> outcomes(Map<String, String> expressions) {
+    private Map<String, CellOutcome> outcomes(Map<String, String> expressions, EngineGate.Turn turn) {
         try {
-            return engine.awaitForCell().evaluateExpressions(expressions);
+            return turn.await().evaluateExpressions(expressions);
         } catch (EngineGate.NoEngineException e) {
             return Map.of();
         } catch (InterruptedException e) {
