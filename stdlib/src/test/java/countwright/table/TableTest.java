@@ -71,6 +71,16 @@ class TableTest {
     }
 
     @Test
+    void sortedBy_signsZerosAndTies_keepTheirPlaces() {
+        Table table = Table.of(
+                numbers("x", 0.0, -1e300, 2, -0.0, Double.POSITIVE_INFINITY, -2, 2),
+                numbers("at", 0, 1, 2, 3, 4, 5, 6));
+
+        assertThat(table.sortedBy("x").numbers("at").toArray()).containsExactly(1, 5, 0, 3, 2, 6, 4);
+        assertThat(table.sortedDescendingBy("x").numbers("at").toArray()).containsExactly(4, 2, 6, 0, 3, 5, 1);
+    }
+
+    @Test
     void select_keepsNamedColumnsInTheOrderGiven() {
         assertThat(FAULTS.select("faults", "depot").columnNames()).containsExactly("faults", "depot");
         assertThatIllegalArgumentException()
