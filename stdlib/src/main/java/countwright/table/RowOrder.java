@@ -8,7 +8,7 @@ import java.util.Arrays;
  * The rows of a column in order; missing values come last, equal values keep their order.
  *
  * <p>Each value becomes a whole number that sorts as it does. These are sorted bare, and each row then finds its place
- * among them by bisection: for a million rows that takes a tenth of the time of sorting boxed row numbers.
+ * among them by bisection, which makes no object for a row.
  */
 final class RowOrder {
 
@@ -32,15 +32,18 @@ final class RowOrder {
 
     /** Returns how many different values there are, missing ones aside. */
     static long distinct(Column column) {
-        return Arrays.stream(keys(column))
-                .filter(key -> key != MISSING)
-                .distinct()
-                .count();
+        long[] keys = keys(column);
+        Arrays.sort(keys);
+        long count = 0;
+        for (int place = 0; place < keys.length && keys[place] != MISSING; place++) {
+            count += place == 0 || keys[place] != keys[place - 1] ? 1 : 0;
+        }
+        return count;
     }
 
     private static int[] sorted(long[] keys) {
         long[] inOrder = keys.clone();
-        Arrays.parallelSort(inOrder);
+        Arrays.sort(inOrder);
         int[] firstPlaces = new int[inOrder.length];
         long[] distinct = new long[inOrder.length];
         int count = 0;
