@@ -117,14 +117,17 @@ final class CompileReport {
         String owner = location.find() ? location.group(1).strip() : "";
         boolean member = !owner.isEmpty() && !owner.equals("class");
         String text = "'" + name + "' is not known: "
-                + (member ? memberSentence(kind, owner) : "no " + kind + " of that name has been declared or imported.");
+                + (member
+                        ? memberSentence(kind, owner)
+                        : "no " + kind + " of that name has been declared or imported.");
         Optional<String> near = member ? Optional.empty() : NearNames.nearest(name, declaredNames());
         if (near.isPresent()) {
             return text + "\nDid you mean '" + near.get() + "'?";
         }
         return member
                 ? text
-                : text + "\nIf another cell declares it, run that cell first; otherwise declare it or correct the spelling.";
+                : text
+                        + "\nIf another cell declares it, run that cell first; otherwise declare it or correct the spelling.";
     }
 
     private static String memberSentence(String kind, String owner) {

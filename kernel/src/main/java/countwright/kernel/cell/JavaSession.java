@@ -87,12 +87,14 @@ final class JavaSession {
             return execution.loss();
         }
         Worker started = worker.getNow(null);
-        return started != null && started.loss().isDone() ? Optional.of(started.loss().join()) : Optional.empty();
+        return started != null && started.loss().isDone()
+                ? Optional.of(started.loss().join())
+                : Optional.empty();
     }
 
     /** Runs an action when the worker is lost. */
     void onLoss(Runnable action) {
-        var unused = worker.thenAccept(started -> started.loss().thenRun(action));
+        var unused = worker.thenCompose(Worker::loss).thenRun(action);
     }
 
     /** Runs a cell; {@code stopRequested} is asked between its pieces. */

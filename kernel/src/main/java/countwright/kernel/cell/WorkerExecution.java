@@ -153,8 +153,10 @@ final class WorkerExecution implements ExecutionControl {
             loss = Optional.of(String.valueOf(e.getMessage()));
             throw new EngineTerminationException(String.valueOf(e.getMessage()));
         } catch (CompletionException e) {
-            loss = Optional.of("it could not be started: " + e.getCause().getMessage());
-            throw new EngineTerminationException(loss.orElseThrow());
+            Throwable cause = e.getCause() == null ? e : e.getCause();
+            String how = "it could not be started: " + cause.getMessage();
+            loss = Optional.of(how);
+            throw new EngineTerminationException(how);
         }
     }
 

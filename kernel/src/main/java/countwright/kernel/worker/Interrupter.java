@@ -74,7 +74,7 @@ final class Interrupter implements AutoCloseable {
 
     private void schedule(long millis) {
         try {
-            clock.schedule(this::stopByForce, millis, TimeUnit.MILLISECONDS);
+            var unused = clock.schedule(this::stopByForce, millis, TimeUnit.MILLISECONDS);
         } catch (RejectedExecutionException closed) {
             LOG.log(Level.DEBUG, "the worker is going anyway");
         }

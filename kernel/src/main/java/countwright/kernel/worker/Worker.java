@@ -69,7 +69,8 @@ public final class Worker implements AutoCloseable {
                 stdin.write((server.getLocalPort() + " " + token + "\n").getBytes(StandardCharsets.US_ASCII));
             }
             ProcessOutput output = new ProcessOutput(process.getInputStream(), listener);
-            process.onExit().thenRun(() -> closeQuietly(server));
+            // A worker that dies at birth never connects.
+            var unused = process.onExit().thenRun(() -> closeQuietly(server));
             Socket socket = connect(server, process, output);
             FrameStream stream = new FrameStream(socket.getInputStream(), socket.getOutputStream());
             if (!(stream.read() instanceof Frame.Ready ready) || !ready.token().equals(token)) {
@@ -106,7 +107,7 @@ public final class Worker implements AutoCloseable {
             Thread.currentThread().interrupt();
             throw new WorkerLostException("the kernel is closing");
         } catch (ExecutionException e) {
-            throw new WorkerLostException(String.valueOf(e.getCause().getMessage()));
+            throw new WorkerLostException(loss.join());
         } finally {
             waiting.set(null);
             requestsEnded.incrementAndGet();
@@ -209,7 +210,7 @@ public final class Worker implements AutoCloseable {
         loss.complete(how);
         CompletableFuture<Frame.Reply> request = waiting.get();
         if (request != null) {
-            request.completeExceptionally(new WorkerLostException(how));
+            var unused = request.completeExceptionally(new WorkerLostException(how));
         }
     }
 
