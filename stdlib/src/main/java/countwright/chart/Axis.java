@@ -1,5 +1,6 @@
 package countwright.chart;
 
+import countwright.show.Numbers;
 import java.util.ArrayList;
 import java.util.List;
 
@@ -50,8 +51,7 @@ record Axis(String title, Scale scale, double min, double max, List<Tick> ticks)
     /** Returns an axis from zero, whose lowest points are not cut at the edge. */
     static Axis linearWithRoomAtZero(String title, double high, int aboutTicks) {
         double max = high > 0 ? high * 1.05 : 1;
-        Axis axis = new Axis(title, Scale.LINEAR, -0.02 * max, max, linearTicks(0, max, aboutTicks));
-        return axis;
+        return new Axis(title, Scale.LINEAR, -0.02 * max, max, linearTicks(0, max, aboutTicks));
     }
 
     /** Returns an axis of equal ratios; both ends must be positive. */
@@ -61,12 +61,23 @@ record Axis(String title, Scale scale, double min, double max, List<Tick> ticks)
         double middle = Math.sqrt(low) * Math.sqrt(high);
         double min = Math.min(low, middle / Math.sqrt(ratio)) / air;
         double max = Math.max(high, middle * Math.sqrt(ratio)) * air;
-        return new Axis(title, Scale.LOG, min, max, logTicks(min, max, aboutTicks));
+        return new Axis(title + " (log axis)", Scale.LOG, min, max, logTicks(min, max, aboutTicks));
     }
 
     /** Returns an axis of rows 1 to n, the first on top, without names of its own. */
     static Axis rows(int count) {
         return new Axis("", Scale.LINEAR, 0.4, Math.max(count, 1) + 0.6, List.of());
+    }
+
+    /** Returns this axis with four-digit numbers written as years are, "2014", where it reaches no further. */
+    Axis withYearsUngrouped() {
+        if (min < 0 || max >= 10_000) {
+            return this;
+        }
+        List<Tick> plain = ticks.stream()
+                .map(tick -> new Tick(tick.value(), tick.label().replace(",", "")))
+                .toList();
+        return new Axis(title, scale, min, max, plain);
     }
 
     /** Returns where a value stands, 0 at the lower end and 1 at the upper. */
@@ -83,7 +94,7 @@ record Axis(String title, Scale scale, double min, double max, List<Tick> ticks)
         int decimals = (int) Math.max(0, -Math.floor(Math.log10(step) + 1e-9));
         List<Tick> ticks = new ArrayList<>();
         for (long k = (long) Math.ceil(min / step - 1e-9); k * step <= max + step * 1e-9; k++) {
-            String label = NumberText.fixed(k * step, decimals).replace('-', MINUS);
+            String label = Numbers.fixed(k * step, decimals).replace('-', MINUS);
             ticks.add(new Tick(k * step, label));
         }
         return ticks;
@@ -95,7 +106,7 @@ record Axis(String title, Scale scale, double min, double max, List<Tick> ticks)
         List<Tick> ticks = new ArrayList<>();
         if (decades < 0.7) {
             for (Tick tick : linearTicks(min, max, about)) {
-                ticks.add(new Tick(tick.value(), NumberText.plain(tick.value())));
+                ticks.add(new Tick(tick.value(), Numbers.compact(tick.value())));
             }
             return ticks;
         }
@@ -110,7 +121,7 @@ record Axis(String title, Scale scale, double min, double max, List<Tick> ticks)
             for (int leader : leaders) {
                 double value = leader * Math.pow(10, decade);
                 if (value >= min && value <= max) {
-                    ticks.add(new Tick(value, NumberText.plain(value)));
+                    ticks.add(new Tick(value, Numbers.compact(value)));
                 }
             }
         }

@@ -136,6 +136,7 @@ public final class Charts {
 
     static Chart meanVariance(Fit fit, String groupColumn) {
         List<Groups.Group> groups = Groups.byValue(fit.table().column(groupColumn));
+        int unnamed = fit.table().column(groupColumn).missingCount();
         double rowsLost = (double) fit.coefficients() / fit.table().rowCount();
         return MeanVarianceChart.of(
                 fit.response(),
@@ -143,6 +144,7 @@ public final class Charts {
                 groups.size(),
                 MeanVarianceChart.spreads(
                         groups, fit.counts().get(), fit.means().get(), rowsLost),
-                "Variance: around the fitted mean of each row, brought to the average fitted mean of the group.");
+                "Variance: around the fitted mean of each row, brought to the average fitted mean of the group."
+                        + (unnamed == 0 ? "" : " Rows without a value in " + groupColumn + " are left out."));
     }
 }

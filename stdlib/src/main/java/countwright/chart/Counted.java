@@ -1,5 +1,6 @@
 package countwright.chart;
 
+import countwright.show.Numbers;
 import countwright.table.NumberColumn;
 import countwright.table.Table;
 import java.util.Arrays;
@@ -99,8 +100,8 @@ final class Counted {
     String leftOutSentence() {
         return leftOut == 0
                 ? ""
-                : " " + NumberText.count(leftOut, "row with a missing value is", "rows with missing values are")
-                        + " left out.";
+                : " " + Numbers.count(leftOut, "row")
+                        + (leftOut == 1 ? " with a missing value is left out." : " with missing values are left out.");
     }
 
     private static void checkExposure(NumberColumn column, int row) {

@@ -8,6 +8,7 @@ import countwright.model.FittedModel;
 import countwright.model.Prediction;
 import countwright.model.RateRatio;
 import countwright.model.Residual;
+import countwright.show.Numbers;
 import countwright.table.NearNames;
 import countwright.table.Table;
 import java.util.ArrayList;
@@ -85,7 +86,7 @@ record Fit(
 
     /** Returns the level as a reader writes it, such as "95%". */
     String levelText() {
-        return NumberText.plain(level * 100) + "%";
+        return Numbers.compact(level * 100) + "%";
     }
 
     /**

@@ -2,8 +2,11 @@ package countwright.chart;
 
 import countwright.model.Prediction;
 import countwright.show.Grid;
+import countwright.show.Numbers;
+import countwright.table.NumberColumn;
 import java.util.Arrays;
 import java.util.List;
+import java.util.stream.IntStream;
 
 /**
  * What a model fits over one covariate taken as a number, beside what was observed.
@@ -88,14 +91,14 @@ final class FittedChart {
         double top = Math.max(highest(curve.upper()), highest(observed)) * unit.factor();
         Figure empty = Figure.titled(
                         (fit.exposure().isEmpty() ? "Fitted mean count over " : "Fitted rate over ") + covariate,
-                        Axis.linear(covariate, low, high, 8),
+                        Axis.linear(covariate, low, high, 8).withYearsUngrouped(),
                         Axis.linearWithRoomAtZero(unit.label(), top, 6))
-                .subtitle(span(unit, curve))
+                .subtitle(capitalised(span(unit, curve)))
                 .caption(caption(pools.size(), single));
         Figure figure = withCurve(empty, unit, curve)
                 .layer(Layer.points(pointName(single), Ink.OBSERVED, x, unit.scaled(observed)));
         String summary = "Fitted " + unit.label() + ": " + span(unit, curve) + "." + scenarios.sentence();
-        return Chart.of(figure, summary, numbers(unit, curve).toString());
+        return Chart.of(figure, summary, numbers(unit).toString());
     }
 
     private Figure withCurve(Figure figure, RateUnit unit, Curve curve) {
@@ -145,11 +148,11 @@ final class FittedChart {
 
     private String span(RateUnit unit, Curve curve) {
         int last = curve.values().length - 1;
-        String start = unit.text(curve.rates()[0]) + " at " + covariate + " " + NumberText.plain(curve.values()[0]);
+        String start = unit.text(curve.rates()[0]) + " at " + covariate + " " + value(curve.values()[0]);
         return last == 0
                 ? start
-                : "From " + start + " to " + unit.text(curve.rates()[last]) + " at " + covariate + " "
-                        + NumberText.plain(curve.values()[last]);
+                : "from " + start + " to " + unit.text(curve.rates()[last]) + " at " + covariate + " "
+                        + value(curve.values()[last]);
     }
 
     private String caption(int pools, boolean single) {
@@ -159,7 +162,7 @@ final class FittedChart {
             points = pools == rows ? "One point for each row" : "One point for each value of " + covariate;
         } else {
             points = "Points: " + pools + " bins of " + covariate + " with about "
-                    + NumberText.count(Math.round((double) rows / pools)) + " rows each";
+                    + Numbers.count(Math.round((double) rows / pools)) + " rows each";
         }
         return scenarios.sentence().strip()
                 + (scenarios.sentence().isEmpty() ? "" : " ")
@@ -167,15 +170,8 @@ final class FittedChart {
                 + (adjusted ? ", at the fitted rate times observed / fitted events." : ".");
     }
 
-    private Grid numbers(RateUnit unit, Curve curve) {
-        int last = curve.values().length - 1;
-        double start = curve.values()[0];
-        double end = curve.values()[last];
-        Curve chosen = last == 0
-                ? curve
-                : at(new double[] {
-                    start, start + 0.25 * (end - start), 0.5 * (start + end), end - 0.25 * (end - start), end
-                });
+    private Grid numbers(RateUnit unit) {
+        Curve chosen = at(quarters());
         Grid table = Grid.titled("")
                 .numberColumn(covariate)
                 .numberColumn("fitted " + unit.label())
@@ -183,11 +179,28 @@ final class FittedChart {
         for (int i = 0; i < chosen.values().length; i++) {
             Prediction p = chosen.rows().get(i);
             table = table.row(
-                    NumberText.plain(chosen.values()[i]),
-                    unit.text(p.rate()),
-                    unit.text(p.rateLower()) + " to " + unit.text(p.rateUpper()));
+                    value(chosen.values()[i]), unit.text(p.rate()), unit.interval(p.rateLower(), p.rateUpper()));
         }
         return table;
+    }
+
+    /** Returns the least value of the covariate, its quartiles and the greatest, each as observed and each once. */
+    private double[] quarters() {
+        double[] sorted = fit.table().numbers(covariate).toArray();
+        Arrays.sort(sorted);
+        return IntStream.rangeClosed(0, 4)
+                .mapToDouble(quarter -> sorted[(int) Math.round(quarter / 4.0 * (sorted.length - 1))])
+                .distinct()
+                .toArray();
+    }
+
+    /** Returns a value as the table shows it: 2014 may be a year. */
+    private static String value(double value) {
+        return NumberColumn.of("", value).text(0);
+    }
+
+    private static String capitalised(String text) {
+        return Character.toUpperCase(text.charAt(0)) + text.substring(1);
     }
 
     private static double[] grid(double low, double high) {

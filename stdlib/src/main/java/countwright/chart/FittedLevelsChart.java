@@ -2,6 +2,7 @@ package countwright.chart;
 
 import countwright.model.Prediction;
 import countwright.show.Grid;
+import countwright.show.Numbers;
 import java.util.ArrayList;
 import java.util.Comparator;
 import java.util.List;
@@ -77,14 +78,14 @@ final class FittedLevelsChart {
             grid = grid.row(
                     level.name(),
                     unit.text(p.rate()),
-                    unit.text(p.rateLower()) + " to " + unit.text(p.rateUpper()),
+                    unit.interval(p.rateLower(), p.rateUpper()),
                     unit.text(level.observed()));
         }
         boolean adjusted = fit.covariates().size() > 1;
         String what = fit.exposure().isEmpty() ? "mean count" : "rate";
         String left = size == levels
                 ? ""
-                : " Shown are the " + size + " of " + NumberText.count(levels) + " levels with the largest exposure.";
+                : " Shown are the " + size + " of " + Numbers.count(levels) + " levels with the largest exposure.";
         LevelRate top = shown.get(0);
         LevelRate bottom = shown.get(size - 1);
         Figure figure = Figure.titled(

@@ -1,6 +1,7 @@
 package countwright.chart;
 
 import countwright.show.Grid;
+import countwright.show.Numbers;
 import java.util.ArrayList;
 import java.util.Arrays;
 import java.util.Comparator;
@@ -64,7 +65,7 @@ final class MeanVarianceChart {
     static Chart of(String count, String group, int groupCount, List<Spread> spreads, String definition) {
         if (spreads.isEmpty()) {
             throw new IllegalArgumentException("a variance needs two rows and at least one event, but no group of '"
-                    + group + "' has them (" + NumberText.count(groupCount, "group", "groups")
+                    + group + "' has them (" + Numbers.count(groupCount, "group")
                     + "). Choose a column with fewer, larger groups.");
         }
         boolean log = wantsLog(spreads);
@@ -85,7 +86,7 @@ final class MeanVarianceChart {
                 .caption(definition
                         + (left == 0
                                 ? ""
-                                : " " + NumberText.count(left, "group is", "groups are")
+                                : " " + Numbers.count(left, "group") + (left == 1 ? " is" : " are")
                                         + " not shown: a single row, no event"
                                         + (log ? " or no variation, which has no place on a log axis." : ".")))
                 .guide(new Figure.Guide(
@@ -120,8 +121,8 @@ final class MeanVarianceChart {
         int middle = ratios.length / 2;
         double median = ratios.length % 2 == 1 ? ratios[middle] : (ratios[middle - 1] + ratios[middle]) / 2;
         return "The variance is above the mean in " + above + " of "
-                + NumberText.count(spreads.size(), "group", "groups") + "; the median of variance / mean is "
-                + NumberText.rounded(median) + " (1 for Poisson counts)";
+                + Numbers.count(spreads.size(), "group") + "; the median of variance / mean is "
+                + Numbers.significant(median, 3) + " (1 for Poisson counts)";
     }
 
     private static Grid grid(String group, List<Spread> spreads) {
@@ -137,14 +138,14 @@ final class MeanVarianceChart {
         for (Spread spread : sorted.subList(0, Math.min(LISTED, sorted.size()))) {
             grid = grid.row(
                     spread.name(),
-                    NumberText.count(spread.rows()),
-                    NumberText.rounded(spread.mean()),
-                    NumberText.rounded(spread.variance()),
-                    NumberText.rounded(spread.ratio()));
+                    Numbers.count(spread.rows()),
+                    Numbers.significant(spread.mean(), 3),
+                    Numbers.significant(spread.variance(), 3),
+                    Numbers.significant(spread.ratio(), 3));
         }
         return sorted.size() <= LISTED
                 ? grid
-                : grid.note("The " + LISTED + " groups with the largest ratio, of " + NumberText.count(sorted.size())
-                        + ".");
+                : grid.note(
+                        "The " + LISTED + " groups with the largest ratio, of " + Numbers.count(sorted.size()) + ".");
     }
 }

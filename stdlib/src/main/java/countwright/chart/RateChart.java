@@ -1,6 +1,7 @@
 package countwright.chart;
 
 import countwright.show.Grid;
+import countwright.show.Numbers;
 import countwright.table.Table;
 import java.util.ArrayList;
 import java.util.Comparator;
@@ -68,23 +69,22 @@ final class RateChart {
             y[i] = size - i;
             end = Math.max(end, upper[i]);
             rows.add(new Figure.NamedRow(
-                    g.name(), NumberText.plain(g.count()) + " / " + NumberText.rounded(g.exposure())));
+                    g.name(), Numbers.compact(g.count()) + " / " + Numbers.significant(g.exposure(), 3)));
             grid = grid.row(
                     g.name(),
-                    NumberText.plain(g.count()),
-                    NumberText.rounded(g.exposure()),
+                    Numbers.compact(g.count()),
+                    Numbers.significant(g.exposure(), 3),
                     unit.text(g.rate().rate()),
-                    unit.text(g.rate().lower()) + " to " + unit.text(g.rate().upper()));
+                    unit.interval(g.rate().lower(), g.rate().upper()));
         }
         Axis x = Axis.linearWithRoomAtZero(unit.label(), end, 7);
         Axis rowAxis = Axis.rows(size);
         String left = size == groupCount
                 ? ""
-                : " Shown are the " + size + " of " + NumberText.count(groupCount)
-                        + " groups with the largest exposure.";
+                : " Shown are the " + size + " of " + Numbers.count(groupCount) + " groups with the largest exposure.";
         Figure figure = Figure.titled("Observed rate by " + group, x, rowAxis)
-                .subtitle("All together: " + NumberText.plain(totalCount) + " " + counted.countName() + " in "
-                        + NumberText.rounded(totalExposure) + " " + counted.unit() + ", or " + unit.text(pooled)
+                .subtitle("All together: " + Numbers.compact(totalCount) + " " + counted.countName() + " in "
+                        + Numbers.significant(totalExposure, 3) + " " + counted.unit() + ", or " + unit.text(pooled)
                         + perAmount(unit))
                 .caption("Highest rate on top. Bars: exact 95% intervals (Garwood 1936), each group by itself, counts"
                         + " taken as Poisson." + left + counted.leftOutSentence())
@@ -94,7 +94,7 @@ final class RateChart {
                 .layer(Layer.points("observed rate", Ink.OBSERVED, rates, y));
         GroupRate top = shown.get(0);
         GroupRate bottom = shown.get(size - 1);
-        String summary = "Over " + NumberText.count(groupCount, "group", "groups") + " of " + group + ", "
+        String summary = "Over " + Numbers.count(groupCount, "group") + " of " + group + ", "
                 + unit.label() + " is " + unit.text(pooled) + "; it is highest in " + top.name() + " at "
                 + unit.text(top.rate().rate(), top.rate().lower(), top.rate().upper())
                 + (size == 1
@@ -109,7 +109,7 @@ final class RateChart {
 
     /** Returns " per 1,000" or " for each", which completes a rate in a sentence that has named both columns. */
     private static String perAmount(RateUnit unit) {
-        return " per " + (unit.factor() == 1 ? "" : NumberText.plain(unit.factor()) + " ") + unit.exposureName();
+        return " per " + (unit.factor() == 1 ? "" : Numbers.compact(unit.factor()) + " ") + unit.exposureName();
     }
 
     private static List<GroupRate> largest(List<GroupRate> all) {

@@ -2,6 +2,7 @@ package countwright.chart;
 
 import countwright.model.RateRatio;
 import countwright.show.Grid;
+import countwright.show.Numbers;
 import java.util.ArrayList;
 import java.util.List;
 
@@ -33,7 +34,7 @@ final class RateRatioChart {
                 Math.min(
                         shown.stream().mapToDouble(RateRatio::upper).max().orElseThrow(),
                         Math.max(1, greatest) * WIDEST));
-        Axis x = Axis.log("rate ratio (log axis)", low, high, 8);
+        Axis x = Axis.log("rate ratio", low, high, 8);
         return draw(fit, shown, x);
     }
 
@@ -58,9 +59,9 @@ final class RateRatioChart {
             runsOff |= r.lower() < x.min() || r.upper() > x.max();
             awayFromOne += r.lower() > 1 || r.upper() < 1 ? 1 : 0;
             y[i] = size - i;
-            String interval = text(r.lower()) + " to " + text(r.upper());
-            rows.add(new Figure.NamedRow(r.name(), text(r.ratio()) + " (" + interval + ")"));
-            grid = grid.row(r.name(), text(r.ratio()), interval);
+            String interval = Numbers.interval(r.lower(), r.upper());
+            rows.add(new Figure.NamedRow(r.name(), Numbers.ratio(r.ratio()) + " (" + interval + ")"));
+            grid = grid.row(r.name(), Numbers.ratio(r.ratio()), interval);
         }
         Axis rowAxis = Axis.rows(size);
         int left = fit.rateRatios().size() - size;
@@ -72,7 +73,9 @@ final class RateRatioChart {
                                         + size)
                 .caption("Right of 1: a higher rate. Each ratio holds with the other terms unchanged."
                         + (runsOff ? " Some intervals go beyond the axis; their ends are in the numbers." : "")
-                        + (left == 0 ? "" : " " + NumberText.count(left, "ratio is", "ratios are") + " not shown."))
+                        + (left == 0
+                                ? ""
+                                : " " + Numbers.count(left, "ratio") + (left == 1 ? " is" : " are") + " not shown."))
                 .rows("rate ratio (" + fit.levelText() + " interval)", rows)
                 .guide(Figure.Guide.up("no difference", Ink.REFERENCE, rowAxis, 1))
                 .layer(Layer.barsAcross(fit.levelText() + " interval", Ink.FITTED, lower, upper, y))
@@ -82,13 +85,8 @@ final class RateRatioChart {
             summary.append(summary.isEmpty() ? "" : "; ")
                     .append(r.name())
                     .append(": ")
-                    .append(text(r.ratio()));
+                    .append(Numbers.ratio(r.ratio()));
         }
         return Chart.of(figure, summary + (size > 6 ? "; and " + (size - 6) + " more." : "."), grid.toString());
-    }
-
-    /** Ratios are read against 1, so two decimals say enough from 0.1 up. */
-    private static String text(double ratio) {
-        return ratio >= 0.1 && ratio < 100 ? NumberText.fixed(ratio, 2) : NumberText.rounded(ratio);
     }
 }

@@ -1,5 +1,7 @@
 package countwright.chart;
 
+import countwright.show.Numbers;
+
 /**
  * The amount of exposure rates are given for, such that they are easy to read: 1, or a thousand, a hundred thousand or a
  * million where the rates would otherwise be small fractions.
@@ -28,7 +30,7 @@ record RateUnit(String countName, String exposureName, double factor) {
         if (exposureName.isEmpty()) {
             return "mean " + countName;
         }
-        return countName + " per " + (factor == 1 ? "" : NumberText.plain(factor) + " ") + exposureName;
+        return countName + " per " + (factor == 1 ? "" : Numbers.compact(factor) + " ") + exposureName;
     }
 
     double[] scaled(double[] rates) {
@@ -40,11 +42,16 @@ record RateUnit(String countName, String exposureName, double factor) {
     }
 
     String text(double rate) {
-        return NumberText.rounded(rate * factor);
+        return Numbers.significant(rate * factor, 3);
     }
 
     /** Returns an estimate with its interval, such as "4.21 (3.10 to 5.60)". */
     String text(double rate, double lower, double upper) {
-        return text(rate) + " (" + text(lower) + " to " + text(upper) + ")";
+        return text(rate) + " (" + interval(lower, upper) + ")";
+    }
+
+    /** Returns an interval, such as "3.10 to 5.60". */
+    String interval(double lower, double upper) {
+        return Numbers.interval(lower * factor, upper * factor);
     }
 }

@@ -2,6 +2,7 @@ package countwright.chart;
 
 import countwright.model.Residual;
 import countwright.show.Grid;
+import countwright.show.Numbers;
 import java.util.ArrayList;
 import java.util.Arrays;
 import java.util.List;
@@ -35,7 +36,7 @@ final class ResidualChart {
         double[] y = pick(residuals, usable);
         if (x.length == 0) {
             throw new IllegalArgumentException("there is nothing to draw: no row has a " + name + " (of "
-                    + NumberText.count(means.length, "row", "rows") + "). Try another kind of residual.");
+                    + Numbers.count(means.length, "row") + "). Try another kind of residual.");
         }
         double low = Arrays.stream(x).min().orElseThrow();
         double high = Arrays.stream(x).max().orElseThrow();
@@ -50,8 +51,8 @@ final class ResidualChart {
 
         int[] drawn = drawn(y);
         long beyond = Arrays.stream(y).filter(r -> Math.abs(r) > 2).count();
-        String share = NumberText.count(beyond) + " of " + NumberText.count(y.length, "row", "rows") + " ("
-                + NumberText.rounded(100.0 * beyond / y.length) + "%) lie beyond \u00b12";
+        String share = Numbers.count(beyond) + " of " + Numbers.count(y.length, "row") + " ("
+                + Numbers.percent((double) beyond / y.length) + ") lie beyond \u00b12";
         String title = Character.toUpperCase(name.charAt(0)) + name.substring(1) + "s against fitted means";
         Figure figure = Figure.titled(title, xAxis, yAxis)
                 .subtitle(share + "; about 5% would if the model held and counts were not too small")
@@ -79,7 +80,7 @@ final class ResidualChart {
                 bins.stream().mapToDouble(bin -> bin.sum(y) / bin.size()).toArray();
         return figure.layer(Layer.line("", Ink.AVERAGE, middles, averages))
                 .layer(Layer.points(
-                        "average of about " + NumberText.count(Math.round((double) x.length / bins.size())) + " rows",
+                        "average of about " + Numbers.count(Math.round((double) x.length / bins.size())) + " rows",
                         Ink.AVERAGE,
                         middles,
                         averages));
@@ -89,15 +90,15 @@ final class ResidualChart {
         StringBuilder caption = new StringBuilder();
         if (drawn < usable) {
             caption.append("Drawn are ")
-                    .append(NumberText.count(drawn))
+                    .append(Numbers.count(drawn))
                     .append(" of ")
-                    .append(NumberText.count(usable))
+                    .append(Numbers.count(usable))
                     .append(" rows, evenly spaced through the table, and every residual beyond \u00b13;"
                             + " averages are of all rows.");
         }
         if (usable < all) {
             caption.append(" ")
-                    .append(NumberText.count(all - usable, "row has", "rows have"))
+                    .append(Numbers.count(all - usable, "row") + (all - usable == 1 ? " has" : " have"))
                     .append(" no such residual and no place here.");
         }
         if (medianMean < 3) {
@@ -114,7 +115,7 @@ final class ResidualChart {
         String[] labels = {"least", "lower quarter", "median", "upper quarter", "greatest"};
         for (int i = 0; i < labels.length; i++) {
             double value = sorted[(int) Math.round(i / 4.0 * (sorted.length - 1))];
-            grid = grid.row(labels[i], NumberText.fixed(value, 2));
+            grid = grid.row(labels[i], Numbers.fixed(value, 2));
         }
         return grid;
     }

@@ -59,8 +59,7 @@ final class Scenarios {
         int row = number && column instanceof NumberColumn numbers ? medianRow(numbers) : mostFrequentRow(column);
         Column one = column.rows(new int[] {row});
         heldRow.add(one);
-        held.add(name + " = " + (one instanceof NumberColumn value ? NumberText.plain(value.value(0)) : one.text(0))
-                + (number ? " (median)" : " (most rows)"));
+        held.add(name + " = " + one.text(0) + (number ? " (median)" : " (most rows)"));
     }
 
     private static int medianRow(NumberColumn column) {

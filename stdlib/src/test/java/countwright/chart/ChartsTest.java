@@ -8,6 +8,7 @@ import static org.assertj.core.api.Assertions.within;
 
 import countwright.model.CountModel;
 import countwright.model.FittedModel;
+import countwright.show.Numbers;
 import countwright.table.NumberColumn;
 import countwright.table.Table;
 import countwright.table.TextColumn;
@@ -42,7 +43,8 @@ class ChartsTest {
 
             assertThat(chart.alternative())
                     .contains("faults per 1,000 vehicleKm")
-                    .contains("From " + NumberText.rounded(1000 * rate) + " at age " + NumberText.plain(low))
+                    .contains("from " + Numbers.significant(1000 * rate, 3) + " at age "
+                            + NumberColumn.of("", low).text(0))
                     .contains("depot = Harbour (most rows)");
         }
 
@@ -64,6 +66,18 @@ class ChartsTest {
 
             assertThat(figure.layers()).extracting(Layer::name).contains("observed mean rate");
             assertThat(figure.caption()).doesNotContain("held at");
+        }
+
+        @Test
+        void fitted_years_areWrittenWithoutCommas() {
+            Table table = Table.of(
+                    NumberColumn.of("year", 2001, 2004, 2007, 2010), NumberColumn.of("faults", 12, 15, 11, 19));
+            FittedModel model = CountModel.of("faults").on(linear("year")).fit(table);
+
+            Chart chart = Charts.fitted(model, "year");
+
+            assertThat(chart.alternative()).contains("at year 2001 to");
+            assertThat(chart.figure().x().ticks()).extracting(Axis.Tick::label).contains("2002", "2010");
         }
 
         @Test
@@ -106,8 +120,8 @@ class ChartsTest {
 
             // Garwood's interval for 5 events is 1.6235 to 11.6683, for none 0 to 3.6889; here per 1,000.
             assertThat(Charts.rates(table, "n", "t", "site").toString())
-                    .contains("50.0", "16.2 to 117")
-                    .contains("0 to 73.8");
+                    .contains("50.0", "16.2 to 116.7")
+                    .contains("to 73.8");
         }
 
         @Test
@@ -230,8 +244,8 @@ class ChartsTest {
 
             assertThat(model.rateRatios())
                     .isNotEmpty()
-                    .allSatisfy(ratio ->
-                            assertThat(text).contains(ratio.name()).contains(NumberText.fixed(ratio.ratio(), 2)));
+                    .allSatisfy(
+                            ratio -> assertThat(text).contains(ratio.name()).contains(Numbers.ratio(ratio.ratio())));
         }
     }
 }
