@@ -17,7 +17,7 @@ public final class Grid implements Displayable {
         RIGHT
     }
 
-    record Heading(String text, Align align) {}
+    record Heading(String text, String below, Align align) {}
 
     private static final int HEAD = 40;
     private static final int TAIL = 10;
@@ -46,12 +46,30 @@ public final class Grid implements Displayable {
 
     /** Returns this grid with a column of text, set left. */
     public Grid textColumn(String heading) {
-        return new Grid(caption, plus(headings, new Heading(heading, Align.LEFT)), rows, notes, head, tail);
+        return textColumn(heading, "");
+    }
+
+    /** Returns this grid with a column of text, with a smaller second line (a unit, a type) below its heading. */
+    public Grid textColumn(String heading, String below) {
+        return column(new Heading(heading, below, Align.LEFT));
     }
 
     /** Returns this grid with a column of numbers, set right. */
     public Grid numberColumn(String heading) {
-        return new Grid(caption, plus(headings, new Heading(heading, Align.RIGHT)), rows, notes, head, tail);
+        return numberColumn(heading, "");
+    }
+
+    /** Returns this grid with a column of numbers, with a smaller second line (a unit, a type) below its heading. */
+    public Grid numberColumn(String heading, String below) {
+        return column(new Heading(heading, below, Align.RIGHT));
+    }
+
+    private Grid column(Heading heading) {
+        if (!rows.isEmpty()) {
+            throw new IllegalStateException("the columns of a grid come before its rows, but '" + heading.text()
+                    + "' was added after " + Numbers.count(rows.size(), "row") + ".");
+        }
+        return new Grid(caption, plus(headings, heading), rows, notes, head, tail);
     }
 
     /**

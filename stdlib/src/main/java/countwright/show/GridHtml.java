@@ -68,8 +68,13 @@ final class GridHtml {
                     .append(";border-bottom:1px solid ")
                     .append(RULE)
                     .append("\">")
-                    .append(Html.escape(GridText.clean(heading.text())))
-                    .append("</th>");
+                    .append(Html.escape(GridText.clean(heading.text())));
+            if (!heading.below().isEmpty()) {
+                html.append("<br><span style=\"font-weight:normal;font-size:0.85em;opacity:0.75\">")
+                        .append(Html.escape(GridText.clean(heading.below())))
+                        .append("</span>");
+            }
+            html.append("</th>");
         }
         html.append("</tr>\n</thead>\n<tbody>\n");
         List<List<String>> first = grid.firstRows();

@@ -16,7 +16,8 @@ final class GridText {
         this.grid = grid;
         this.widths = new int[grid.headings().size()];
         for (int column = 0; column < widths.length; column++) {
-            widths[column] = TextWidth.of(clean(grid.headings().get(column).text()));
+            Grid.Heading heading = grid.headings().get(column);
+            widths[column] = Math.max(TextWidth.of(clean(heading.text())), TextWidth.of(clean(heading.below())));
         }
         grid.firstRows().forEach(this::widen);
         grid.lastRows().forEach(this::widen);
@@ -37,6 +38,9 @@ final class GridText {
                 lines.add(rule);
             }
             lines.add(line(grid.headings().stream().map(Grid.Heading::text).toList()));
+            if (grid.headings().stream().anyMatch(heading -> !heading.below().isEmpty())) {
+                lines.add(line(grid.headings().stream().map(Grid.Heading::below).toList()));
+            }
             lines.add(rule);
             grid.firstRows().forEach(row -> lines.add(line(row)));
             if (grid.leftOut() > 0) {

@@ -2,25 +2,35 @@ package countwright.table;
 
 import countwright.show.Displayable;
 import countwright.show.MimeBundle;
+import countwright.show.Numbers;
 import java.nio.file.Path;
 import java.util.ArrayList;
 import java.util.Arrays;
 import java.util.LinkedHashMap;
 import java.util.List;
 import java.util.Map;
+import java.util.function.Function;
 import java.util.function.Predicate;
+import java.util.function.ToDoubleFunction;
+import java.util.stream.IntStream;
+import org.jspecify.annotations.Nullable;
 
 /** Columns of equal length, each with its own name. Immutable; rows count from 0 in code and from 1 in messages. */
 public final class Table implements Displayable {
 
+    private static final int SHOWN_WHOLE = 20;
+    private static final int SHOWN_FIRST = 10;
+
     private final String source;
     private final Map<String, Column> columns;
     private final int rowCount;
+    private final int shownRows;
 
-    private Table(String source, Map<String, Column> columns, int rowCount) {
+    private Table(String source, Map<String, Column> columns, int rowCount, int shownRows) {
         this.source = source;
         this.columns = columns;
         this.rowCount = rowCount;
+        this.shownRows = shownRows;
     }
 
     /**
@@ -30,6 +40,29 @@ public final class Table implements Displayable {
      */
     public static Table of(Column... columns) {
         return of("table", Arrays.asList(columns));
+    }
+
+    /**
+     * Returns a table of every combination of the values of the given columns, the last varying fastest; for scenarios.
+     *
+     * @throws IllegalArgumentException if two columns share a name
+     */
+    public static Table crossing(Column... columns) {
+        int rowCount = columns.length == 0 ? 0 : 1;
+        for (Column column : columns) {
+            rowCount = Math.multiplyExact(rowCount, column.size());
+        }
+        List<Column> crossed = new ArrayList<>();
+        int repeats = rowCount;
+        for (Column column : columns) {
+            int size = Math.max(column.size(), 1);
+            int run = repeats / size;
+            int[] rows = new int[rowCount];
+            Arrays.setAll(rows, row -> row / Math.max(run, 1) % size);
+            crossed.add(column.rows(rows));
+            repeats = run;
+        }
+        return of("table", crossed);
     }
 
     /**
@@ -71,7 +104,7 @@ public final class Table implements Displayable {
                         "two columns are called '" + column.name() + "'; rename one of them with named(...).");
             }
         }
-        return new Table(source, byName, rowCount);
+        return new Table(source, byName, rowCount, rowCount <= SHOWN_WHOLE ? rowCount : SHOWN_FIRST);
     }
 
     /** Returns where the table came from, for messages: a file's name, or "table". */
@@ -107,8 +140,12 @@ public final class Table implements Displayable {
     public Column column(String name) {
         Column column = columns.get(name);
         if (column == null) {
-            throw new IllegalArgumentException("no column '" + name + "' in " + source + ". Its columns are "
-                    + String.join(", ", columns.keySet()) + ".");
+            String question = NearNames.question(name, columns.keySet());
+            throw new IllegalArgumentException("there is no column '" + name + "' in " + source + ". "
+                    + (question.isEmpty() ? "" : question + " ")
+                    + (columns.isEmpty()
+                            ? "It has no columns."
+                            : "Its columns are " + NearNames.list(columns.keySet()) + "."));
         }
         return column;
     }
@@ -116,14 +153,15 @@ public final class Table implements Displayable {
     /**
      * Returns a column of numbers by name.
      *
-     * @throws IllegalArgumentException if there is none, or if it holds something other than numbers
+     * @throws IllegalArgumentException if there is none, or if it holds something other than numbers, naming the first row
+     *     that does
      */
     public NumberColumn numbers(String name) {
-        if (column(name) instanceof NumberColumn numbers) {
+        Column column = column(name);
+        if (column instanceof NumberColumn numbers) {
             return numbers;
         }
-        throw new IllegalArgumentException(
-                "'" + name + "' holds " + column(name).kind() + ", not numbers.");
+        throw WrongKind.notNumbers(column, source);
     }
 
     /** Returns the rows for which a condition holds, in their order. */
@@ -138,13 +176,65 @@ public final class Table implements Displayable {
         return rows(Arrays.copyOf(kept, count));
     }
 
-    /** Returns the given rows, counted from 0, in the given order. */
+    /**
+     * Returns the given rows, counted from 0, in the given order.
+     *
+     * @throws IllegalArgumentException if a row does not exist
+     */
     public Table rows(int... rows) {
+        for (int row : rows) {
+            if (row < 0 || row >= rowCount) {
+                throw new IllegalArgumentException("there is no row " + row + " in " + source + ": its "
+                        + Numbers.count(rowCount, "row") + " are counted from 0 here.");
+            }
+        }
         List<Column> chosen = new ArrayList<>();
         for (Column column : columns.values()) {
             chosen.add(column.rows(rows));
         }
         return of(source, chosen);
+    }
+
+    /**
+     * Returns the first rows, all of which are shown when this is the result of a cell.
+     *
+     * @param count how many, 0 or more; more than there are gives all
+     */
+    public Table head(int count) {
+        if (count < 0) {
+            throw new IllegalArgumentException("head takes 0 or more rows, but was asked for " + count + ".");
+        }
+        Table first = rows(IntStream.range(0, Math.min(count, rowCount)).toArray());
+        return new Table(source, first.columns, first.rowCount, first.rowCount);
+    }
+
+    /**
+     * Returns this table with only the named columns, in the given order.
+     *
+     * @throws IllegalArgumentException if a column is unknown or named twice
+     */
+    public Table select(String... names) {
+        return of(source, Arrays.stream(names).map(this::column).toList());
+    }
+
+    /**
+     * Returns the rows in ascending order of a column: numbers by size, texts by letter, dates by time. Missing values come
+     * last; equal ones keep their order.
+     *
+     * @throws IllegalArgumentException if the column is unknown
+     */
+    public Table sortedBy(String name) {
+        return rows(RowOrder.ascending(column(name)));
+    }
+
+    /** Returns the rows in descending order of a column, otherwise as {@link #sortedBy} does; missing values come last. */
+    public Table sortedDescendingBy(String name) {
+        return rows(RowOrder.descending(column(name)));
+    }
+
+    /** Returns what each column holds, in brief. */
+    public TableSummary summary() {
+        return TableSummary.of(this);
     }
 
     /** Returns this table with a column added at the end, or replaced where the name is taken. */
@@ -154,13 +244,56 @@ public final class Table implements Displayable {
         return of(source, List.copyOf(newColumns.values()));
     }
 
+    /**
+     * Returns this table with a column of numbers worked out row by row, added at the end or put where the name is taken:
+     * {@code table.with("logDose", row -> Math.log(row.number("dose") + 10))}.
+     *
+     * @param value gives the number; NaN where it is missing, which is accepted only in a row that lacks some value
+     * @throws IllegalArgumentException if a value is infinite, or NaN in a row that lacks nothing, naming the row
+     */
+    public Table with(String name, ToDoubleFunction<Row> value) {
+        double[] values = new double[rowCount];
+        for (int row = 0; row < rowCount; row++) {
+            values[row] = value.applyAsDouble(new Row(this, row));
+            if (Double.isInfinite(values[row]) || (Double.isNaN(values[row]) && isComplete(row))) {
+                throw new IllegalArgumentException("'" + name + "' would be " + values[row] + " in row " + (row + 1)
+                        + " of " + source + ". Look at that row for a value the calculation cannot take, such as 0 in a"
+                        + " logarithm or in a division.");
+            }
+        }
+        return with(NumberColumn.keeping(name, values));
+    }
+
+    /**
+     * Returns this table with a column of texts worked out row by row, added at the end or put where the name is taken.
+     *
+     * @param value gives the text; an empty text stands for a missing value
+     */
+    public Table withText(String name, Function<Row, String> value) {
+        @Nullable String[] values = new String[rowCount];
+        for (int row = 0; row < rowCount; row++) {
+            String text = value.apply(new Row(this, row));
+            values[row] = text.isEmpty() ? null : text;
+        }
+        return with(TextColumn.of(name, values));
+    }
+
+    private boolean isComplete(int row) {
+        for (Column column : columns.values()) {
+            if (column.isMissing(row)) {
+                return false;
+            }
+        }
+        return true;
+    }
+
     @Override
     public MimeBundle display() {
-        return MimeBundle.text(toString());
+        return TableGrid.of(this, shownRows).display();
     }
 
     @Override
     public String toString() {
-        return source + ": " + rowCount + " rows, columns " + String.join(", ", columns.keySet());
+        return TableGrid.of(this, shownRows).toString();
     }
 }

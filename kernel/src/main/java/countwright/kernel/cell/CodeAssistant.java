@@ -61,8 +61,7 @@ final class CodeAssistant {
     Completions complete(String code, int cursor) {
         int start = startOfPieceAt(code, cursor);
         int[] anchor = {cursor - start};
-        List<Suggestion> suggestions =
-                analysis.completionSuggestions(code.substring(start), cursor - start, anchor);
+        List<Suggestion> suggestions = analysis.completionSuggestions(code.substring(start), cursor - start, anchor);
         // Better fits for the expected type come first; otherwise the compiler's order stands.
         Map<String, Completions.Match> matches = new LinkedHashMap<>();
         for (boolean fits : new boolean[] {true, false}) {
@@ -90,8 +89,7 @@ final class CodeAssistant {
         int start = startOfPieceAt(code, cursor);
         String piece = code.substring(start);
         int end = endOfName(piece, cursor - start);
-        List<Documentation> found =
-                analysis.documentation(piece, end, detail == CellEngine.Detail.FULL);
+        List<Documentation> found = analysis.documentation(piece, end, detail == CellEngine.Detail.FULL);
         if (found.isEmpty() && end < piece.length() && piece.charAt(end) == '(') {
             found = analysis.documentation(piece, end + 1, detail == CellEngine.Detail.FULL);
         }

@@ -45,7 +45,7 @@ final class CompileReport {
         }
         if (lines.isEmpty()) {
             first = unresolved(snippet).orElse("this piece of code cannot be compiled.");
-            Place place = cell.placeOf(piece.start() + leadingBlanks(piece.source()));
+            Place place = cell.placeOf(piece.start());
             lines.add(header(cell, place));
             lines.add(first);
         }
@@ -117,14 +117,17 @@ final class CompileReport {
         String owner = location.find() ? location.group(1).strip() : "";
         boolean member = !owner.isEmpty() && !owner.equals("class");
         String text = "'" + name + "' is not known: "
-                + (member ? memberSentence(kind, owner) : "no " + kind + " of that name has been declared or imported.");
+                + (member
+                        ? memberSentence(kind, owner)
+                        : "no " + kind + " of that name has been declared or imported.");
         Optional<String> near = member ? Optional.empty() : NearNames.nearest(name, declaredNames());
         if (near.isPresent()) {
             return text + "\nDid you mean '" + near.get() + "'?";
         }
         return member
                 ? text
-                : text + "\nIf another cell declares it, run that cell first; otherwise declare it or correct the spelling.";
+                : text
+                        + "\nIf another cell declares it, run that cell first; otherwise declare it or correct the spelling.";
     }
 
     private static String memberSentence(String kind, String owner) {
@@ -138,10 +141,6 @@ final class CompileReport {
                 .map(snippet -> ((DeclarationSnippet) snippet).name());
         Stream<String> imported = shell.imports().map(ImportSnippet::name);
         return Stream.concat(declared, imported).distinct().toList();
-    }
-
-    private static int leadingBlanks(String source) {
-        return source.length() - source.stripLeading().length();
     }
 
     private static String capitalised(String text) {

@@ -10,13 +10,13 @@ import java.util.Optional;
 import java.util.concurrent.CompletableFuture;
 import java.util.concurrent.CompletionException;
 import java.util.concurrent.atomic.AtomicBoolean;
-import java.util.concurrent.atomic.AtomicReference;
 
 /** Cells compiled by JShell in this process and run in a worker, which is replaced whenever it is lost. */
 public final class JShellEngine implements CellEngine {
 
     private final WorkerSettings settings;
-    private final AtomicReference<CompletableFuture<JavaSession>> session = new AtomicReference<>();
+    private final Object replacing = new Object();
+    private volatile CompletableFuture<JavaSession> session;
     private final AtomicBoolean stopRequested = new AtomicBoolean();
     private volatile boolean running;
     private volatile Optional<String> lossToReport = Optional.empty();
@@ -24,42 +24,46 @@ public final class JShellEngine implements CellEngine {
 
     private JShellEngine(WorkerSettings settings) {
         this.settings = settings;
+        this.session = startSession();
     }
 
     /** Starts a session behind the caller's back and returns at once; the first use waits for it. */
     public static JShellEngine start(WorkerSettings settings) {
-        JShellEngine engine = new JShellEngine(settings);
-        engine.session.set(engine.startSession());
-        return engine;
+        return new JShellEngine(settings);
     }
 
     @Override
     public CellOutcome evaluate(String code, int executionCount, CellListener listener) {
-        stopRequested.set(false);
-        running = true;
-        try {
-            return evaluate(new CellText("cell [" + executionCount + "]", code), listener);
-        } finally {
-            running = false;
-        }
+        return run(new CellText("cell [" + executionCount + "]", code), listener);
     }
 
     @Override
     public Map<String, CellOutcome> evaluateExpressions(Map<String, String> expressions) {
         Map<String, CellOutcome> outcomes = new LinkedHashMap<>();
         expressions.forEach((name, code) ->
-                outcomes.put(name, evaluate(new CellText("expression '" + name + "'", code), new Unheard())));
+                outcomes.put(name, run(new CellText("expression '" + name + "'", code), new Unheard())));
         return outcomes;
     }
 
-    private CellOutcome evaluate(CellText cell, CellListener listener) {
-        CompletableFuture<JavaSession> starting = session.get();
+    private CellOutcome run(CellText cell, CellListener listener) {
+        stopRequested.set(false);
+        running = true;
+        try {
+            return runInSession(cell, listener);
+        } finally {
+            running = false;
+        }
+    }
+
+    private CellOutcome runInSession(CellText cell, CellListener listener) {
+        CompletableFuture<JavaSession> starting = session;
         JavaSession current;
         try {
             current = starting.join();
         } catch (CompletionException e) {
-            session.compareAndSet(starting, startSession());
-            String message = "the worker that runs cells could not be started: " + e.getCause().getMessage();
+            replace(starting);
+            Throwable cause = e.getCause() == null ? e : e.getCause();
+            String message = "the worker that runs cells could not be started: " + cause.getMessage();
             return new CellOutcome.Failure("WorkerLost", message, List.of(message));
         }
         lossToReport.ifPresent(how -> listener.output(
@@ -69,24 +73,25 @@ public final class JShellEngine implements CellEngine {
         lossToReport = Optional.empty();
         CellOutcome outcome = current.run(cell, listener, stopRequested::get);
         if (current.loss().isPresent()) {
-            replace(starting, current);
+            replace(starting);
+            current.close(Duration.ZERO);
         }
         return outcome;
     }
 
     @Override
     public Completeness completeness(String code) {
-        return session.get().join().completeness(code);
+        return session.join().completeness(code);
     }
 
     @Override
     public Completions complete(String code, int cursor) {
-        return session.get().join().complete(code, cursor);
+        return session.join().complete(code, cursor);
     }
 
     @Override
     public MimeBundle inspect(String code, int cursor, Detail detail) {
-        return session.get().join().inspect(code, cursor, detail);
+        return session.join().inspect(code, cursor, detail);
     }
 
     @Override
@@ -95,7 +100,7 @@ public final class JShellEngine implements CellEngine {
             return;
         }
         stopRequested.set(true);
-        CompletableFuture<JavaSession> current = session.get();
+        CompletableFuture<JavaSession> current = session;
         if (current.isDone() && !current.isCompletedExceptionally()) {
             current.join().interrupt();
         }
@@ -104,7 +109,7 @@ public final class JShellEngine implements CellEngine {
     @Override
     public void close(Duration patience) {
         closed = true;
-        CompletableFuture<JavaSession> current = session.get();
+        CompletableFuture<JavaSession> current = session;
         if (current.isDone() && !current.isCompletedExceptionally()) {
             current.join().close(patience);
         } else {
@@ -136,15 +141,18 @@ public final class JShellEngine implements CellEngine {
 
     /** A worker lost while a cell runs is reported by that cell; one lost in between, by the next. */
     private void replaceIdle(CompletableFuture<JavaSession> lost, JavaSession old) {
-        if (!running && !closed && session.get() == lost) {
+        if (!running && !closed && session == lost) {
             lossToReport = old.loss();
-            replace(lost, old);
+            replace(lost);
+            old.close(Duration.ZERO);
         }
     }
 
-    private void replace(CompletableFuture<JavaSession> lost, JavaSession old) {
-        if (!closed && session.get() == lost && session.compareAndSet(lost, startSession())) {
-            old.close(Duration.ZERO);
+    private void replace(CompletableFuture<JavaSession> lost) {
+        synchronized (replacing) {
+            if (!closed && session == lost) {
+                session = startSession();
+            }
         }
     }
 

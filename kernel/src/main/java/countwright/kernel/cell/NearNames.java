@@ -34,8 +34,8 @@ final class NearNames {
                     continue;
                 }
                 int substitution = a.charAt(i - 1) == b.charAt(k - 1) ? 0 : 1;
-                int value = Math.min(
-                        Math.min(table[i - 1][k], table[i][k - 1]) + 1, table[i - 1][k - 1] + substitution);
+                int value =
+                        Math.min(Math.min(table[i - 1][k], table[i][k - 1]) + 1, table[i - 1][k - 1] + substitution);
                 if (i > 1 && k > 1 && a.charAt(i - 1) == b.charAt(k - 2) && a.charAt(i - 2) == b.charAt(k - 1)) {
                     value = Math.min(value, table[i - 2][k - 2] + 1);
                 }

@@ -18,7 +18,8 @@ final class SessionImports {
     static List<String> read() {
         try (InputStream in = Displayable.class.getResourceAsStream(RESOURCE)) {
             if (in == null) {
-                throw new IllegalStateException("the library's " + RESOURCE + " is missing; install Countwright again.");
+                throw new IllegalStateException(
+                        "the library's " + RESOURCE + " is missing; install Countwright again.");
             }
             return new String(in.readAllBytes(), StandardCharsets.UTF_8)
                     .lines()

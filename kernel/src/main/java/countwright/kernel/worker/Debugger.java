@@ -143,7 +143,7 @@ final class Debugger implements AutoCloseable {
     @Override
     public void close() {
         stopListening();
-        machine.thenAccept(attached -> {
+        var unused = machine.thenAccept(attached -> {
             try {
                 attached.dispose();
             } catch (VMDisconnectedException e) {

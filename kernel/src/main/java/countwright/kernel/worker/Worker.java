@@ -20,7 +20,6 @@ import java.util.Map;
 import java.util.concurrent.CompletableFuture;
 import java.util.concurrent.ExecutionException;
 import java.util.concurrent.TimeUnit;
-import java.util.concurrent.atomic.AtomicLong;
 import java.util.concurrent.atomic.AtomicReference;
 import org.jspecify.annotations.Nullable;
 
@@ -42,7 +41,6 @@ public final class Worker implements AutoCloseable {
     private final WorkerListener listener;
     private final Interrupter interrupter;
     private final AtomicReference<@Nullable CompletableFuture<Frame.Reply>> waiting = new AtomicReference<>();
-    private final AtomicLong requestsEnded = new AtomicLong();
     private final CompletableFuture<String> loss = new CompletableFuture<>();
     private volatile boolean leaving;
 
@@ -69,7 +67,8 @@ public final class Worker implements AutoCloseable {
                 stdin.write((server.getLocalPort() + " " + token + "\n").getBytes(StandardCharsets.US_ASCII));
             }
             ProcessOutput output = new ProcessOutput(process.getInputStream(), listener);
-            process.onExit().thenRun(() -> closeQuietly(server));
+            // A worker that dies at birth never connects.
+            var unused = process.onExit().thenRun(() -> closeQuietly(server));
             Socket socket = connect(server, process, output);
             FrameStream stream = new FrameStream(socket.getInputStream(), socket.getOutputStream());
             if (!(stream.read() instanceof Frame.Ready ready) || !ready.token().equals(token)) {
@@ -106,10 +105,9 @@ public final class Worker implements AutoCloseable {
             Thread.currentThread().interrupt();
             throw new WorkerLostException("the kernel is closing");
         } catch (ExecutionException e) {
-            throw new WorkerLostException(String.valueOf(e.getCause().getMessage()));
+            throw new WorkerLostException(loss.join());
         } finally {
             waiting.set(null);
-            requestsEnded.incrementAndGet();
         }
     }
 
@@ -126,9 +124,19 @@ public final class Worker implements AutoCloseable {
         }
     }
 
+    /** Says that a cell starts, so that an interrupt has something to stop. */
+    public void cellStarted() {
+        interrupter.cellStarted();
+    }
+
+    /** Says that the cell is over. */
+    public void cellEnded() {
+        interrupter.cellEnded();
+    }
+
     /**
-     * Asks what runs now to stop: by interrupt at once, by force a moment later; a second call while the first has not
-     * helped ends the worker. Returns at once.
+     * Asks the running cell to stop: by interrupt at once, by force a moment later; a second call while the first has
+     * not helped ends the worker. Returns at once.
      */
     public void interrupt() {
         interrupter.interrupt();
@@ -170,15 +178,6 @@ public final class Worker implements AutoCloseable {
         process.destroyForcibly();
     }
 
-    /** Returns a number that changes whenever a request ends. */
-    long requestsEnded() {
-        return requestsEnded.get();
-    }
-
-    boolean isWaiting() {
-        return waiting.get() != null;
-    }
-
     private void readForever() {
         try {
             while (true) {
@@ -209,7 +208,7 @@ public final class Worker implements AutoCloseable {
         loss.complete(how);
         CompletableFuture<Frame.Reply> request = waiting.get();
         if (request != null) {
-            request.completeExceptionally(new WorkerLostException(how));
+            var unused = request.completeExceptionally(new WorkerLostException(how));
         }
     }
 

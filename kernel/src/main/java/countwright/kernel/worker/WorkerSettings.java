@@ -62,7 +62,9 @@ public record WorkerSettings(List<Path> classPath, List<String> jvmOptions, Map<
     private static List<Path> installedClassPath() {
         String given = System.getProperty(CLASS_PATH_PROPERTY, "");
         if (!given.isEmpty()) {
-            return Arrays.stream(given.split(File.pathSeparator, -1)).map(Path::of).toList();
+            return Arrays.stream(given.split(File.pathSeparator, -1))
+                    .map(Path::of)
+                    .toList();
         }
         String home = System.getProperty(HOME_PROPERTY, "");
         if (home.isEmpty()) {

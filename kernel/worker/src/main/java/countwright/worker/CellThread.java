@@ -38,6 +38,7 @@ public final class CellThread extends Thread {
     private static final long LARGEST_BUNDLE = 64L << 20;
 
     /** What the kernel throws into this thread. Made beforehand, since nothing can be made while it is suspended. */
+    @SuppressWarnings("StaticAssignmentOfThrowable")
     static final CellStop STOP = new CellStop();
 
     // Both are read by the kernel through the debugger interface.

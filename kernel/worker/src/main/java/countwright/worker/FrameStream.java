@@ -51,7 +51,7 @@ public final class FrameStream {
             out.writeByte(Tag.INVOKE);
             writeText(invoke.className());
             writeText(invoke.methodName());
-            out.writeByte(invoke.want().ordinal());
+            writeConstant(invoke.want());
         } else if (frame instanceof Frame.ReadVariable read) {
             out.writeByte(Tag.READ_VARIABLE);
             writeText(read.className());
@@ -87,7 +87,7 @@ public final class FrameStream {
             writeFault(failed.fault());
         } else if (frame instanceof Frame.Output output) {
             out.writeByte(Tag.OUTPUT);
-            out.writeByte(output.channel().ordinal());
+            writeConstant(output.channel());
             writeBytes(output.bytes().toArray());
         } else if (frame instanceof Frame.Shown shown) {
             out.writeByte(Tag.SHOWN);
@@ -99,12 +99,12 @@ public final class FrameStream {
             writeText(updated.displayId());
         } else if (frame instanceof Frame.Cleared cleared) {
             out.writeByte(Tag.CLEARED);
-            out.writeByte(cleared.when().ordinal());
+            writeConstant(cleared.when());
         } else if (frame instanceof Frame.Asked asked) {
             out.writeByte(Tag.ASKED);
             out.writeInt(asked.question());
             writeText(asked.prompt());
-            out.writeByte(asked.echo().ordinal());
+            writeConstant(asked.echo());
         } else {
             throw new IllegalArgumentException("no encoding for " + frame);
         }
@@ -133,7 +133,8 @@ public final class FrameStream {
             case Tag.REFUSE -> new Frame.Refuse(in.readInt(), readText());
             case Tag.LEAVE -> new Frame.Leave();
             case Tag.READY -> new Frame.Ready(readText(), in.readLong());
-            case Tag.DONE -> new Frame.Done(readText(), in.readBoolean() ? Optional.of(readBundle()) : Optional.empty());
+            case Tag.DONE ->
+                new Frame.Done(readText(), in.readBoolean() ? Optional.of(readBundle()) : Optional.empty());
             case Tag.FAILED -> new Frame.Failed(readFault());
             case Tag.OUTPUT -> new Frame.Output(readConstant(Frame.Channel.values()), Bytes.keeping(readBytes()));
             case Tag.SHOWN -> new Frame.Shown(readBundle(), readOptionalText());
@@ -345,6 +346,12 @@ public final class FrameStream {
             throw new IOException("damaged stream: a list of " + count + " items");
         }
         return count;
+    }
+
+    /** By position, since both ends always come from the same build. */
+    @SuppressWarnings("EnumOrdinal")
+    private void writeConstant(Enum<?> constant) throws IOException {
+        out.writeByte(constant.ordinal());
     }
 
     private <E extends Enum<E>> E readConstant(E[] constants) throws IOException {

@@ -4,9 +4,9 @@ import countwright.show.MimeBundle;
 import countwright.show.Stage;
 import java.util.Map;
 import java.util.Optional;
-import java.util.concurrent.CompletableFuture;
+import java.util.concurrent.ArrayBlockingQueue;
+import java.util.concurrent.BlockingQueue;
 import java.util.concurrent.ConcurrentHashMap;
-import java.util.concurrent.ExecutionException;
 import java.util.concurrent.atomic.AtomicInteger;
 
 /** The stage of a session: shows and asks through the kernel. */
@@ -14,7 +14,7 @@ final class StageChannel implements Stage {
 
     private final Outbox outbox;
     private final AtomicInteger questions = new AtomicInteger();
-    private final Map<Integer, CompletableFuture<String>> waiting = new ConcurrentHashMap<>();
+    private final Map<Integer, BlockingQueue<Frame.ToWorker>> waiting = new ConcurrentHashMap<>();
 
     StageChannel(Outbox outbox) {
         this.outbox = outbox;
@@ -43,32 +43,28 @@ final class StageChannel implements Stage {
     @Override
     public String ask(String prompt, Echo echo) {
         int question = questions.incrementAndGet();
-        CompletableFuture<String> answer = new CompletableFuture<>();
-        waiting.put(question, answer);
+        BlockingQueue<Frame.ToWorker> reply = new ArrayBlockingQueue<>(1);
+        waiting.put(question, reply);
         try {
             outbox.put(new Frame.Asked(question, prompt, echo));
-            return answer.get();
+            Frame.ToWorker frame = reply.take();
+            if (frame instanceof Frame.Refuse refuse) {
+                throw new IllegalStateException(refuse.reason());
+            }
+            return ((Frame.Answer) frame).line();
         } catch (InterruptedException e) {
             Thread.currentThread().interrupt();
             throw new IllegalStateException("interrupted while waiting for input", e);
-        } catch (ExecutionException e) {
-            throw new IllegalStateException(String.valueOf(e.getCause().getMessage()));
         } finally {
             waiting.remove(question);
         }
     }
 
-    void answer(Frame.Answer answer) {
-        CompletableFuture<String> asked = waiting.get(answer.question());
+    /** Passes on a reply; one that nobody waits for any more is dropped. */
+    void reply(int question, Frame.ToWorker reply) {
+        BlockingQueue<Frame.ToWorker> asked = waiting.get(question);
         if (asked != null) {
-            asked.complete(answer.line());
-        }
-    }
-
-    void refuse(Frame.Refuse refuse) {
-        CompletableFuture<String> asked = waiting.get(refuse.question());
-        if (asked != null) {
-            asked.completeExceptionally(new IllegalStateException(refuse.reason()));
+            var unused = asked.offer(reply);
         }
     }
 }

@@ -62,9 +62,9 @@ public final class WorkerMain {
                 } else if (frame instanceof Frame.Interrupt) {
                     cells.interrupt();
                 } else if (frame instanceof Frame.Answer answer) {
-                    stage.answer(answer);
+                    stage.reply(answer.question(), answer);
                 } else if (frame instanceof Frame.Refuse refuse) {
-                    stage.refuse(refuse);
+                    stage.reply(refuse.question(), refuse);
                 } else if (frame instanceof Frame.Leave) {
                     return;
                 }
@@ -98,7 +98,6 @@ public final class WorkerMain {
                 },
                 "warm-up");
         warming.setDaemon(true);
-        warming.setPriority(Thread.MIN_PRIORITY);
         warming.start();
     }
 
