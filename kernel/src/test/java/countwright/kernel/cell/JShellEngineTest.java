@@ -182,7 +182,8 @@ class JShellEngineTest {
         @Test
         void exception_isToldInTheUsersLines() {
             engine.evaluate("int divide(int a, int b) {\n    return a / b;\n}", 7, new Heard());
-            assertThat(failureOf("int x = 1;\n\n// on the third line\ndivide(x, 0)").traceback())
+            assertThat(failureOf("int x = 1;\n\n// on the third line\ndivide(x, 0)")
+                            .traceback())
                     .containsExactly(
                             "ArithmeticException: / by zero",
                             "  in cell [7], line 2, in divide:   return a / b;",

@@ -1,0 +1,134 @@
+package countwright.kernel.service;
+
+import static org.assertj.core.api.Assertions.assertThat;
+
+import countwright.kernel.wire.Channel;
+import countwright.kernel.wire.ClientSockets;
+import countwright.kernel.wire.ConnectionFile;
+import countwright.kernel.wire.Message;
+import java.util.ArrayList;
+import java.util.List;
+import java.util.concurrent.TimeUnit;
+import java.util.function.Predicate;
+import tools.jackson.databind.json.JsonMapper;
+import tools.jackson.databind.node.JsonNodeFactory;
+import tools.jackson.databind.node.ObjectNode;
+
+/** A front end that keeps everything it hears and can wait, with a limit, for what it wants to hear. */
+final class FrontEnd implements AutoCloseable {
+
+    private static final long LIMIT_SECONDS = 10;
+
+    private final List<Heard> heard = new ArrayList<>();
+    private final ClientSockets sockets;
+
+    record Heard(Channel channel, Message message) {}
+
+    FrontEnd(ConnectionFile connection) throws Exception {
+        sockets = ClientSockets.connect(connection, "tester", (channel, envelope) -> {
+            synchronized (heard) {
+                heard.add(new Heard(channel, envelope.message()));
+                heard.notifyAll();
+            }
+        });
+        sockets.subscribed().get(LIMIT_SECONDS, TimeUnit.SECONDS);
+    }
+
+    /** Sends a request whose content is given as JSON with single quotes. */
+    Message send(Channel channel, String type, String content) {
+        Message request = sockets.request(type, json(content));
+        sockets.send(channel, request);
+        return request;
+    }
+
+    Message execute(String code) {
+        return execute(code, "{}");
+    }
+
+    Message execute(String code, String options) {
+        ObjectNode content = json(options).put("code", code);
+        Message request = sockets.request("execute_request", content);
+        sockets.send(Channel.SHELL, request);
+        return request;
+    }
+
+    void answer(Message question, String value) {
+        ObjectNode content = JsonNodeFactory.instance.objectNode().put("value", value);
+        sockets.send(Channel.STDIN, sockets.answer("input_reply", question, content));
+    }
+
+    void answerWithoutParent(String value) {
+        ObjectNode content = JsonNodeFactory.instance.objectNode().put("value", value);
+        sockets.send(Channel.STDIN, sockets.request("input_reply", content));
+    }
+
+    Message await(Channel channel, String type, Message cause) throws InterruptedException {
+        return await(
+                type,
+                item -> item.channel() == channel
+                        && item.message().type().equals(type)
+                        && item.message().isCausedBy(cause.header()));
+    }
+
+    /** Waits for the reply and for idle, so that everything about the request has been heard. */
+    Message reply(Message request) throws InterruptedException {
+        awaitIdle(request);
+        return await(
+                "a reply to " + request.type(),
+                item -> (item.channel() == Channel.SHELL || item.channel() == Channel.CONTROL)
+                        && item.message().isCausedBy(request.header()));
+    }
+
+    void awaitIdle(Message request) throws InterruptedException {
+        await(
+                "idle after " + request.type(),
+                item -> item.message().type().equals("status")
+                        && item.message().isCausedBy(request.header())
+                        && state(item.message()).equals("idle"));
+    }
+
+    /** Returns what was heard so far about a request on a channel. */
+    List<Message> about(Message request, Channel channel) {
+        synchronized (heard) {
+            return heard.stream()
+                    .filter(item -> item.channel() == channel && item.message().isCausedBy(request.header()))
+                    .map(Heard::message)
+                    .toList();
+        }
+    }
+
+    List<String> publishedTypes(Message request) {
+        return about(request, Channel.IOPUB).stream().map(Message::type).toList();
+    }
+
+    static String state(Message status) {
+        return status.content().path("execution_state").stringValue("");
+    }
+
+    static ObjectNode json(String text) {
+        return (ObjectNode) JsonMapper.shared().readTree(text.replace('\'', '"'));
+    }
+
+    private Message await(String what, Predicate<Heard> wanted) throws InterruptedException {
+        long deadline = System.nanoTime() + TimeUnit.SECONDS.toNanos(LIMIT_SECONDS);
+        synchronized (heard) {
+            while (true) {
+                for (Heard item : heard) {
+                    if (wanted.test(item)) {
+                        return item.message();
+                    }
+                }
+                long left = TimeUnit.NANOSECONDS.toMillis(deadline - System.nanoTime());
+                assertThat(left)
+                        .as("time left to hear " + what + " among " + heard)
+                        .isPositive();
+                heard.wait(left);
+            }
+        }
+    }
+
+    @Override
+    public void close() {
+        sockets.close();
+    }
+}
