@@ -1,6 +1,5 @@
 package countwright.fit;
 
-import java.util.ArrayList;
 import java.util.Arrays;
 import java.util.List;
 
@@ -23,37 +22,32 @@ final class Cholesky {
     private static final double TOLERANCE = 1e-18;
 
     private final int[] kept;
-    private final Twofold[][] factor;
+    private final TwofoldRows factor;
 
-    private Cholesky(int[] kept, Twofold[][] factor) {
+    private Cholesky(int[] kept, TwofoldRows factor) {
         this.kept = kept;
         this.factor = factor;
     }
 
     /** Factors the part of a packed lower triangle that belongs to the candidate columns, which ascend. */
     static Cholesky of(TwofoldSums triangle, List<Integer> candidates) {
-        List<Integer> kept = new ArrayList<>();
-        Twofold[][] rows = new Twofold[candidates.size()][];
+        int[] kept = new int[candidates.size()];
+        int rank = 0;
+        TwofoldRows factor = new TwofoldRows(candidates.size());
         for (int column : candidates) {
-            int size = kept.size();
-            Twofold[] row = new Twofold[size + 1];
-            Twofold diagonal = triangle.get(packed(column, column));
-            Twofold pivot = diagonal;
-            for (int k = 0; k < size; k++) {
-                Twofold sum = triangle.get(packed(column, kept.get(k)));
-                for (int m = 0; m < k; m++) {
-                    sum = sum.minus(row[m].times(rows[k][m]));
-                }
-                row[k] = sum.over(rows[k][k]);
-                pivot = pivot.minus(row[k].times(row[k]));
+            factor.start(rank, rank + 1);
+            for (int k = 0; k < rank; k++) {
+                Twofold rest = triangle.get(packed(column, kept[k])).minus(factor.dot(rank, factor, k, 0, k));
+                factor.set(rank, k, rest.over(factor.get(k, k)));
             }
+            Twofold diagonal = triangle.get(packed(column, column));
+            Twofold pivot = diagonal.minus(factor.dot(rank, factor, rank, 0, rank));
             if (pivot.high() > TOLERANCE * diagonal.high()) {
-                row[size] = pivot.root();
-                rows[size] = row;
-                kept.add(column);
+                factor.set(rank, rank, pivot.root());
+                kept[rank++] = column;
             }
         }
-        return new Cholesky(kept.stream().mapToInt(Integer::intValue).toArray(), rows);
+        return new Cholesky(Arrays.copyOf(kept, rank), factor);
     }
 
     /** Returns the position of row i, column j (j <= i) in a packed lower triangle. */
@@ -76,16 +70,16 @@ final class Cholesky {
         for (int i = 0; i < n; i++) {
             Twofold sum = b.get(kept[i]);
             for (int k = 0; k < i; k++) {
-                sum = sum.minus(factor[i][k].times(x[k]));
+                sum = sum.minus(factor.get(i, k).times(x[k]));
             }
-            x[i] = sum.over(factor[i][i]);
+            x[i] = sum.over(factor.get(i, i));
         }
         for (int i = n - 1; i >= 0; i--) {
             Twofold sum = x[i];
             for (int k = i + 1; k < n; k++) {
-                sum = sum.minus(factor[k][i].times(x[k]));
+                sum = sum.minus(factor.get(k, i).times(x[k]));
             }
-            x[i] = sum.over(factor[i][i]);
+            x[i] = sum.over(factor.get(i, i));
         }
         double[] solution = new double[columnCount];
         for (int i = 0; i < n; i++) {
@@ -96,30 +90,30 @@ final class Cholesky {
 
     /** Returns the inverse of the kept part, in its place in a packed lower triangle over all columns. */
     TwofoldTriangle inverse(int columnCount) {
+        TwofoldRows inverse = inverseOfFactor();
         int n = kept.length;
-        Twofold[][] inverse = new Twofold[n][];
-        for (int i = 0; i < n; i++) {
-            inverse[i] = new Twofold[i + 1];
-            Twofold one = new Twofold(1, 0);
-            inverse[i][i] = one.over(factor[i][i]);
-            for (int j = 0; j < i; j++) {
-                Twofold sum = Twofold.ZERO;
-                for (int k = j; k < i; k++) {
-                    sum = sum.minus(factor[i][k].times(inverse[k][j]));
-                }
-                inverse[i][j] = sum.over(factor[i][i]);
-            }
-        }
         TwofoldTriangle product = new TwofoldTriangle(columnCount);
         for (int i = 0; i < n; i++) {
             for (int j = 0; j <= i; j++) {
-                Twofold sum = Twofold.ZERO;
-                for (int k = i; k < n; k++) {
-                    sum = sum.plus(inverse[k][i].times(inverse[k][j]));
-                }
-                product.set(kept[i], kept[j], sum);
+                product.set(kept[i], kept[j], inverse.dot(i, inverse, j, i, n));
             }
         }
         return product;
+    }
+
+    /** Returns the inverse of L, transposed, so that both its making and its use run along rows. */
+    private TwofoldRows inverseOfFactor() {
+        int n = kept.length;
+        Twofold one = new Twofold(1, 0);
+        TwofoldRows inverse = new TwofoldRows(n);
+        for (int j = 0; j < n; j++) {
+            inverse.start(j, n);
+            inverse.set(j, j, one.over(factor.get(j, j)));
+            for (int i = j + 1; i < n; i++) {
+                Twofold sum = factor.dot(i, inverse, j, j, i);
+                inverse.set(j, i, Twofold.ZERO.minus(sum).over(factor.get(i, i)));
+            }
+        }
+        return inverse;
     }
 }

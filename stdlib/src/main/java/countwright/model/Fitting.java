@@ -11,12 +11,16 @@ import countwright.fit.RowSource;
 import countwright.table.NumberColumn;
 import countwright.table.Table;
 import java.util.ArrayList;
+import java.util.Comparator;
 import java.util.List;
 import java.util.Optional;
 import java.util.function.IntToDoubleFunction;
 
 /** From a specification and a table to a fitted model: choose and check rows, bind the design, estimate. */
 final class Fitting {
+
+    /** Above this the square of the coefficients, and the time for their cube, is more than a session should wait for. */
+    private static final int MOST_COEFFICIENTS = 2000;
 
     private final CountModel spec;
     private final Table table;
@@ -58,11 +62,24 @@ final class Fitting {
     }
 
     private void checkSize() {
+        if (design.columnCount() > MOST_COEFFICIENTS) {
+            throw new IllegalArgumentException("the model has " + design.columnCount() + " coefficients, more than the "
+                    + MOST_COEFFICIENTS + " that can be fitted at once. " + largestFactor()
+                    + "Merge levels, or use linear(…) where the column is a quantity.");
+        }
         if (table.rowCount() < design.columnCount()) {
             throw new IllegalArgumentException(
                     "the model has " + design.columnCount() + " coefficients, but only " + table.rowCount()
                             + " rows to estimate them from. Use fewer terms, merge levels, or use more rows.");
         }
+    }
+
+    private String largestFactor() {
+        return design.factors().stream()
+                .max(Comparator.comparingInt(factor -> factor.levels().size()))
+                .map(factor -> "levels(\"" + factor.column() + "\") alone has "
+                        + factor.levels().size() + " levels. ")
+                .orElse("");
     }
 
     /** Refuses what would make every ratio infinite: no event at all, or none at a reference level. */

@@ -7,6 +7,8 @@ import static org.assertj.core.api.Assertions.assertThatThrownBy;
 import countwright.table.NumberColumn;
 import countwright.table.Table;
 import countwright.table.TextColumn;
+import java.util.Arrays;
+import java.util.stream.IntStream;
 import java.util.stream.Stream;
 import org.junit.jupiter.api.Test;
 import org.junit.jupiter.params.ParameterizedTest;
@@ -71,6 +73,19 @@ class CountModelMessagesTest {
         assertThatThrownBy(() -> CountModel.of("faults").fit(TABLE.rows()))
                 .isInstanceOf(IllegalArgumentException.class)
                 .hasMessageContaining("needs rows");
+    }
+
+    @Test
+    void fit_quantityTakenAsLevels_isRefusedBeforeItTakesForever() {
+        double[] serial = IntStream.range(0, 2500).asDoubleStream().toArray();
+        double[] ones = new double[serial.length];
+        Arrays.fill(ones, 1);
+        Table vehicles = Table.of(NumberColumn.of("faults", ones), NumberColumn.of("serial", serial));
+        assertThatThrownBy(() -> CountModel.of("faults").on(levels("serial")).fit(vehicles))
+                .isInstanceOf(IllegalArgumentException.class)
+                .hasMessageContaining("2500 coefficients")
+                .hasMessageContaining("levels(\"serial\") alone has 2500 levels")
+                .hasMessageContaining("linear(…)");
     }
 
     @Test
