@@ -1,6 +1,11 @@
 package countwright.kernel.cli;
 
+import countwright.kernel.cell.JShellEngine;
 import countwright.kernel.desk.DeskException;
+import countwright.kernel.service.KernelServer;
+import countwright.kernel.wire.ConnectionFile;
+import countwright.kernel.worker.WorkerSettings;
+import java.io.IOException;
 import java.nio.file.Path;
 import java.util.concurrent.Callable;
 import picocli.CommandLine.Command;
@@ -23,8 +28,22 @@ final class ConnectCommand implements Callable<Integer> {
         return serve(connectionFile);
     }
 
-    /** Serves one front end until it asks for shutdown. This is the one place where kernel and command line meet. */
+    /** Serves until a front end asks for shutdown. This is the one place where the parts of the kernel meet. */
     private static int serve(Path connectionFile) {
-        throw new DeskException("the kernel is not part of this build, so " + connectionFile + " was not served.");
+        KernelServer server;
+        try {
+            server = KernelServer.start(
+                    ConnectionFile.read(connectionFile), () -> JShellEngine.start(WorkerSettings.ofInstallation()));
+        } catch (IOException | IllegalArgumentException | IllegalStateException e) {
+            throw new DeskException(String.valueOf(e.getMessage()), e);
+        }
+        // A front end that ends the kernel by a signal must not leave its worker behind.
+        Runtime.getRuntime().addShutdownHook(new Thread(server::close, "countwright-end"));
+        try {
+            server.awaitShutdown();
+        } catch (InterruptedException e) {
+            Thread.currentThread().interrupt();
+        }
+        return Main.DONE;
     }
 }

@@ -26,7 +26,8 @@ final class ScriptedKernel {
     private int executionCount;
 
     private ScriptedKernel(ConnectionFile connection) {
-        this.sockets = KernelSockets.bind(connection, WireLimits.STANDARD, (channel, envelope) -> take(envelope));
+        this.sockets = KernelSockets.bind(connection, WireLimits.STANDARD);
+        sockets.start((channel, envelope) -> take(envelope));
     }
 
     static KernelCommand command() {
