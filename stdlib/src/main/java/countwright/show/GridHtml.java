@@ -24,7 +24,10 @@ final class GridHtml {
             "padding:0.24em 0.7em;border:none;vertical-align:top;color:inherit;background:transparent;";
     private static final String TEXT_CELL = CELL + "text-align:left;max-width:32em;overflow-wrap:break-word;";
     private static final String NUMBER_CELL = CELL + "text-align:right;white-space:nowrap;";
-    private static final String NOTE = "font-size:0.9em;opacity:0.8;max-width:48em;padding:0.15em 0.7em 0 0.7em";
+    private static final String NOTE = "font-size:0.9em;opacity:0.8;max-width:48em;padding:0.3em 0.7em 0 0.7em";
+
+    /** Short cells, dates among them, are not broken; long ones may be, so that a wide grid still prints whole. */
+    private static final int KEPT_ON_ONE_LINE = 12;
 
     private GridHtml() {}
 
@@ -33,7 +36,7 @@ final class GridHtml {
         html.append("<div style=\"").append(FRAME).append("\">\n");
         if (grid.headings().isEmpty()) {
             if (!grid.caption().isEmpty()) {
-                html.append("<div style=\"font-weight:600\">")
+                html.append("<div style=\"font-weight:600;padding:0 0.7em\">")
                         .append(Html.escape(grid.caption()))
                         .append("</div>\n");
             }
@@ -110,6 +113,7 @@ final class GridHtml {
             boolean namesRow = column == 0 && heading.align() == Grid.Align.LEFT;
             html.append(namesRow ? "<th scope=\"row\" style=\"" : "<td style=\"")
                     .append(cell(heading))
+                    .append(TextWidth.of(cells.get(column)) <= KEPT_ON_ONE_LINE ? "white-space:nowrap;" : "")
                     .append(namesRow ? "font-weight:normal;" : "")
                     .append("border-bottom:1px solid ")
                     .append(ruleBelow)

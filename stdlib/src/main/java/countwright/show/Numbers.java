@@ -110,15 +110,15 @@ public final class Numbers {
                 : significant(value, 4);
     }
 
-    /**
-     * Returns a ratio, such as a rate ratio: three significant digits below 10, else one decimal or none. The digits suit
-     * reading; take exact values from the object, not from text.
-     */
+    /** Returns a ratio, such as a rate ratio, to three significant digits. */
     public static String ratio(double value) {
         return significant(value, 3);
     }
 
-    /** Returns an interval, both ends to the same decimals, three significant digits at the narrower end: "0.87 to 1.23". */
+    /**
+     * Returns an interval, both ends to the same decimals, so that the end nearer to zero has at least three significant
+     * digits and the width at least two: "0.871 to 1.234".
+     */
     public static String interval(double lower, double upper) {
         double width = Math.abs(upper - lower);
         double smaller = Math.min(Math.abs(lower), Math.abs(upper));
@@ -161,9 +161,7 @@ public final class Numbers {
         if (percent > 99.9 && percent < 100) {
             return ">99.9%";
         }
-        return percent == Math.rint(percent) && Math.abs(percent) < HUGE
-                ? grouped(percent, 0) + "%"
-                : fixed(percent, 1) + "%";
+        return percent == 0 || percent == 100 ? grouped(percent, 0) + "%" : fixed(percent, 1) + "%";
     }
 
     /** Returns the decimals at which a positive number has some significant digits, at least 0 and at most 17. */

@@ -1,6 +1,7 @@
 package countwright.table;
 
 import java.time.LocalDate;
+import java.util.List;
 import org.jspecify.annotations.Nullable;
 
 /**
@@ -27,5 +28,10 @@ public final class Columns {
     /** Returns a column of dates; null marks a missing value. */
     public static DateColumn dates(String name, @Nullable LocalDate... values) {
         return DateColumn.of(name, values);
+    }
+
+    /** Names columns to read as texts, whatever they look like: {@code Table.read("faults.csv", asText("vehicle"))}. */
+    public static AsText asText(String... columns) {
+        return new AsText(List.of(columns));
     }
 }

@@ -32,6 +32,11 @@ public final class DateColumn implements Column {
         return new DateColumn(name, epochDays);
     }
 
+    /** Returns the days from 1970-01-01 to the date in a row that has one. */
+    int epochDay(int row) {
+        return epochDays[row];
+    }
+
     /** Returns the date in a row, or nothing where it is missing. */
     public Optional<LocalDate> date(int row) {
         return isMissing(row) ? Optional.empty() : Optional.of(LocalDate.ofEpochDay(epochDays[row]));

@@ -38,7 +38,7 @@ final class LevelSummary {
                 .toList();
         List<String> common = new ArrayList<>();
         for (int code : used.subList(0, Math.min(NAMED, used.size()))) {
-            common.add(column.levels().get(code) + " " + Numbers.percent(counts[code] / (double) present));
+            common.add(column.levels().get(code) + " (" + Numbers.percent(counts[code] / (double) present) + ")");
         }
         boolean allDifferent = used.size() == present && present > NAMED;
         String rest = used.size() > NAMED ? ", …" : "";

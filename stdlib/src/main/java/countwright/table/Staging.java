@@ -26,20 +26,32 @@ final class Staging {
 
     private final Connection connection;
     private final TableFile file;
+    private final AsText asText;
 
-    Staging(Connection connection, TableFile file) {
+    Staging(Connection connection, TableFile file, AsText asText) {
         this.connection = connection;
         this.file = file;
+        this.asText = asText;
     }
 
     /** Loads the file and returns its columns in order. */
     List<StagedColumn> load() throws SQLException {
         String path = Sql.text(literalPath());
-        return switch (file.format()) {
+        List<StagedColumn> columns = switch (file.format()) {
             case CSV, TSV -> loadText(path);
             case PARQUET -> loadTyped("read_parquet(" + path + ", hive_partitioning = false)");
             case JSON -> loadTyped("read_json(" + path + ", sample_size = -1, hive_partitioning = false)");
         };
+        List<String> names = columns.stream().map(StagedColumn::name).toList();
+        for (String name : asText.columns()) {
+            if (!names.contains(name)) {
+                String question = NearNames.question(name, names);
+                throw new IllegalArgumentException("asText names '" + name + "', but " + file.name()
+                        + " has no such column. " + (question.isEmpty() ? "" : question + " ") + "Its columns are "
+                        + NearNames.list(names) + ".");
+            }
+        }
+        return columns;
     }
 
     /** Returns the path with the signs escaped that would otherwise stand for any name. */
@@ -65,7 +77,12 @@ final class Staging {
                 + ", quote = '\"', escape = '\"', nullstr = ['', 'NA'], hive_partitioning = false, columns = {" + types
                 + "})");
         List<Set<Written>> possible = new ArrayList<>();
-        columns.forEach(column -> possible.add(EnumSet.allOf(Written.class)));
+        for (String name : head.names()) {
+            possible.add(EnumSet.allOf(Written.class));
+            if (asText.columns().contains(name)) {
+                possible.get(possible.size() - 1).clear();
+            }
+        }
         rejectIn(TABLE + " LIMIT " + SAMPLE_ROWS, columns, possible);
         rejectIn(TABLE, columns, possible);
         List<StagedColumn> staged = new ArrayList<>();
@@ -121,6 +138,9 @@ final class Staging {
     }
 
     private StagedColumn.Kind kind(String column, String type) {
+        if (asText.columns().contains(column)) {
+            return StagedColumn.Kind.TEXT;
+        }
         if (type.startsWith("DECIMAL(")) {
             return StagedColumn.Kind.NUMBER;
         }

@@ -82,12 +82,22 @@ public final class Table implements Displayable {
      *     is of a type a table cannot hold, or holds whole numbers beyond 2^53, whose digits would be lost
      */
     public static Table read(String path) {
-        return TableReader.read(TableFile.find(path));
+        return TableReader.read(TableFile.find(path), AsText.NONE);
+    }
+
+    /**
+     * Reads a file as {@link #read(String)} does, but takes some columns over as texts, as they are written; for identifiers
+     * such as 007: {@code Table.read("faults.csv", asText("vehicle"))}.
+     *
+     * @throws IllegalArgumentException as there, and if the file has no column of such a name
+     */
+    public static Table read(String path, AsText asText) {
+        return TableReader.read(TableFile.find(path), asText);
     }
 
     /** Reads a file as {@link #read(String)} does. */
     public static Table read(Path path) {
-        return TableReader.read(TableFile.find(path));
+        return TableReader.read(TableFile.find(path), AsText.NONE);
     }
 
     static Table of(String source, List<? extends Column> columns) {

@@ -28,16 +28,16 @@ final class TableReader {
         this.file = file;
     }
 
-    static Table read(TableFile file) {
+    static Table read(TableFile file, AsText asText) {
         try (DuckDBConnection connection = Database.connect()) {
-            return new TableReader(connection, file).read();
+            return new TableReader(connection, file).read(asText);
         } catch (SQLException e) {
             throw new IllegalArgumentException(ReadFailure.message(file, e), e);
         }
     }
 
-    private Table read() throws SQLException {
-        List<StagedColumn> staged = new Staging(connection, file).load();
+    private Table read(AsText asText) throws SQLException {
+        List<StagedColumn> staged = new Staging(connection, file, asText).load();
         int rows = rowCount();
         List<ColumnIntake> intakes = new ArrayList<>();
         List<String> fetched = new ArrayList<>();
@@ -128,8 +128,9 @@ final class TableReader {
                 throw new IllegalArgumentException("column '" + column.name() + "' of " + file.name()
                         + " holds whole numbers too long to keep exactly: row " + first.getLong(1) + " is "
                         + first.getString(2) + ", and digits are lost beyond 9007199254740992 (2 to the power 53)."
-                        + " If they are identifiers, put a letter in front of them in the file, so that they are read"
-                        + " as text; if they are quantities, write them in a larger unit or with a decimal point.");
+                        + " If they are identifiers, read them as texts: Table.read(\"" + file.name()
+                        + "\", asText(\"" + column.name() + "\")). If they are quantities, write them in a larger unit"
+                        + " or with a decimal point.");
             }
         }
     }

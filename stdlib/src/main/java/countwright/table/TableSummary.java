@@ -62,10 +62,7 @@ public final class TableSummary implements Displayable {
         int missing = column.missingCount();
         int present = column.size() - missing;
         int[] order = RowOrder.ascending(column);
-        long distinct = present == 0 ? 0 : 1;
-        for (int i = 1; i < present; i++) {
-            distinct += column.text(order[i]).equals(column.text(order[i - 1])) ? 0 : 1;
-        }
+        long distinct = RowOrder.distinct(column);
         return List.of(
                 column.name(),
                 Numbers.count(missing),

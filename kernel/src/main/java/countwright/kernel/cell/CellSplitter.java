@@ -11,7 +11,7 @@ final class CellSplitter {
     /**
      * A statement, expression or declaration of a cell.
      *
-     * @param start its position in the cell, in UTF-16 units; leading blanks and comments belong to it
+     * @param start its position in the cell, in UTF-16 units, behind leading blanks and comments: JShell counts lines from there
      * @param source its text, with a semicolon added where one may be left out
      * @param whole whether it is complete as it stands
      * @param showsValue whether it lacks the closing semicolon that keeps a value from being shown
@@ -32,19 +32,39 @@ final class CellSplitter {
                 }
                 case COMPLETE, COMPLETE_WITH_SEMI -> {
                     int end = code.length() - info.remaining().length();
-                    pieces.add(new Piece(start, info.source(), true, !endsWithSemicolon(code.substring(start, end))));
+                    int lead = leadLength(info.source());
+                    boolean showsValue = !endsWithSemicolon(code.substring(start, end));
+                    pieces.add(new Piece(start + lead, info.source().substring(lead), true, showsValue));
                     if (info.remaining().length() >= remaining.length()) {
                         return pieces;
                     }
                     remaining = info.remaining();
                 }
                 case CONSIDERED_INCOMPLETE, DEFINITELY_INCOMPLETE, UNKNOWN -> {
-                    pieces.add(new Piece(start, remaining, false, false));
+                    int lead = leadLength(remaining);
+                    pieces.add(new Piece(start + lead, remaining.substring(lead), false, false));
                     return pieces;
                 }
             }
         }
         return pieces;
+    }
+
+    /** Returns how many characters of blanks and comments stand before the code. */
+    private static int leadLength(String source) {
+        int i = 0;
+        while (i < source.length()) {
+            if (source.startsWith("//", i)) {
+                i = endOf(source, "\n", i + 2);
+            } else if (source.startsWith("/*", i)) {
+                i = endOf(source, "*/", i + 2);
+            } else if (Character.isWhitespace(source.charAt(i))) {
+                i++;
+            } else {
+                return i;
+            }
+        }
+        return 0;
     }
 
     /** Tells whether the last thing that is neither blank nor comment is a semicolon. */

@@ -45,7 +45,7 @@ final class CompileReport {
         }
         if (lines.isEmpty()) {
             first = unresolved(snippet).orElse("this piece of code cannot be compiled.");
-            Place place = cell.placeOf(piece.start() + leadingBlanks(piece.source()));
+            Place place = cell.placeOf(piece.start());
             lines.add(header(cell, place));
             lines.add(first);
         }
@@ -141,10 +141,6 @@ final class CompileReport {
                 .map(snippet -> ((DeclarationSnippet) snippet).name());
         Stream<String> imported = shell.imports().map(ImportSnippet::name);
         return Stream.concat(declared, imported).distinct().toList();
-    }
-
-    private static int leadingBlanks(String source) {
-        return source.length() - source.stripLeading().length();
     }
 
     private static String capitalised(String text) {

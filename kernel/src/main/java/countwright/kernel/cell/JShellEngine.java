@@ -34,24 +34,28 @@ public final class JShellEngine implements CellEngine {
 
     @Override
     public CellOutcome evaluate(String code, int executionCount, CellListener listener) {
-        stopRequested.set(false);
-        running = true;
-        try {
-            return evaluate(new CellText("cell [" + executionCount + "]", code), listener);
-        } finally {
-            running = false;
-        }
+        return run(new CellText("cell [" + executionCount + "]", code), listener);
     }
 
     @Override
     public Map<String, CellOutcome> evaluateExpressions(Map<String, String> expressions) {
         Map<String, CellOutcome> outcomes = new LinkedHashMap<>();
         expressions.forEach((name, code) ->
-                outcomes.put(name, evaluate(new CellText("expression '" + name + "'", code), new Unheard())));
+                outcomes.put(name, run(new CellText("expression '" + name + "'", code), new Unheard())));
         return outcomes;
     }
 
-    private CellOutcome evaluate(CellText cell, CellListener listener) {
+    private CellOutcome run(CellText cell, CellListener listener) {
+        stopRequested.set(false);
+        running = true;
+        try {
+            return runInSession(cell, listener);
+        } finally {
+            running = false;
+        }
+    }
+
+    private CellOutcome runInSession(CellText cell, CellListener listener) {
         CompletableFuture<JavaSession> starting = session;
         JavaSession current;
         try {

@@ -100,6 +100,17 @@ final class JavaSession {
     /** Runs a cell; {@code stopRequested} is asked between its pieces. */
     CellOutcome run(CellText cell, CellListener listener, Supplier<Boolean> stopRequested) {
         events.listenWith(listener);
+        execution.askBeforeRunning(stopRequested);
+        Optional<Worker> runner = startedWorker();
+        runner.ifPresent(Worker::cellStarted);
+        try {
+            return runPieces(cell, listener, stopRequested);
+        } finally {
+            runner.ifPresent(Worker::cellEnded);
+        }
+    }
+
+    private CellOutcome runPieces(CellText cell, CellListener listener, Supplier<Boolean> stopRequested) {
         return holdingCompiler(() -> {
             List<Piece> pieces = CellSplitter.split(cell.code(), shell.sourceCodeAnalysis());
             if (!pieces.isEmpty() && !pieces.get(pieces.size() - 1).whole()) {
@@ -198,10 +209,11 @@ final class JavaSession {
 
     /** Interrupts what runs in the worker. */
     void interrupt() {
-        Worker started = worker.isCompletedExceptionally() ? null : worker.getNow(null);
-        if (started != null) {
-            started.interrupt();
-        }
+        startedWorker().ifPresent(Worker::interrupt);
+    }
+
+    private Optional<Worker> startedWorker() {
+        return worker.isCompletedExceptionally() ? Optional.empty() : Optional.ofNullable(worker.getNow(null));
     }
 
     Completeness completeness(String code) {
@@ -218,10 +230,7 @@ final class JavaSession {
 
     void close(Duration patience) {
         worker.completeExceptionally(new UncheckedIOException(new IOException("the session is closed")));
-        Worker started = worker.isCompletedExceptionally() ? null : worker.getNow(null);
-        if (started != null) {
-            started.close(patience);
-        }
+        startedWorker().ifPresent(started -> started.close(patience));
         // JShell's own close would wait for the compiler lock's holder; there is nothing it holds outside this process.
     }
 

@@ -13,6 +13,7 @@ import java.util.Optional;
 import java.util.concurrent.CompletableFuture;
 import java.util.concurrent.CompletionException;
 import java.util.concurrent.locks.ReentrantLock;
+import java.util.function.Supplier;
 import jdk.jshell.spi.ExecutionControl;
 import org.jspecify.annotations.Nullable;
 
@@ -28,11 +29,17 @@ final class WorkerExecution implements ExecutionControl {
     private Frame.Want want = Frame.Want.NOTHING;
     private Optional<MimeBundle> value = Optional.empty();
     private boolean stopped;
+    private Supplier<Boolean> stopRequested = () -> false;
     private Optional<String> loss = Optional.empty();
 
     WorkerExecution(CompletableFuture<Worker> worker, ReentrantLock compilerLock) {
         this.worker = worker;
         this.compilerLock = compilerLock;
+    }
+
+    /** Says what to ask before user code starts: an interrupt may arrive while its code is still being compiled. */
+    void askBeforeRunning(Supplier<Boolean> stopRequest) {
+        stopRequested = stopRequest;
     }
 
     /** Prepares for the next snippet: whether its value is wanted, and forgetting how the last one went. */
@@ -85,6 +92,10 @@ final class WorkerExecution implements ExecutionControl {
     @Override
     public String invoke(String className, String methodName)
             throws RunException, EngineTerminationException, InternalException {
+        if (stopRequested.get()) {
+            stopped = true;
+            throw new StoppedException();
+        }
         Frame.Invoke invoke = new Frame.Invoke(className, methodName, want);
         Frame.Reply reply;
         int holds = compilerLock.getHoldCount();

@@ -2,6 +2,8 @@ package countwright.kernel.service;
 
 import countwright.kernel.wire.Channel;
 import countwright.kernel.wire.KernelSockets;
+import java.lang.System.Logger;
+import java.lang.System.Logger.Level;
 import java.time.Duration;
 import java.util.ArrayList;
 import java.util.List;
@@ -18,6 +20,8 @@ import tools.jackson.databind.node.ObjectNode;
  * that it would succeed.
  */
 final class CellLane {
+
+    private static final Logger LOG = System.getLogger(CellLane.class.getName());
 
     private final KernelSockets sockets;
     private final Outbox outbox;
@@ -59,12 +63,21 @@ final class CellLane {
             while (!closed) {
                 Optional<Request> next = waiting.take();
                 if (next.isPresent()) {
-                    runCell(next.get());
+                    runSafely(next.get());
                 }
             }
         } catch (InterruptedException e) {
             // Only close() interrupts.
             Thread.currentThread().interrupt();
+        }
+    }
+
+    /** This thread must outlive whatever goes wrong with one cell. */
+    private void runSafely(Request request) throws InterruptedException {
+        try {
+            runCell(request);
+        } catch (RuntimeException e) {
+            LOG.log(Level.ERROR, "A cell could not be run or answered; the next one will be.", e);
         }
     }
 

@@ -89,7 +89,7 @@ final class ExecuteHandler implements Handler {
         } catch (InterruptedException e) {
             Thread.currentThread().interrupt();
             return kernelFailure("The kernel is shutting down.");
-        } catch (RuntimeException e) {
+        } catch (RuntimeException | Error e) {
             LOG.log(Level.ERROR, "The engine failed to run a cell.", e);
             return kernelFailure("The kernel itself failed while it ran this cell; its log has the details."
                     + " Run the cell again; if it fails again, restart the kernel.");

@@ -24,7 +24,8 @@ final class SafeAnswer implements Handler {
             String reason = Optional.ofNullable(e.getMessage()).orElse("It is not as the protocol says.");
             LOG.log(Level.WARNING, "A request could not be answered: " + reason);
             return failed(request, "BadRequest", reason);
-        } catch (RuntimeException e) {
+        } catch (RuntimeException | Error e) {
+            // Errors too: the compiler runs in this process, and code nested deeply enough overflows its stack.
             LOG.log(Level.ERROR, "A " + request.type() + " could not be answered.", e);
             return failed(
                     request,

@@ -124,7 +124,9 @@ public final class ClientSockets implements AutoCloseable {
 
     private ZMQ.Socket connected(Channel channel, ConnectionFile connection) {
         ZMQ.Socket socket = context.socket(channel == Channel.IOPUB ? SocketType.SUB : SocketType.DEALER);
-        socket.setLinger(LINGER_MILLIS);
+        // Subscriptions and heartbeats that never reached a dead kernel must not hold up the end.
+        boolean sendsRequests = channel != Channel.IOPUB && channel != Channel.HEARTBEAT;
+        socket.setLinger(sendsRequests ? LINGER_MILLIS : 0);
         socket.setHandshakeIvl(HANDSHAKE_MILLIS);
         socket.setIPv6(connection.isIpv6());
         // A headless client must not lose output: it takes all the kernel sends and keeps it in its own memory.

@@ -4,6 +4,7 @@ import java.io.IOException;
 import java.io.UncheckedIOException;
 import java.net.InetAddress;
 import java.net.ServerSocket;
+import java.nio.ByteBuffer;
 import java.nio.charset.StandardCharsets;
 import java.nio.file.FileSystems;
 import java.nio.file.Files;
@@ -135,7 +136,7 @@ public record ConnectionFile(String ip, Map<Channel, Integer> ports, String key,
                         : new FileAttribute<?>[0];
         try (var channel = Files.newByteChannel(
                 file, Set.of(StandardOpenOption.CREATE_NEW, StandardOpenOption.WRITE), attributes)) {
-            channel.write(java.nio.ByteBuffer.wrap(toJson().getBytes(StandardCharsets.UTF_8)));
+            channel.write(ByteBuffer.wrap(toJson().getBytes(StandardCharsets.UTF_8)));
         }
     }
 

@@ -25,7 +25,8 @@ final class Interrupter implements AutoCloseable {
     private final Worker worker;
     private final Debugger debugger;
     private final ScheduledExecutorService clock;
-    private long interruptedRequest = -1;
+    private boolean running;
+    private boolean stopping;
     private int tries;
     private volatile boolean killed;
 
@@ -39,13 +40,22 @@ final class Interrupter implements AutoCloseable {
         });
     }
 
-    /** Starts to stop what runs now; does nothing if nothing runs. */
+    synchronized void cellStarted() {
+        running = true;
+        stopping = false;
+    }
+
+    synchronized void cellEnded() {
+        running = false;
+        stopping = false;
+    }
+
+    /** Starts to stop the cell that runs, whatever part of it is under way; does nothing if none runs. */
     synchronized void interrupt() {
-        if (!worker.isWaiting()) {
+        if (!running) {
             return;
         }
-        long request = worker.requestsEnded();
-        if (request == interruptedRequest) {
+        if (stopping) {
             if (tries >= TRIES_BEFORE_KILL) {
                 LOG.log(Level.WARNING, "the cell cannot be stopped; ending worker {0}", worker.processId());
                 killed = true;
@@ -53,7 +63,7 @@ final class Interrupter implements AutoCloseable {
             }
             return;
         }
-        interruptedRequest = request;
+        stopping = true;
         tries = 0;
         worker.send(new Frame.Interrupt());
         schedule(GRACE_MILLIS);
@@ -64,12 +74,11 @@ final class Interrupter implements AutoCloseable {
     }
 
     private synchronized void stopByForce() {
-        if (!worker.isWaiting() || worker.requestsEnded() != interruptedRequest) {
-            return;
+        if (stopping) {
+            tries++;
+            var unused = debugger.stopUserCode();
+            schedule(RETRY_MILLIS);
         }
-        tries++;
-        debugger.stopUserCode();
-        schedule(RETRY_MILLIS);
     }
 
     private void schedule(long millis) {

@@ -20,7 +20,6 @@ import java.util.Map;
 import java.util.concurrent.CompletableFuture;
 import java.util.concurrent.ExecutionException;
 import java.util.concurrent.TimeUnit;
-import java.util.concurrent.atomic.AtomicLong;
 import java.util.concurrent.atomic.AtomicReference;
 import org.jspecify.annotations.Nullable;
 
@@ -42,7 +41,6 @@ public final class Worker implements AutoCloseable {
     private final WorkerListener listener;
     private final Interrupter interrupter;
     private final AtomicReference<@Nullable CompletableFuture<Frame.Reply>> waiting = new AtomicReference<>();
-    private final AtomicLong requestsEnded = new AtomicLong();
     private final CompletableFuture<String> loss = new CompletableFuture<>();
     private volatile boolean leaving;
 
@@ -110,7 +108,6 @@ public final class Worker implements AutoCloseable {
             throw new WorkerLostException(loss.join());
         } finally {
             waiting.set(null);
-            requestsEnded.incrementAndGet();
         }
     }
 
@@ -127,9 +124,19 @@ public final class Worker implements AutoCloseable {
         }
     }
 
+    /** Says that a cell starts, so that an interrupt has something to stop. */
+    public void cellStarted() {
+        interrupter.cellStarted();
+    }
+
+    /** Says that the cell is over. */
+    public void cellEnded() {
+        interrupter.cellEnded();
+    }
+
     /**
-     * Asks what runs now to stop: by interrupt at once, by force a moment later; a second call while the first has not
-     * helped ends the worker. Returns at once.
+     * Asks the running cell to stop: by interrupt at once, by force a moment later; a second call while the first has
+     * not helped ends the worker. Returns at once.
      */
     public void interrupt() {
         interrupter.interrupt();
@@ -169,15 +176,6 @@ public final class Worker implements AutoCloseable {
     /** Kills the process because what runs in it cannot be stopped otherwise. */
     void kill() {
         process.destroyForcibly();
-    }
-
-    /** Returns a number that changes whenever a request ends. */
-    long requestsEnded() {
-        return requestsEnded.get();
-    }
-
-    boolean isWaiting() {
-        return waiting.get() != null;
     }
 
     private void readForever() {

@@ -17,7 +17,7 @@ class JShellEngineTest {
 
     @BeforeAll
     static void startEngine() {
-        engine = JShellEngine.start(WorkerSettings.ofInstallation());
+        engine = JShellEngine.start(WorkerSettings.ofInstallation().withJvmOption("-Xmx512m"));
     }
 
     @AfterAll
@@ -128,11 +128,11 @@ class JShellEngineTest {
             run("int forExpression = 20;");
             Map<String, CellOutcome> outcomes =
                     engine.evaluateExpressions(Map.of("twice", "forExpression * 2", "bad", "notThere"));
-            assertThat(((CellOutcome.Success) outcomes.get("twice"))
-                            .result()
-                            .orElseThrow()
-                            .plainText())
-                    .isEqualTo("40");
+            assertThat(outcomes.get("twice"))
+                    .isInstanceOfSatisfying(
+                            CellOutcome.Success.class,
+                            success -> assertThat(success.result().orElseThrow().plainText())
+                                    .isEqualTo("40"));
             assertThat(outcomes.get("bad")).isInstanceOf(CellOutcome.Failure.class);
         }
 
@@ -182,11 +182,12 @@ class JShellEngineTest {
         @Test
         void exception_isToldInTheUsersLines() {
             engine.evaluate("int divide(int a, int b) {\n    return a / b;\n}", 7, new Heard());
-            assertThat(failureOf("int x = 1;\n\ndivide(x, 0)").traceback())
+            assertThat(failureOf("int x = 1;\n\n// on the third line\ndivide(x, 0)")
+                            .traceback())
                     .containsExactly(
                             "ArithmeticException: / by zero",
                             "  in cell [7], line 2, in divide:   return a / b;",
-                            "  in cell [1], line 3:   divide(x, 0)");
+                            "  in cell [1], line 4:   divide(x, 0)");
         }
 
         @Test
@@ -245,7 +246,7 @@ class JShellEngineTest {
         void outOfMemory_keepsVariables() {
             run("int keptToo = 8;");
             CellOutcome.Failure failure = failureOf(
-                    "List<long[]> hoard = new ArrayList<>();\ntry { while (true) hoard.add(new long[1 << 27]); } finally"
+                    "List<long[]> hoard = new ArrayList<>();\ntry { while (true) hoard.add(new long[1 << 23]); } finally"
                             + " { hoard.clear(); }");
             assertThat(failure.name()).isEqualTo("OutOfMemoryError");
             assertThat(resultOf("keptToo")).isEqualTo("8");

@@ -53,6 +53,7 @@ final class FakeEngine implements CellEngine {
             }
             case "ask" -> ask(rest, listener);
             case "crash" -> throw new IllegalStateException("the engine is broken");
+            case "overflow" -> throw new StackOverflowError("the compiler is too deep in");
             default -> new Success(Optional.empty());
         };
     }

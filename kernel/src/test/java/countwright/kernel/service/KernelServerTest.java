@@ -49,6 +49,7 @@ class KernelServerTest {
                 "execute_request | {'code':'value 7'}",
                 "execute_request | {'code':'fail it'}",
                 "execute_request | {'code':'crash'}",
+                "execute_request | {'code':'overflow'}",
                 "execute_request | {'code':'show'}",
                 "execute_request | {'code':''}",
                 "execute_request | {}",
@@ -198,6 +199,7 @@ class KernelServerTest {
         Message second = front.execute("print second");
         Message third = front.execute("print third");
         front.await(Channel.IOPUB, "stream", failing);
+        awaitAllIsReceived();
         engine.release.add("BrokenException");
 
         assertThat(status(front.reply(failing))).isEqualTo("error");
@@ -214,6 +216,7 @@ class KernelServerTest {
         Message failing = front.execute("block", "{'stop_on_error':false}");
         Message second = front.execute("print second");
         front.await(Channel.IOPUB, "stream", failing);
+        awaitAllIsReceived();
         engine.release.add("BrokenException");
         assertThat(status(front.reply(failing))).isEqualTo("error");
         assertThat(status(front.reply(second))).isEqualTo("ok");
@@ -412,6 +415,11 @@ class KernelServerTest {
         } catch (InterruptedException e) {
             throw new IllegalStateException(e);
         }
+    }
+
+    /** A request later on the same socket is answered only after the earlier ones were put in line. */
+    private void awaitAllIsReceived() throws InterruptedException {
+        front.reply(front.send(Channel.SHELL, "kernel_info_request", "{}"));
     }
 
     private String history(String content) throws InterruptedException {

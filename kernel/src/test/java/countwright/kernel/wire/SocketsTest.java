@@ -153,7 +153,7 @@ class SocketsTest {
     }
 
     @Test
-    void shell_roundTrip_takesWellBelowAMillisecond() throws Exception {
+    void shell_roundTrip_waitsForNoTimer() throws Exception {
         ConnectionFile other = ConnectionFile.create("countwright");
         BlockingQueue<Envelope> replies = new LinkedBlockingQueue<>();
         try (KernelSockets echo = KernelSockets.bind(other, WireLimits.STANDARD);
@@ -172,9 +172,11 @@ class SocketsTest {
             }
             long[] warm = Arrays.copyOfRange(nanos, 200, nanos.length);
             Arrays.sort(warm);
-            Duration median = Duration.ofNanos(warm[warm.length / 2]);
-            // Two messages and a busy machine: the bound catches polling and delayed acknowledgements, no more.
-            assertThat(median).isLessThan(Duration.ofMillis(5));
+            Duration quick = Duration.ofNanos(warm[warm.length / 4]);
+            // Typically 0.3 ms for two messages. Waiting by polling or for a delayed acknowledgement would hold up
+            // every
+            // message by 10 ms and more, a busy machine only some: hence the lower quartile.
+            assertThat(quick).isLessThan(Duration.ofMillis(5));
         }
     }
 

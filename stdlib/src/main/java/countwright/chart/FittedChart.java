@@ -1,0 +1,207 @@
+package countwright.chart;
+
+import countwright.model.Prediction;
+import countwright.show.Grid;
+import java.util.Arrays;
+import java.util.List;
+
+/**
+ * What a model fits over one covariate taken as a number, beside what was observed.
+ *
+ * <p>With other covariates in the model, plain observed rates would lie off the curve wherever the rows differ from the
+ * typical values it is drawn for, which looks like a bad fit and is none. Each point is therefore adjusted as a
+ * standardised ratio is: the fitted rate at the typical values, times observed over fitted events of its rows. A point off
+ * the curve then says that the model misses there.
+ */
+final class FittedChart {
+
+    private static final int CURVE_POINTS = 121;
+    private static final int MOST_SINGLE_ROWS = 60;
+    private static final int BINS = 20;
+
+    /** The curve with its interval at some values of the covariate. */
+    private static final class Curve {
+
+        private final double[] values;
+        private final List<Prediction> rows;
+
+        Curve(double[] values, List<Prediction> rows) {
+            this.values = values;
+            this.rows = rows;
+        }
+
+        double[] values() {
+            return values;
+        }
+
+        List<Prediction> rows() {
+            return rows;
+        }
+
+        double[] rates() {
+            return rows.stream().mapToDouble(Prediction::rate).toArray();
+        }
+
+        double[] lower() {
+            return rows.stream().mapToDouble(Prediction::rateLower).toArray();
+        }
+
+        double[] upper() {
+            return rows.stream().mapToDouble(Prediction::rateUpper).toArray();
+        }
+    }
+
+    private final Fit fit;
+    private final String covariate;
+    private final Scenarios scenarios;
+    private final boolean adjusted;
+
+    private FittedChart(Fit fit, String covariate) {
+        this.fit = fit;
+        this.covariate = covariate;
+        this.scenarios = new Scenarios(fit, covariate);
+        this.adjusted = fit.covariates().size() > 1 || fit.offset().isPresent();
+    }
+
+    static Chart of(Fit fit, String covariate) {
+        fit.checkCovariate(covariate);
+        if (fit.table().rowCount() == 0) {
+            throw new IllegalArgumentException("there is nothing to draw: the model used no row.");
+        }
+        return fit.isNumberIn(covariate)
+                ? new FittedChart(fit, covariate).chart()
+                : FittedLevelsChart.of(fit, covariate, new Scenarios(fit, covariate));
+    }
+
+    private Chart chart() {
+        double[] values = fit.table().numbers(covariate).toArray();
+        double low = Arrays.stream(values).min().orElseThrow();
+        double high = Arrays.stream(values).max().orElseThrow();
+        Curve curve = at(grid(low, high));
+        boolean single = values.length <= MOST_SINGLE_ROWS;
+        List<Groups.Group> pools = Groups.byQuantile(values, single ? values.length : BINS);
+        double[] x = centres(pools, values);
+        double[] observed = observed(pools, x);
+
+        RateUnit unit =
+                RateUnit.forRates(fit.response(), fit.exposure(), Math.max(highest(curve.rates()), highest(observed)));
+        double top = Math.max(highest(curve.upper()), highest(observed)) * unit.factor();
+        Figure empty = Figure.titled(
+                        (fit.exposure().isEmpty() ? "Fitted mean count over " : "Fitted rate over ") + covariate,
+                        Axis.linear(covariate, low, high, 8),
+                        Axis.linearWithRoomAtZero(unit.label(), top, 6))
+                .subtitle(span(unit, curve))
+                .caption(caption(pools.size(), single));
+        Figure figure = withCurve(empty, unit, curve)
+                .layer(Layer.points(pointName(single), Ink.OBSERVED, x, unit.scaled(observed)));
+        String summary = "Fitted " + unit.label() + ": " + span(unit, curve) + "." + scenarios.sentence();
+        return Chart.of(figure, summary, numbers(unit, curve).toString());
+    }
+
+    private Figure withCurve(Figure figure, RateUnit unit, Curve curve) {
+        String interval = fit.levelText() + " interval of the mean";
+        double[] rates = unit.scaled(curve.rates());
+        double[] lower = unit.scaled(curve.lower());
+        double[] upper = unit.scaled(curve.upper());
+        if (curve.values().length == 1) {
+            return figure.layer(Layer.barsUp(interval, Ink.FITTED, curve.values(), lower, upper))
+                    .layer(Layer.points("fitted", Ink.FITTED, curve.values(), rates));
+        }
+        return figure.layer(Layer.band(interval, Ink.BAND, curve.values(), lower, upper))
+                .layer(Layer.line("fitted", Ink.FITTED, curve.values(), rates));
+    }
+
+    private Curve at(double[] values) {
+        return new Curve(values, fit.predict().apply(scenarios.at(values)));
+    }
+
+    /** Returns the mean of the covariate in each pool, weighted by exposure. */
+    private double[] centres(List<Groups.Group> pools, double[] values) {
+        double[] exposures = fit.exposures().get();
+        return pools.stream()
+                .mapToDouble(pool -> pool.rows()
+                                .mapToDouble(row -> values[row] * exposures[row])
+                                .sum()
+                        / pool.sum(exposures))
+                .toArray();
+    }
+
+    private double[] observed(List<Groups.Group> pools, double[] x) {
+        double[] counts = fit.counts().get();
+        double[] against = adjusted ? fit.means().get() : fit.exposures().get();
+        double[] typical = at(x).rates();
+        double[] observed = new double[x.length];
+        for (int i = 0; i < x.length; i++) {
+            double ratio = pools.get(i).sum(counts) / pools.get(i).sum(against);
+            observed[i] = adjusted ? typical[i] * ratio : ratio;
+        }
+        return observed;
+    }
+
+    private String pointName(boolean single) {
+        String what = fit.exposure().isEmpty() ? "count" : "rate";
+        return "observed " + (single ? what : "mean " + what) + (adjusted ? ", adjusted" : "");
+    }
+
+    private String span(RateUnit unit, Curve curve) {
+        int last = curve.values().length - 1;
+        String start = unit.text(curve.rates()[0]) + " at " + covariate + " " + NumberText.plain(curve.values()[0]);
+        return last == 0
+                ? start
+                : "From " + start + " to " + unit.text(curve.rates()[last]) + " at " + covariate + " "
+                        + NumberText.plain(curve.values()[last]);
+    }
+
+    private String caption(int pools, boolean single) {
+        int rows = fit.table().rowCount();
+        String points;
+        if (single) {
+            points = pools == rows ? "One point for each row" : "One point for each value of " + covariate;
+        } else {
+            points = "Points: " + pools + " bins of " + covariate + " with about "
+                    + NumberText.count(Math.round((double) rows / pools)) + " rows each";
+        }
+        return scenarios.sentence().strip()
+                + (scenarios.sentence().isEmpty() ? "" : " ")
+                + points
+                + (adjusted ? ", at the fitted rate times observed / fitted events." : ".");
+    }
+
+    private Grid numbers(RateUnit unit, Curve curve) {
+        int last = curve.values().length - 1;
+        double start = curve.values()[0];
+        double end = curve.values()[last];
+        Curve chosen = last == 0
+                ? curve
+                : at(new double[] {
+                    start, start + 0.25 * (end - start), 0.5 * (start + end), end - 0.25 * (end - start), end
+                });
+        Grid table = Grid.titled("")
+                .numberColumn(covariate)
+                .numberColumn("fitted " + unit.label())
+                .numberColumn(fit.levelText() + " interval of the mean");
+        for (int i = 0; i < chosen.values().length; i++) {
+            Prediction p = chosen.rows().get(i);
+            table = table.row(
+                    NumberText.plain(chosen.values()[i]),
+                    unit.text(p.rate()),
+                    unit.text(p.rateLower()) + " to " + unit.text(p.rateUpper()));
+        }
+        return table;
+    }
+
+    private static double[] grid(double low, double high) {
+        if (low == high) {
+            return new double[] {low};
+        }
+        double[] grid = new double[CURVE_POINTS];
+        for (int i = 0; i < CURVE_POINTS; i++) {
+            grid[i] = i == CURVE_POINTS - 1 ? high : low + (high - low) * i / (CURVE_POINTS - 1);
+        }
+        return grid;
+    }
+
+    private static double highest(double[] values) {
+        return Arrays.stream(values).filter(Double::isFinite).max().orElse(0);
+    }
+}

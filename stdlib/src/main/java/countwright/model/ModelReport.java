@@ -1,0 +1,150 @@
+package countwright.model;
+
+import countwright.design.Factor;
+import countwright.design.InteractionTerm;
+import countwright.design.LinearTerm;
+import countwright.design.Term;
+import countwright.fit.ColumnState;
+import countwright.fit.Convergence;
+import countwright.fit.Estimate;
+import countwright.show.Grid;
+import countwright.show.MimeBundle;
+import countwright.show.Numbers;
+import java.util.ArrayList;
+import java.util.Iterator;
+import java.util.LinkedHashSet;
+import java.util.List;
+import java.util.Set;
+
+/** Lays out a fitted model for its reader: what drives the rate and how sure that is, then how well the model holds. */
+final class ModelReport {
+
+    /** A standard error of a log ratio that says nothing: the interval would span over 30 powers of ten. */
+    private static final double MEANINGLESS = 20;
+
+    private final FittedModel model;
+
+    ModelReport(FittedModel model) {
+        this.model = model;
+    }
+
+    MimeBundle bundle() {
+        MimeBundle ratios = ratios().display();
+        MimeBundle hold = hold().display();
+        String text = ratios.plainText() + "\n\n" + hold.plainText();
+        String html = ratios.get(MimeBundle.HTML).orElse("")
+                + hold.get(MimeBundle.HTML).orElse("");
+        return html.isEmpty() ? MimeBundle.text(text) : MimeBundle.text(text).withHtml(html);
+    }
+
+    /** Returns the rate ratios and the baseline rate, with the warning not to use them where there is one. */
+    Grid ratios() {
+        Grid grid = Grid.titled(title())
+                .textColumn("effect")
+                .numberColumn("rate ratio")
+                .numberColumn(Interval.percent(model.level()) + " interval")
+                .numberColumn("p");
+        Iterator<RateRatio> ratios = model.rateRatios().iterator();
+        Estimate estimate = model.fit().estimate();
+        for (int column = 1; column < estimate.columnCount(); column++) {
+            String name = model.design().columnNames().get(column);
+            if (estimate.state(column) == ColumnState.ESTIMATED) {
+                grid = row(grid, column, ratios.next());
+            } else {
+                String reason = estimate.state(column) == ColumnState.UNBOUNDED ? "no events" : "left out";
+                grid = grid.row(name, reason, Numbers.ABSENT, Numbers.ABSENT);
+            }
+        }
+        grid = baseline(grid);
+        for (String warning : Notices.ofConvergence(model.fit())) {
+            grid = grid.note(warning);
+        }
+        return grid;
+    }
+
+    private Grid row(Grid grid, int column, RateRatio ratio) {
+        if (grows(column)) {
+            return grid.row(ratio.name(), "not finite", Numbers.ABSENT, Numbers.ABSENT);
+        }
+        if (model.fit().standardError(column) > MEANINGLESS) {
+            return grid.row(ratio.name(), "not determined", Numbers.ABSENT, Numbers.ABSENT);
+        }
+        double standardError = ratio.ratio() * model.fit().standardError(column);
+        Rounded rounded = Rounded.of(ratio.ratio(), standardError, ratio.lower(), ratio.upper());
+        return grid.row(ratio.name(), rounded.estimate(), rounded.interval(), Numbers.pValue(ratio.pValue()));
+    }
+
+    private boolean grows(int column) {
+        return model.convergence() instanceof Convergence.NoFiniteMaximum none
+                && none.columns().contains(column);
+    }
+
+    private Grid baseline(Grid grid) {
+        BaselineRate baseline = model.baselineRate();
+        RateUnit unit =
+                RateUnit.fitting(grows(0) ? 1 : baseline.rate(), model.spec().exposure());
+        double standardError = baseline.rate() * model.fit().standardError(0);
+        Rounded rounded = grows(0)
+                ? new Rounded("not finite", Numbers.ABSENT)
+                : Rounded.of(
+                        unit.scaled(baseline.rate()),
+                        unit.scaled(standardError),
+                        unit.scaled(baseline.lower()),
+                        unit.scaled(baseline.upper()));
+        Grid withRow = grid.row(unit.label("baseline"), rounded.estimate(), rounded.interval(), "");
+        List<String> settings = baselineSettings();
+        return settings.isEmpty() ? withRow : withRow.note("Baseline: " + String.join(", ", settings) + ".");
+    }
+
+    private Grid hold() {
+        Grid grid = Grid.titled("How well it holds").textColumn("measure").numberColumn("value");
+        grid = grid.row("events", Numbers.compact(model.totalCount()))
+                .row("rows used", Numbers.count(model.rowCount()));
+        if (model.spec().exposure().isPresent()) {
+            grid = grid.row(
+                    "total exposure (" + model.spec().exposure().get() + ")", Numbers.compact(model.totalExposure()));
+        }
+        int df = model.residualDegreesOfFreedom();
+        String dispersion = df > 0 ? Numbers.significant(model.dispersion(), 3) : Numbers.ABSENT;
+        grid = grid.row("residual degrees of freedom", Numbers.count(df))
+                .row("deviance", Numbers.significant(model.deviance(), 4))
+                .row("deviance of the baseline alone", Numbers.significant(model.nullDeviance(), 4))
+                .row("Pearson chi-square", Numbers.significant(model.pearsonChiSquare(), 4))
+                .row("dispersion (Pearson / residual df)", dispersion)
+                .row("log-likelihood", Numbers.fixed(model.logLikelihood(), 2))
+                .row("AIC", Numbers.fixed(model.aic(), 2))
+                .row("BIC", Numbers.fixed(model.bic(), 2));
+        for (String notice : Notices.ofData(model)) {
+            grid = grid.note(notice);
+        }
+        return grid;
+    }
+
+    private String title() {
+        String per = model.spec().exposure().map(name -> " per " + name).orElse("");
+        String driven = per.isEmpty() ? "What drives the mean count: " : "What drives the rate: ";
+        return driven + model.spec().response() + per + " ("
+                + model.spec().family().name() + ", log link)";
+    }
+
+    private List<String> baselineSettings() {
+        Set<String> settings = new LinkedHashSet<>();
+        for (Term term : model.terms()) {
+            describe(term, settings);
+        }
+        return new ArrayList<>(settings);
+    }
+
+    private void describe(Term term, Set<String> settings) {
+        if (term instanceof InteractionTerm both) {
+            describe(both.first(), settings);
+            describe(both.second(), settings);
+        } else if (term instanceof LinearTerm linear) {
+            settings.add(linear.column() + " 0");
+        } else {
+            String column = term.columns().get(0);
+            settings.add(column + " "
+                    + model.fit().design().factor(column).map(Factor::reference).orElse("at its reference"));
+        }
+    }
+}

@@ -1,0 +1,67 @@
+package countwright.model;
+
+import static countwright.design.Terms.levels;
+import static org.assertj.core.api.Assertions.assertThat;
+
+import countwright.reference.PublishedData;
+import countwright.show.MimeBundle;
+import countwright.table.NumberColumn;
+import countwright.table.Table;
+import countwright.table.TextColumn;
+import org.junit.jupiter.api.Test;
+
+class ModelReportTest {
+
+    @Test
+    void display_publishedModel_ratiosFirstThenFit() {
+        String text = PublishedData.fit("ships_poisson").display().plainText();
+        assertThat(text)
+                .containsSubsequence(
+                        "What drives the rate: incidents per service_months",
+                        "type B vs A",
+                        "0.58",
+                        "0.41 to 0.82",
+                        "0.002",
+                        "baseline rate per 1,000 service_months",
+                        "1.65",
+                        "1.08 to 2.53",
+                        "Baseline: type A, construction 1960-64, operation 1960-74.",
+                        "How well it holds",
+                        "events",
+                        "356",
+                        "deviance",
+                        "38.70",
+                        "Dispersion 1.7: the counts vary more than a Poisson model allows.");
+    }
+
+    @Test
+    void display_levelNamesWithMarkup_areEscapedInHtml() {
+        Table table = Table.of(NumberColumn.of("y", 1, 2, 3), TextColumn.of("g", "a", "<b>bold</b>", "a"));
+        MimeBundle bundle = CountModel.of("y").on(levels("g")).fit(table).display();
+        assertThat(bundle.plainText()).contains("<b>bold</b>");
+        assertThat(bundle.get(MimeBundle.HTML))
+                .hasValueSatisfying(
+                        html -> assertThat(html).contains("&lt;b&gt;bold").doesNotContain("<b>bold"));
+    }
+
+    @Test
+    void display_anotherLevel_saysWhich() {
+        assertThat(PublishedData.fit("ships_poisson").at(0.9).toString())
+                .contains("90% interval")
+                .doesNotContain("95%");
+    }
+
+    @Test
+    void coefficientTable_publishedModel_roundsByTheStandardError() {
+        assertThat(PublishedData.fit("doctors_poisson").coefficientTable().toString())
+                .containsSubsequence("agecat (per 1)", "2.38", "0.21", "agecat² (per 1)", "-0.198", "0.027");
+    }
+
+    @Test
+    void rounded_estimateAndInterval_shareTheirDecimals() {
+        assertThat(Rounded.of(0.5808, 0.103, 0.4101, 0.8226)).isEqualTo(new Rounded("0.58", "0.41 to 0.82"));
+        assertThat(Rounded.of(1.0259, 0.00206, 1.0218, 1.0299)).isEqualTo(new Rounded("1.0259", "1.0218 to 1.0299"));
+        assertThat(Rounded.of(0, Double.POSITIVE_INFINITY, 0, Double.POSITIVE_INFINITY))
+                .isEqualTo(new Rounded("0", "0 to ∞"));
+    }
+}
