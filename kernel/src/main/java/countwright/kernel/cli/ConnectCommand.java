@@ -24,17 +24,26 @@ final class ConnectCommand implements Callable<Integer> {
     private Path connectionFile = Path.of("");
 
     @Override
-    public Integer call() throws InterruptedException {
-        ConnectionFile connection;
+    public Integer call() {
+        return serve(connectionFile);
+    }
+
+    /** Serves until a front end asks for shutdown. This is the one place where the parts of the kernel meet. */
+    private static int serve(Path connectionFile) {
+        KernelServer server;
         try {
-            connection = ConnectionFile.read(connectionFile);
-        } catch (IOException e) {
-            throw new DeskException("cannot read the connection file " + connectionFile + ": " + e.getMessage());
+            server = KernelServer.start(
+                    ConnectionFile.read(connectionFile), () -> JShellEngine.start(WorkerSettings.ofInstallation()));
+        } catch (IOException | IllegalArgumentException | IllegalStateException e) {
+            throw new DeskException(String.valueOf(e.getMessage()), e);
         }
-        // A broken installation is told at once; the worker itself starts behind the first answers.
-        WorkerSettings settings = WorkerSettings.ofInstallation();
-        KernelServer server = KernelServer.start(connection, () -> JShellEngine.start(settings));
-        var unused = server.awaitShutdown();
-        return 0;
+        // A front end that ends the kernel by a signal must not leave its worker behind.
+        Runtime.getRuntime().addShutdownHook(new Thread(server::close, "countwright-end"));
+        try {
+            server.awaitShutdown();
+        } catch (InterruptedException e) {
+            Thread.currentThread().interrupt();
+        }
+        return Main.DONE;
     }
 }

@@ -8,6 +8,9 @@ import picocli.CommandLine;
 /** The version of this product, as the build wrote it into the jar. */
 final class ProductVersion implements CommandLine.IVersionProvider {
 
+    /** Written by the build, for the kernel's answers too. */
+    private static final String RESOURCE = "/countwright/kernel/service/version.properties";
+
     @Override
     public String[] getVersion() {
         return new String[] {
@@ -18,7 +21,7 @@ final class ProductVersion implements CommandLine.IVersionProvider {
 
     static String current() {
         Properties product = new Properties();
-        try (InputStream in = ProductVersion.class.getResourceAsStream("product.properties")) {
+        try (InputStream in = ProductVersion.class.getResourceAsStream(RESOURCE)) {
             if (in != null) {
                 product.load(in);
             }
