@@ -3,17 +3,15 @@ import java.io.IOException;
 import java.io.InputStream;
 import java.io.InputStreamReader;
 import java.nio.charset.StandardCharsets;
-import java.util.HashMap;
 import java.util.List;
-import java.util.Map;
 import java.util.StringJoiner;
 import jdk.jshell.JShell;
 import jdk.jshell.Snippet;
 import jdk.jshell.SnippetEvent;
 
 /**
- * JShell in one process, the measure for what the kernel adds. Reads lines such as {@code imports 20} (which session, how
- * many cells) and answers each with the nanoseconds of every cell.
+ * JShell in one process, the measure for what the kernel adds. Each line it reads says how many cells to run, and is
+ * answered with the nanoseconds of every one.
  */
 final class InProcess {
 
@@ -22,19 +20,18 @@ final class InProcess {
     private InProcess() {}
 
     public static void main(String[] arguments) throws IOException {
-        String cell = arguments[0];
-        Map<String, JShell> shells = new HashMap<>();
+        String session = arguments[0];
+        String cell = arguments[1];
+        JShell shell = open(session);
         BufferedReader in = new BufferedReader(new InputStreamReader(System.in, StandardCharsets.US_ASCII));
         for (String line = in.readLine(); line != null; line = in.readLine()) {
-            String[] words = line.split(" ");
-            JShell shell = shells.computeIfAbsent(words[0], InProcess::open);
             StringJoiner nanos = new StringJoiner(" ");
-            for (int i = Integer.parseInt(words[1]); i > 0; i--) {
-                nanos.add(Long.toString(evaluate(shell, cell, words[0].endsWith("analysed"))));
+            for (int i = Integer.parseInt(line); i > 0; i--) {
+                nanos.add(Long.toString(evaluate(shell, cell, session.endsWith("analysed"))));
             }
             System.out.println(nanos);
         }
-        shells.values().forEach(JShell::close);
+        shell.close();
     }
 
     private static JShell open(String session) {

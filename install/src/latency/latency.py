@@ -75,15 +75,15 @@ class Kernel:
 
 
 class InProcess:
-    """Sessions of JShell in one process of their own."""
+    """JShell in a process of its own, so that each session's compiler is as warm as its own cells have made it."""
 
-    def __init__(self, java, class_path):
+    def __init__(self, java, class_path, session):
         source = pathlib.Path(__file__).with_name("InProcess.java")
-        self.process = subprocess.Popen([java, "-XX:+UseSerialGC", "-cp", class_path, str(source), CELL],
+        self.process = subprocess.Popen([java, "-XX:+UseSerialGC", "-cp", class_path, str(source), session, CELL],
                                         stdin=subprocess.PIPE, stdout=subprocess.PIPE, text=True)
 
-    def block(self, session, cells):
-        self.process.stdin.write(f"{session} {cells}\n")
+    def block(self, cells):
+        self.process.stdin.write(f"{cells}\n")
         self.process.stdin.flush()
         return [int(word) / 1e9 for word in self.process.stdout.readline().split()]
 
@@ -106,7 +106,6 @@ def main():
     chosen = options.parse_args()
 
     worker = os.pathsep.join(str(jar) for jar in sorted((chosen.home / "lib/worker").glob("*.jar")))
-    jshell = InProcess(chosen.java, worker)
     ours = Kernel("countwright", [str(chosen.home / "bin/countwright"), "connect", "{connection_file}"])
     kernels = {"Countwright, over ZeroMQ": ours}
     try:
@@ -117,19 +116,17 @@ def main():
         print("The Python kernel is left out: there is no ipykernel in", sys.executable)
     base = "JShell in-process, same imports: eval"
     sessions = {
-        base: lambda cells: jshell.block("imports", cells),
-        "JShell in-process, same imports: analysis + eval": lambda cells: jshell.block("imports-analysed", cells),
-        "JShell in-process, no imports: eval": lambda cells: jshell.block("bare", cells),
-        "JShell in-process, no imports: analysis + eval": lambda cells: jshell.block("bare-analysed", cells),
-    }
-    sessions.update({name: kernel.block for name, kernel in kernels.items()})
-    for block in sessions.values():
-        block(chosen.warm)
+        name: InProcess(chosen.java, worker, session) for name, session in (
+            (base, "imports"),
+            ("JShell in-process, same imports: analysis + eval", "imports-analysed"),
+            ("JShell in-process, no imports: eval", "bare"))}
+    sessions.update(kernels)
+    for session in sessions.values():
+        session.block(chosen.warm)
     times = {name: [] for name in sessions}
     for _ in range(-(-chosen.cells // chosen.block)):
-        for name, block in sessions.items():
-            times[name] += block(chosen.block)
-    jshell.close()
+        for name, session in sessions.items():
+            times[name] += session.block(chosen.block)
 
     medians = {name: statistics.median(values) for name, values in times.items()}
     version = subprocess.run([chosen.java, "-version"], capture_output=True, text=True).stderr.splitlines()[0]
@@ -144,7 +141,8 @@ def main():
     print(f"{'From the start of the process':58}{'ready ms':>10}{'first result ms':>18}")
     for name, kernel in kernels.items():
         print(f"{name:58}{milliseconds(kernel.ready):>10}{milliseconds(kernel.first):>18}")
-        kernel.close()
+    for session in sessions.values():
+        session.close()
 
 
 main()
