@@ -16,12 +16,14 @@ import java.util.Map;
 import java.util.concurrent.TimeUnit;
 import java.util.stream.Stream;
 import org.junit.jupiter.api.Nested;
+import org.junit.jupiter.api.Tag;
 import org.junit.jupiter.api.Test;
 import org.junit.jupiter.api.condition.DisabledOnOs;
 import org.junit.jupiter.api.condition.OS;
 import org.junit.jupiter.api.io.TempDir;
 
 /** Starts the finished distribution from a shell, as a user and as a front end do. */
+@Tag("distribution")
 @DisabledOnOs(value = OS.WINDOWS, disabledReason = "the launcher is a POSIX shell script")
 class LauncherDistributionTest {
 
