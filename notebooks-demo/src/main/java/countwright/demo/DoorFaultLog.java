@@ -155,10 +155,7 @@ public final class DoorFaultLog {
 
     private int poisson(double mean) {
         return new PoissonDistribution(
-                        random,
-                        mean,
-                        PoissonDistribution.DEFAULT_EPSILON,
-                        PoissonDistribution.DEFAULT_MAX_ITERATIONS)
+                        random, mean, PoissonDistribution.DEFAULT_EPSILON, PoissonDistribution.DEFAULT_MAX_ITERATIONS)
                 .sample();
     }
 
