@@ -7,7 +7,7 @@ import java.nio.file.Files;
 import java.nio.file.Path;
 import java.util.List;
 import java.util.Map;
-import org.junit.jupiter.api.BeforeAll;
+import org.junit.jupiter.api.BeforeEach;
 import org.junit.jupiter.api.Nested;
 import org.junit.jupiter.api.Test;
 import org.junit.jupiter.api.condition.DisabledOnOs;
@@ -25,10 +25,11 @@ class RealClientTest {
     @TempDir
     private static Path temporary;
 
-    private static ReferenceClient client;
+    private ReferenceClient client;
 
-    @BeforeAll
-    static void findClient() throws IOException {
+    /** Before each test, not once: a class given up as a whole would not be reported as skipped. */
+    @BeforeEach
+    void findClient() {
         client = ReferenceClient.ofThisMachine();
         assertThat(LAUNCHER).as("built by 'mvn -B verify' before this module").isExecutable();
     }

@@ -11,7 +11,9 @@ import java.util.ArrayList;
 import java.util.Arrays;
 import java.util.List;
 import java.util.Map;
+import java.util.concurrent.ConcurrentHashMap;
 import java.util.concurrent.TimeUnit;
+import java.util.concurrent.atomic.AtomicBoolean;
 import org.junit.jupiter.api.Assumptions;
 
 /**
@@ -20,12 +22,15 @@ import org.junit.jupiter.api.Assumptions;
  */
 final class ReferenceClient {
 
+    private static final System.Logger LOG = System.getLogger(ReferenceClient.class.getName());
+    private static final AtomicBoolean TOLD = new AtomicBoolean();
     private static final String PYTHON_VARIABLE = "COUNTWRIGHT_PYTHON";
     private static final boolean REQUIRED = "required".equals(System.getenv("COUNTWRIGHT_CLIENTS"));
     private static final String NEEDED = "jupyter_client, nbclient, nbformat, ipykernel";
     private static final Path SCENES =
             Path.of("src/test/python/reference_client.py").toAbsolutePath();
     private static final int LIMIT_SECONDS = 300;
+    private static final Map<String, String> LACKS = new ConcurrentHashMap<>();
 
     private final String python;
 
@@ -37,9 +42,9 @@ final class ReferenceClient {
     record Ending(int status, String said) {}
 
     /** Returns the client of this machine, or else skips the test that asks, or fails it where clients are required. */
-    static ReferenceClient ofThisMachine() throws IOException {
+    static ReferenceClient ofThisMachine() {
         String python = System.getenv().getOrDefault(PYTHON_VARIABLE, "python3");
-        String lack = lackOf(python);
+        String lack = LACKS.computeIfAbsent(python, ReferenceClient::lackOf);
         if (!lack.isEmpty()) {
             String reason = "needs a Python with " + NEEDED + ", but " + lack
                     + " Get them with 'python3 -m venv DIR && DIR/bin/pip install " + NEEDED.replace(",", "")
@@ -47,6 +52,10 @@ final class ReferenceClient {
                     + PYTHON_VARIABLE + ".";
             if (REQUIRED) {
                 fail("COUNTWRIGHT_CLIENTS is 'required': this test " + reason);
+            }
+            if (TOLD.compareAndSet(false, true)) {
+                // The build's own output counts what was skipped and leaves out why.
+                LOG.log(System.Logger.Level.WARNING, "Tests with real clients are skipped: each " + reason);
             }
             Assumptions.abort(reason);
         }
