@@ -45,6 +45,9 @@ class ArchitectureTest {
             // Flushes what the user's code has written when its cell ends.
             "countwright.worker.CellThread");
 
+    /** For the one chart in a hundred that needs what ours cannot do. */
+    private static final String ESCAPE_HATCH = "countwright.chart.Chart.xchart()";
+
     private static JavaClasses all = new ClassFileImporter().importClasses();
 
     @BeforeAll
@@ -183,6 +186,9 @@ class ArchitectureTest {
                     .and()
                     .areDeclaredInClassesThat()
                     .arePublic()
+                    .and(describe(
+                            "are not the escape hatch",
+                            method -> !method.getFullName().equals(ESCAPE_HATCH)))
                     .should(new UseInSignature("org.knowm", "org.duckdb", "java.sql", "org.apache.commons.math3")));
         }
 

@@ -1,7 +1,7 @@
 package countwright.design;
 
+import countwright.show.NearNames;
 import countwright.table.Column;
-import countwright.table.NearNames;
 import countwright.table.NumberColumn;
 import countwright.table.Table;
 import countwright.table.TextColumn;

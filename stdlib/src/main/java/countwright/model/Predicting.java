@@ -2,7 +2,7 @@ package countwright.model;
 
 import countwright.fit.RowFits;
 import countwright.fit.RowSource;
-import countwright.table.NearNames;
+import countwright.show.NearNames;
 import countwright.table.NumberColumn;
 import countwright.table.Table;
 import java.util.ArrayList;

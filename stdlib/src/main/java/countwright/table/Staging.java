@@ -1,5 +1,6 @@
 package countwright.table;
 
+import countwright.show.NearNames;
 import java.io.IOException;
 import java.sql.Connection;
 import java.sql.ResultSet;

@@ -2,6 +2,7 @@ package countwright.table;
 
 import countwright.show.Displayable;
 import countwright.show.MimeBundle;
+import countwright.show.NearNames;
 import countwright.show.Numbers;
 import java.nio.file.Path;
 import java.util.ArrayList;

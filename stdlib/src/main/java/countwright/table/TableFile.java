@@ -1,5 +1,6 @@
 package countwright.table;
 
+import countwright.show.NearNames;
 import java.io.IOException;
 import java.nio.file.FileSystems;
 import java.nio.file.Files;

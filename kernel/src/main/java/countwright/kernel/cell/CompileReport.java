@@ -1,6 +1,7 @@
 package countwright.kernel.cell;
 
 import countwright.kernel.cell.CellText.Place;
+import countwright.show.NearNames;
 import java.util.ArrayList;
 import java.util.Collection;
 import java.util.List;
@@ -120,14 +121,15 @@ final class CompileReport {
                 + (member
                         ? memberSentence(kind, owner)
                         : "no " + kind + " of that name has been declared or imported.");
-        Optional<String> near = member ? Optional.empty() : NearNames.nearest(name, declaredNames());
-        if (near.isPresent()) {
-            return text + "\nDid you mean '" + near.get() + "'?";
+        if (member) {
+            return text;
         }
-        return member
-                ? text
-                : text
-                        + "\nIf another cell declares it, run that cell first; otherwise declare it or correct the spelling.";
+        String question = NearNames.question(name, declaredNames());
+        return text
+                + "\n"
+                + (question.isEmpty()
+                        ? "If another cell declares it, run that cell first; otherwise declare it or correct the spelling."
+                        : question);
     }
 
     private static String memberSentence(String kind, String owner) {

@@ -39,11 +39,21 @@ final class ConnectCommand implements Callable<Integer> {
         }
         // A front end that ends the kernel by a signal must not leave its worker behind.
         Runtime.getRuntime().addShutdownHook(new Thread(server::close, "countwright-end"));
+        endWithFrontEnd(server);
         try {
             server.awaitShutdown();
         } catch (InterruptedException e) {
             Thread.currentThread().interrupt();
         }
         return Main.DONE;
+    }
+
+    /** A front end that dies without a word must not leave its kernels running; it names itself in the environment. */
+    private static void endWithFrontEnd(KernelServer server) {
+        String processId = System.getenv().getOrDefault("JPY_PARENT_PID", "");
+        if (processId.matches("[1-9][0-9]{0,17}")) {
+            var unused = ProcessHandle.of(Long.parseLong(processId))
+                    .map(frontEnd -> frontEnd.onExit().thenRun(server::close));
+        }
     }
 }

@@ -34,6 +34,10 @@ public final class CellThread extends Thread {
     static final int DEEPEST_CAUSE = 16;
 
     private static final int OURS = 0;
+
+    /** Not more: with a debugger attached, unwinding an overflow takes 300 ms a megabyte. */
+    private static final long STACK_BYTES = 2L << 20;
+
     private static final int MOST_FRAMES = 400;
     private static final long LARGEST_BUNDLE = 64L << 20;
 
@@ -50,7 +54,7 @@ public final class CellThread extends Thread {
     private final ClassKeeper classes = new ClassKeeper();
 
     CellThread(Outbox outbox) {
-        super(null, null, "cell", 16L << 20);
+        super(null, null, "cell", STACK_BYTES);
         this.outbox = outbox;
         setDaemon(true);
     }

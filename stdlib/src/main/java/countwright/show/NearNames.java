@@ -1,4 +1,4 @@
-package countwright.table;
+package countwright.show;
 
 import java.util.ArrayList;
 import java.util.Collection;
@@ -11,7 +11,7 @@ import java.util.Locale;
  *
  * <p>Closeness is the number of letters to insert, delete, replace or swap with a neighbour (Damerau 1964), without regard
  * to case and to the separators '_', '-', '.' and space. A name is near if that takes at most a third of the letters of
- * the wanted name (at least one), or if one name starts with the other.
+ * the wanted name (at least one, unless the wanted name is a single letter), or if one name starts with the other.
  */
 public final class NearNames {
 
@@ -24,7 +24,8 @@ public final class NearNames {
     public static List<String> of(String wanted, Collection<String> names) {
         record Near(String name, int distance) {}
         String plainWanted = plain(wanted);
-        int limit = Math.max(1, plainWanted.length() / 3);
+        // A single letter is near to every other; there only its case may be wrong.
+        int limit = plainWanted.length() == 1 ? 0 : Math.max(1, plainWanted.length() / 3);
         List<Near> near = new ArrayList<>();
         for (String name : names) {
             String plainName = plain(name);

@@ -1,4 +1,4 @@
-package countwright.table;
+package countwright.show;
 
 import static org.assertj.core.api.Assertions.assertThat;
 
