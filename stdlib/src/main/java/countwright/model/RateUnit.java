@@ -14,10 +14,10 @@ record RateUnit(double amount, Optional<String> exposure) {
 
     private static final double LARGEST = 1e12;
 
-    /** Returns the smallest unit for which a rate reaches 1, or a single one if the rate is at least 0.01 as it is. */
+    /** Returns the smallest unit for which a rate reaches 1, or a single one if the rate is at least 0.1 as it is. */
     static RateUnit fitting(double rate, Optional<String> exposure) {
         double amount = 1;
-        if (exposure.isPresent() && rate > 0 && rate < 0.01) {
+        if (exposure.isPresent() && rate > 0 && rate < 0.1) {
             while (rate * amount < 1 && amount < LARGEST) {
                 amount *= 1000;
             }
