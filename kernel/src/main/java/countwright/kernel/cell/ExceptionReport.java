@@ -15,21 +15,26 @@ final class ExceptionReport {
     private static final int LONGEST_LINE = 100;
     private static final String TOP_LEVEL = "do_it$";
 
+    /** The method in which JShell computes a variable's first value, called from the top level on the same line. */
+    private static final String INITIALISER = "do_it$Aux";
+
     /** Exceptions of these packages carry a message of ours that says all; their class name adds nothing. */
     private static final String OUR_LIBRARY = "countwright.";
 
     private final CellMap cells;
+    private final CompileReport compileReport;
 
-    ExceptionReport(CellMap cells) {
+    ExceptionReport(CellMap cells, CompileReport compileReport) {
         this.cells = cells;
+        this.compileReport = compileReport;
     }
 
     CellOutcome.Failure of(JShellException exception) {
         List<String> lines = new ArrayList<>();
         if (exception instanceof UnresolvedReferenceException unresolved) {
             String name = unresolved.getSnippet().name();
-            String message = "'" + name + "' cannot be run yet: it refers to something that is not declared. "
-                    + "Declare what it waits for, then run this cell again.";
+            String message = "'" + name + "' cannot be run: it " + compileReport.whyUnusable(unresolved.getSnippet())
+                    + " Put that right, then run this cell again.";
             lines.add(message);
             addPlaces(unresolved.getStackTrace(), lines);
             return new CellOutcome.Failure("Undeclared", message, lines);
@@ -85,7 +90,7 @@ final class ExceptionReport {
         String last = "";
         for (StackTraceElement frame : frames) {
             Optional<Location> location = cells.locate(frame);
-            if (location.isEmpty()) {
+            if (location.isEmpty() || frame.getMethodName().startsWith(INITIALISER)) {
                 continue;
             }
             String place = describe(location.get(), frame.getMethodName());
@@ -121,7 +126,7 @@ final class ExceptionReport {
     }
 
     private static Optional<String> messageOf(EvalException thrown) {
-        return Optional.ofNullable(thrown.getMessage()).filter(message -> !message.isBlank());
+        return Optional.ofNullable(thrown.getMessage()).map(UserNames::of).filter(message -> !message.isBlank());
     }
 
     private static String simpleName(String className) {
