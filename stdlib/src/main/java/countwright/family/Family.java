@@ -26,6 +26,15 @@ public sealed interface Family permits Poisson {
     /** Returns the Fisher information of a count on {@code eta}: the variance of the score. */
     double information(double mu);
 
+    /**
+     * Returns the variance of the squared Pearson residual {@code (y - mu)² / V(mu)}, whose mean is 1: {@code 2 + 1/mu} for
+     * Poisson counts.
+     */
+    double squaredResidualVariance(double mu);
+
+    /** Returns the covariance of the squared Pearson residual with {@link #score}: 1 for Poisson counts. */
+    double squaredResidualWithScore(double mu);
+
     /** Returns the logarithm of the probability of a count, complete with every normalising constant. */
     double logDensity(double y, double mu);
 

@@ -46,6 +46,16 @@ final class Poisson implements Family {
     }
 
     @Override
+    public double squaredResidualVariance(double mu) {
+        return 2 + 1 / mu;
+    }
+
+    @Override
+    public double squaredResidualWithScore(double mu) {
+        return 1;
+    }
+
+    @Override
     public double logDensity(double y, double mu) {
         if (y == 0) {
             return -mu;

@@ -7,6 +7,7 @@ public final class Estimate {
 
     private final double[] coefficients;
     private final List<ColumnState> states;
+    private final double[] ranges;
     private final TwofoldTriangle covariance;
     private final Convergence convergence;
     private final FitSummary summary;
@@ -14,11 +15,13 @@ public final class Estimate {
     Estimate(
             double[] coefficients,
             List<ColumnState> states,
+            double[] ranges,
             TwofoldTriangle covariance,
             Convergence convergence,
             FitSummary summary) {
         this.coefficients = coefficients.clone();
         this.states = List.copyOf(states);
+        this.ranges = ranges.clone();
         this.covariance = covariance;
         this.convergence = convergence;
         this.summary = summary;
@@ -37,6 +40,11 @@ public final class Estimate {
     /** Returns what became of a column. */
     public ColumnState state(int column) {
         return states.get(column);
+    }
+
+    /** Returns how far apart the least and the greatest value in a column of the design are, over all rows; at least 0. */
+    public double range(int column) {
+        return ranges[column];
     }
 
     /** Returns the covariance of two coefficients: the inverse of the Fisher information; 0 where one has no estimate. */

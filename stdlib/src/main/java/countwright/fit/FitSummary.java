@@ -11,6 +11,8 @@ package countwright.fit;
  * @param deviance deviance
  * @param nullDeviance deviance of a baseline alone, with the same offsets
  * @param pearsonChiSquare sum of squared Pearson residuals
+ * @param pearsonSpread standard deviation of pearsonChiSquare where the model holds: near {@code sqrt(2 df)} for counts
+ *     that are not small, more where small means differ between rows; 0 where no degree of freedom is left
  */
 public record FitSummary(
         int rows,
@@ -20,4 +22,5 @@ public record FitSummary(
         double logLikelihood,
         double deviance,
         double nullDeviance,
-        double pearsonChiSquare) {}
+        double pearsonChiSquare,
+        double pearsonSpread) {}

@@ -50,8 +50,9 @@ final class LikelihoodPass implements Accumulator<LikelihoodPass> {
             double mu = predictor.mean(row);
             totals.add(LOG_LIKELIHOOD, family.logDensity(y, mu));
             totals.add(DEVIANCE, family.unitDeviance(y, mu));
+            // A mean that underflows to 0 where there is no event, on the way to no finite maximum, adds nothing.
             double difference = y - mu;
-            totals.add(PEARSON, difference * difference / family.variance(mu));
+            totals.add(PEARSON, difference == 0 ? 0 : difference * difference / family.variance(mu));
             addDerivatives(gather(block, row), family.score(y, mu), family.information(mu));
         }
     }

@@ -2,6 +2,7 @@ package countwright.fit;
 
 import countwright.family.Family;
 import java.util.ArrayList;
+import java.util.Arrays;
 import java.util.List;
 import java.util.Optional;
 
@@ -152,6 +153,12 @@ public final class MaximumLikelihood {
 
     private Estimate result(Point point, Convergence convergence, double nullDeviance) {
         LikelihoodPass pass = point.pass;
+        TwofoldTriangle covariance = point.factor.inverse(columnCount);
+        int[] estimated =
+                point.factor.kept().stream().mapToInt(Integer::intValue).toArray();
+        double pearsonSpread = source.fold(() ->
+                        new PearsonSpread(family, new LinearPredictor(point.coefficients, unbounded), columnCount))
+                .value(covariance, estimated);
         FitSummary summary = new FitSummary(
                 source.rowCount(),
                 pass.informativeRows(),
@@ -160,8 +167,11 @@ public final class MaximumLikelihood {
                 pass.logLikelihood(),
                 pass.deviance(),
                 nullDeviance,
-                pass.pearsonChiSquare());
-        return new Estimate(point.coefficients, states, point.factor.inverse(columnCount), convergence, summary);
+                pass.pearsonChiSquare(),
+                pearsonSpread);
+        double[] ranges = new double[columnCount];
+        Arrays.setAll(ranges, survey::range);
+        return new Estimate(point.coefficients, states, ranges, covariance, convergence, summary);
     }
 
     /** A place on the likelihood surface with what was gathered there. */

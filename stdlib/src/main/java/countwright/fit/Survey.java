@@ -1,5 +1,7 @@
 package countwright.fit;
 
+import java.util.Arrays;
+
 /**
  * What can be said of each column before the first step: how many rows have an entry in it, of which signs, with how many
  * events; and the totals of counts and exposure, from which the fit of a baseline alone follows.
@@ -13,7 +15,9 @@ final class Survey implements Accumulator<Survey> {
     private final double[] events;
     private final boolean[] positive;
     private final boolean[] negative;
-    private final double[] largest;
+    private final double[] least;
+    private final double[] greatest;
+    private long rowCount;
     private final TwofoldSums totals = new TwofoldSums(2);
 
     Survey(int columnCount) {
@@ -21,7 +25,10 @@ final class Survey implements Accumulator<Survey> {
         this.events = new double[columnCount];
         this.positive = new boolean[columnCount];
         this.negative = new boolean[columnCount];
-        this.largest = new double[columnCount];
+        this.least = new double[columnCount];
+        this.greatest = new double[columnCount];
+        Arrays.fill(least, Double.POSITIVE_INFINITY);
+        Arrays.fill(greatest, Double.NEGATIVE_INFINITY);
     }
 
     @Override
@@ -40,9 +47,11 @@ final class Survey implements Accumulator<Survey> {
                 events[column] += response[row];
                 positive[column] |= value > 0;
                 negative[column] |= value < 0;
-                largest[column] = Math.max(largest[column], Math.abs(value));
+                least[column] = Math.min(least[column], value);
+                greatest[column] = Math.max(greatest[column], value);
             }
         }
+        rowCount += block.size();
         for (int row = 0; row < block.size(); row++) {
             totals.add(COUNT, response[row]);
             totals.add(EXPOSURE, Math.exp(block.offset()[row]));
@@ -56,8 +65,10 @@ final class Survey implements Accumulator<Survey> {
             events[column] += later.events[column];
             positive[column] |= later.positive[column];
             negative[column] |= later.negative[column];
-            largest[column] = Math.max(largest[column], later.largest[column]);
+            least[column] = Math.min(least[column], later.least[column]);
+            greatest[column] = Math.max(greatest[column], later.greatest[column]);
         }
+        rowCount += later.rowCount;
         totals.merge(later.totals);
     }
 
@@ -72,7 +83,17 @@ final class Survey implements Accumulator<Survey> {
 
     /** Returns the largest absolute value in a column. */
     double largest(int column) {
-        return largest[column];
+        return rows[column] == 0 ? 0 : Math.max(Math.abs(least[column]), Math.abs(greatest[column]));
+    }
+
+    /** Returns how far apart the least and the greatest value in a column are; rows without an entry have 0. */
+    double range(int column) {
+        if (rows[column] == 0) {
+            return 0;
+        }
+        return rows[column] == rowCount
+                ? greatest[column] - least[column]
+                : Math.max(0, greatest[column]) - Math.min(0, least[column]);
     }
 
     double totalCount() {

@@ -13,6 +13,8 @@ import org.jspecify.annotations.Nullable;
 /** What a fit is made of, shared by the views of it that differ in their confidence level. */
 final class Fit {
 
+    private static final double MEANINGLESS = 20;
+
     private final CountModel spec;
     private final Table table;
     private final Design design;
@@ -72,6 +74,17 @@ final class Fit {
         return (int) IntStream.range(0, estimate.columnCount())
                 .filter(column -> estimate.state(column) == ColumnState.UNBOUNDED)
                 .count();
+    }
+
+    /**
+     * Returns whether the rows say nothing of a coefficient, as when two terms are all but the same: over the range of its
+     * column, the interval for the rate ratio would span over 30 powers of ten. The size of the standard error alone would
+     * not do; it is large for any covariate in a large unit.
+     */
+    boolean isUndetermined(int column) {
+        return column > 0
+                && estimate.state(column) == ColumnState.ESTIMATED
+                && standardError(column) * estimate.range(column) > MEANINGLESS;
     }
 
     double standardError(int column) {

@@ -19,9 +19,6 @@ import java.util.Set;
 /** Lays out a fitted model for its reader: what drives the rate and how sure that is, then how well the model holds. */
 final class ModelReport {
 
-    /** A standard error of a log ratio that says nothing: the interval would span over 30 powers of ten. */
-    private static final double MEANINGLESS = 20;
-
     private final FittedModel model;
 
     ModelReport(FittedModel model) {
@@ -66,7 +63,7 @@ final class ModelReport {
         if (grows(column)) {
             return grid.row(ratio.name(), "not finite", Numbers.ABSENT, Numbers.ABSENT);
         }
-        if (model.fit().standardError(column) > MEANINGLESS) {
+        if (model.fit().isUndetermined(column)) {
             return grid.row(ratio.name(), "not determined", Numbers.ABSENT, Numbers.ABSENT);
         }
         double standardError = ratio.ratio() * model.fit().standardError(column);

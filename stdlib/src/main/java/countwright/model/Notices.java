@@ -5,6 +5,7 @@ import countwright.fit.Convergence;
 import countwright.fit.Estimate;
 import countwright.show.Numbers;
 import java.util.ArrayList;
+import java.util.Arrays;
 import java.util.List;
 
 /** The sentences a reader of a fit must not miss. */
@@ -30,18 +31,32 @@ final class Notices {
         fit.leftOut().ifPresent(notices::add);
         List<String> unbounded = named(fit, ColumnState.UNBOUNDED);
         if (!unbounded.isEmpty()) {
-            notices.add("No finite estimate, because there is not one event in its rows: " + list(unbounded)
-                    + ". Its rate is estimated as 0; merge the level with another, leave it out, or give an exact upper limit"
-                    + " for its rate.");
+            notices.add(
+                    unbounded.size() == 1
+                            ? "No finite estimate, because there is not one event in its rows: " + unbounded.get(0)
+                                    + ". Its rate is estimated as 0; merge the level with another, leave it out, or give"
+                                    + " an exact upper limit for its rate."
+                            : "No finite estimates, because there is not one event in their rows: " + list(unbounded)
+                                    + ". Their rates are estimated as 0; merge levels, leave them out, or give exact"
+                                    + " upper limits for their rates.");
         }
         List<String> aliased = named(fit, ColumnState.ALIASED);
         if (!aliased.isEmpty()) {
-            notices.add("Left out, because the terms before it already determine it: " + list(aliased)
-                    + ". Drop one of the terms that say the same.");
+            notices.add("Left out, because what stands before " + them(aliased) + " in the model already determines "
+                    + them(aliased) + ": " + list(aliased) + ". Drop one of the terms that say the same.");
         }
         List<String> empty = named(fit, ColumnState.EMPTY);
         if (!empty.isEmpty()) {
-            notices.add("Left out, because no row with events bears on it: " + list(empty) + ".");
+            notices.add("Left out, because no row with events bears on " + them(empty) + ": " + list(empty) + ".");
+        }
+        List<String> undetermined = Arrays.stream(fit.estimated())
+                .filter(fit::isUndetermined)
+                .mapToObj(fit.design().columnNames()::get)
+                .toList();
+        if (!undetermined.isEmpty()) {
+            notices.add("Not determined, because the rows can hardly tell " + them(undetermined)
+                    + " from what else is in the model: " + list(undetermined)
+                    + ". Drop one of the terms that say nearly the same.");
         }
         notices.addAll(ofDispersion(model));
         return List.copyOf(notices);
@@ -51,8 +66,8 @@ final class Notices {
     static List<String> ofConvergence(Fit fit) {
         Convergence end = fit.estimate().convergence();
         if (end instanceof Convergence.NotConverged stopped) {
-            return List.of("The iteration stopped after " + stopped.iterations()
-                    + " steps without reaching the maximum (Newton"
+            return List.of("The iteration stopped after " + Numbers.count(stopped.iterations(), "step")
+                    + " without reaching the maximum (Newton"
                     + " decrement " + Numbers.significant(stopped.decrement(), 2)
                     + "): do not use these estimates. Look for extreme values in the columns of the terms, or use fewer"
                     + " terms.");
@@ -74,8 +89,7 @@ final class Notices {
             return List.of(
                     "There are as many coefficients as rows that bear on them, so nothing is left to judge the fit by.");
         }
-        // Under the model the statistic has mean 1 and a standard deviation near sqrt(2 / df).
-        double margin = Math.max(SLIGHT, 2 * Math.sqrt(2.0 / df));
+        double margin = Math.max(SLIGHT, 2 * model.fit().estimate().summary().pearsonSpread() / df);
         double dispersion = model.dispersion();
         String start = "Dispersion " + Numbers.significant(dispersion, 2) + ": the counts vary ";
         String family = model.spec().family().name();
@@ -103,6 +117,10 @@ final class Notices {
             }
         }
         return names;
+    }
+
+    private static String them(List<String> names) {
+        return names.size() == 1 ? "it" : "them";
     }
 
     private static String list(List<String> names) {

@@ -6,6 +6,8 @@ import static org.assertj.core.api.Assertions.assertThat;
 import countwright.reference.PublishedData;
 import countwright.table.Table;
 import org.junit.jupiter.api.Test;
+import org.junit.jupiter.params.ParameterizedTest;
+import org.junit.jupiter.params.provider.ValueSource;
 
 class PoissonTest {
 
@@ -54,5 +56,23 @@ class PoissonTest {
     @Test
     void unitDeviance_notANumber_returnsNotANumber() {
         assertThat(POISSON.unitDeviance(3, Double.NaN)).isNaN();
+    }
+
+    @ParameterizedTest
+    @ValueSource(doubles = {0.01, 0.7, 5, 40})
+    void squaredResidual_momentsAreThoseOfTheDistribution(double mu) {
+        double mean = 0;
+        double square = 0;
+        double withScore = 0;
+        for (int y = 0; y < 400; y++) {
+            double p = Math.exp(POISSON.logDensity(y, mu));
+            double r2 = (y - mu) * (y - mu) / POISSON.variance(mu);
+            mean += p * r2;
+            square += p * r2 * r2;
+            withScore += p * r2 * POISSON.score(y, mu);
+        }
+        assertDigits(1, mean, 12);
+        assertDigits(square - mean * mean, POISSON.squaredResidualVariance(mu), 10);
+        assertDigits(withScore, POISSON.squaredResidualWithScore(mu), 10);
     }
 }

@@ -11,6 +11,7 @@ import countwright.fit.Convergence;
 import countwright.table.NumberColumn;
 import countwright.table.Table;
 import countwright.table.TextColumn;
+import java.util.Random;
 import org.junit.jupiter.api.Test;
 
 /** Fits that do not go as wished: nothing is hidden, and what can be estimated is. */
@@ -128,5 +129,78 @@ class FittedModelNoticesTest {
                 .singleElement()
                 .asString()
                 .contains("vary less than a Poisson model expects");
+    }
+
+    /**
+     * Poisson counts with means from 0.002 to 0.4, known up to a constant: a notice would be a false alarm. The chance of one
+     * is near 5% by design (the sum is skewed, so a little more above than below); of 300 tables 30 or more would have one
+     * with a chance below 0.001 at 5.5%. Judged by the spread sqrt(2 df), which holds for large counts only, three in four have one.
+     */
+    @Test
+    void notices_sparseCountsOfUnequalExposure_areSeldomFalseAlarms() {
+        Random random = new Random(20260);
+        int alarms = 0;
+        for (int table = 0; table < 300; table++) {
+            double[] counts = new double[600];
+            double[] exposures = new double[600];
+            for (int row = 0; row < 600; row++) {
+                exposures[row] = 0.002 * Math.pow(200, random.nextDouble());
+                double time = -Math.log(1 - random.nextDouble());
+                while (time < exposures[row]) {
+                    counts[row]++;
+                    time -= Math.log(1 - random.nextDouble());
+                }
+            }
+            Table sparse = Table.of(NumberColumn.of("y", counts), NumberColumn.of("t", exposures));
+            alarms += CountModel.of("y").exposure("t").fit(sparse).notices().size();
+        }
+        assertThat(alarms).isLessThan(30);
+    }
+
+    @Test
+    void pearsonSpread_equalMeans_isThatOfTheChiSquareDistribution() {
+        FittedModel model = CountModel.of("y").fit(TABLE);
+        assertDigits(
+                Math.sqrt(2 * model.residualDegreesOfFreedom()),
+                model.fit().estimate().summary().pearsonSpread(),
+                12);
+    }
+
+    @Test
+    void display_covariateInALargeUnit_isStillDetermined() {
+        Table small = TABLE.with("millionths", row -> row.number("x") / 1e6);
+        FittedModel model = CountModel.of("y").on(linear("millionths")).fit(small);
+        assertThat(model.coefficients().get(1).standardError()).isGreaterThan(20);
+        assertThat(model.toString()).doesNotContain("not determined");
+    }
+
+    @Test
+    void display_termsAllButTheSame_areNotDeterminedAndNamed() {
+        Table near = TABLE.with("almostX", row -> row.number("x") + (row.number("y") == 3 ? 1e-6 : 0));
+        FittedModel model =
+                CountModel.of("y").on(linear("x"), linear("almostX")).fit(near);
+        assertThat(model.toString()).contains("not determined");
+        assertThat(model.notices())
+                .anySatisfy(notice -> assertThat(notice)
+                        .startsWith("Not determined, because the rows can hardly tell them")
+                        .contains("x (per 1); almostX (per 1)")
+                        .contains("Drop one"));
+    }
+
+    @Test
+    void fit_meansThatUnderflowOnTheWay_haveNoMissingMeasure() {
+        Table far = Table.of(NumberColumn.of("y", 0, 0, 3, 4), NumberColumn.of("x", 1, 2, 1000, 1000));
+        FittedModel model = CountModel.of("y").on(linear("x")).fit(far);
+        assertThat(model.convergence()).isInstanceOf(Convergence.NoFiniteMaximum.class);
+        assertThat(model.pearsonChiSquare()).isNotNaN();
+        assertThat(model.fit().estimate().summary().pearsonSpread()).isFinite();
+        assertThat(model.toString()).doesNotContain("NaN").doesNotContain("∞");
+    }
+
+    @Test
+    void notices_severalLevelsWithoutEvents_speakOfThemInThePlural() {
+        Table two = TABLE.with(TextColumn.of("h", "a", "a", "b", "c", "a", "a", "a", "a"));
+        assertThat(CountModel.of("y").on(levels("h")).fit(two).notices())
+                .anySatisfy(notice -> assertThat(notice).contains("in their rows: h b vs a; h c vs a. Their rates"));
     }
 }

@@ -125,6 +125,7 @@ final class ExceptionReport {
         return source.isEmpty() ? where : where + ":   " + source;
     }
 
+    /** Returns the message without the classes that JShell wraps around the names of a cell. */
     private static Optional<String> messageOf(EvalException thrown) {
         return Optional.ofNullable(thrown.getMessage()).map(UserNames::of).filter(message -> !message.isBlank());
     }
