@@ -197,6 +197,47 @@ class LauncherDistributionTest {
     }
 
     @Nested
+    class Fonts {
+
+        private static final String CHART = "Charts.rates(Table.of(texts(\"depot\", \"A\", \"B\"), "
+                + "numbers(\"n\", 3, 5), numbers(\"km\", 10, 9)), \"n\", \"km\", \"depot\")";
+        private static final String VARIABLE = "System.getenv(\"FONTCONFIG_FILE\")";
+
+        @Test
+        void systemWithoutFonts_stillDrawsCharts() throws Exception {
+            Path home = copyTo("distribution");
+            Path config = home.resolve("share/fonts/fonts.conf");
+            String emptySystem = Files.readString(config)
+                    .replaceAll("<dir>/[^<]*</dir>", "<dir>/no/such/folder</dir>")
+                    .replace("/etc/fonts", "/no/such/folder");
+            assertThat(emptySystem).contains("<dir>/no/such/folder</dir>").contains("prefix=\"relative\"");
+            Files.writeString(config, emptySystem);
+
+            Run run = runCell(home, Map.of("XDG_DATA_HOME", "/no/such/folder"), CHART);
+
+            assertThat(run.exitCode()).as(run.out() + run.err()).isZero();
+            assertThat(temporary.resolve("out/cell.ipynb")).content().contains("\"image/png\"");
+        }
+
+        @Test
+        void fontsOfTheUser_areLeftAlone() throws Exception {
+            Run run = runCell(DISTRIBUTION, Map.of("FONTCONFIG_FILE", "/my/own/fonts.conf"), VARIABLE);
+
+            assertThat(run.exitCode()).as(run.out() + run.err()).isZero();
+            assertThat(temporary.resolve("out/cell.ipynb")).content().contains("/my/own/fonts.conf");
+        }
+
+        private Run runCell(Path home, Map<String, String> environment, String code) throws Exception {
+            Path notebook = temporary.resolve("cell.ipynb");
+            Files.writeString(notebook, """
+                    {"cells": [{"cell_type": "code", "id": "a", "execution_count": null, "metadata": {},
+                      "outputs": [], "source": "%s"}], "metadata": {}, "nbformat": 4, "nbformat_minor": 5}
+                    """.formatted(code.replace("\"", "\\\"")));
+            return launch(home.resolve("bin/countwright"), environment, "run", notebook.toString());
+        }
+    }
+
+    @Nested
     class Content {
 
         @Test

@@ -3,7 +3,6 @@ package countwright.chart;
 import countwright.model.Prediction;
 import countwright.show.Grid;
 import countwright.show.Numbers;
-import countwright.table.NumberColumn;
 import java.util.Arrays;
 import java.util.List;
 import java.util.stream.IntStream;
@@ -148,11 +147,11 @@ final class FittedChart {
 
     private String span(RateUnit unit, Curve curve) {
         int last = curve.values().length - 1;
-        String start = unit.text(curve.rates()[0]) + " at " + covariate + " " + value(curve.values()[0]);
+        String start = unit.text(curve.rates()[0]) + " at " + covariate + " " + Scenarios.value(curve.values()[0]);
         return last == 0
                 ? start
                 : "from " + start + " to " + unit.text(curve.rates()[last]) + " at " + covariate + " "
-                        + value(curve.values()[last]);
+                        + Scenarios.value(curve.values()[last]);
     }
 
     private String caption(int pools, boolean single) {
@@ -180,7 +179,9 @@ final class FittedChart {
         for (int i = 0; i < chosen.values().length; i++) {
             Prediction p = chosen.rows().get(i);
             table = table.row(
-                    value(chosen.values()[i]), unit.text(p.rate()), unit.interval(p.rateLower(), p.rateUpper()));
+                    Scenarios.value(chosen.values()[i]),
+                    unit.text(p.rate()),
+                    unit.interval(p.rateLower(), p.rateUpper()));
         }
         return table;
     }
@@ -193,11 +194,6 @@ final class FittedChart {
                 .mapToDouble(quarter -> sorted[(int) Math.round(quarter / 4.0 * (sorted.length - 1))])
                 .distinct()
                 .toArray();
-    }
-
-    /** Returns a value as the table shows it: 2014 may be a year. */
-    private static String value(double value) {
-        return NumberColumn.of("", value).text(0);
     }
 
     private static String capitalised(String text) {

@@ -1,5 +1,6 @@
 package countwright.chart;
 
+import countwright.show.Numbers;
 import countwright.table.Column;
 import countwright.table.NumberColumn;
 import countwright.table.Table;
@@ -45,6 +46,11 @@ final class Scenarios {
         return held.isEmpty() ? "" : " Other covariates are held at " + String.join(", ", held) + ".";
     }
 
+    /** Returns a value for a caption: whole numbers as they are, since 2014 may be a year; others without false precision. */
+    static String value(double value) {
+        return value == Math.rint(value) ? NumberColumn.of("", value).text(0) : Numbers.compact(value);
+    }
+
     private Table with(Column variedColumn) {
         List<Column> columns = new ArrayList<>();
         columns.add(variedColumn);
@@ -59,7 +65,8 @@ final class Scenarios {
         int row = number && column instanceof NumberColumn numbers ? medianRow(numbers) : mostFrequentRow(column);
         Column one = column.rows(new int[] {row});
         heldRow.add(one);
-        held.add(name + " = " + one.text(0) + (number ? " (median)" : " (most rows)"));
+        held.add(name + " = " + (one instanceof NumberColumn numbers ? value(numbers.value(0)) : one.text(0))
+                + (number ? " (median)" : " (most rows)"));
     }
 
     private static int medianRow(NumberColumn column) {

@@ -54,7 +54,7 @@ sealed interface Effect {
         static Linear learn(String name, Table table) {
             Column column = table.column(name);
             if (!(column instanceof NumberColumn numbers)) {
-                throw notNumbers(column);
+                throw notNumbers(column, table.source());
             }
             double largest = 0;
             boolean varies = false;
@@ -88,17 +88,17 @@ sealed interface Effect {
         public Reader over(Table table) {
             Column values = table.column(column);
             if (!(values instanceof NumberColumn numbers)) {
-                throw notNumbers(values);
+                throw notNumbers(values, table.source());
             }
             return new LinearReader(numbers, table.source());
         }
 
-        private static IllegalArgumentException notNumbers(Column column) {
+        private static IllegalArgumentException notNumbers(Column column, String source) {
             String remedy = column.kind().equals("text")
                     ? "Use levels(\"" + column.name() + "\") to compare its levels."
                     : "Use levels(\"" + column.name() + "\"), or add a column of numbers such as days since a start.";
             return new IllegalArgumentException("linear(\"" + column.name() + "\") needs a column of numbers, but '"
-                    + column.name() + "' holds " + column.kind() + ". " + remedy);
+                    + column.name() + "' in " + source + " holds " + column.kind() + ". " + remedy);
         }
     }
 

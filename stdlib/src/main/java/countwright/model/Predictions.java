@@ -9,6 +9,7 @@ import java.util.ArrayList;
 import java.util.LinkedHashSet;
 import java.util.List;
 import java.util.Set;
+import java.util.stream.IntStream;
 
 /** Predictions for the rows of a table, in their order. Immutable. */
 public final class Predictions implements Displayable {
@@ -105,7 +106,9 @@ public final class Predictions implements Displayable {
                 .average()
                 .orElse(1);
         RateUnit unit = RateUnit.fitting(typical, spec.exposure());
-        List<String> shown = shownColumns(expected);
+        List<String> alike = predictions.size() > 1 ? alike(shownColumns(expected)) : List.of();
+        List<String> shown = new ArrayList<>(shownColumns(expected));
+        shown.removeAll(alike);
         String caption = "Predicted " + spec.response()
                 + (spec.exposure().isPresent() ? ", with the " + unit.label("").strip() : "");
         Grid grid = Grid.titled(caption).numberColumn("row");
@@ -123,10 +126,29 @@ public final class Predictions implements Displayable {
             lines.add(line(prediction, shown, expected, unit));
         }
         grid = grid.rows(lines);
+        if (!alike.isEmpty()) {
+            grid = grid.note("The same in every row: "
+                    + String.join(
+                            ", ",
+                            alike.stream()
+                                    .map(name -> name + " " + table.column(name).text(0))
+                                    .toList())
+                    + ".");
+        }
         for (String note : notes) {
             grid = grid.note(note);
         }
         return grid;
+    }
+
+    /** Returns the columns that hold one value throughout, which need not be repeated in every row. */
+    private List<String> alike(List<String> names) {
+        return names.stream()
+                .filter(name -> IntStream.range(1, table.rowCount())
+                        .allMatch(row -> table.column(name)
+                                .text(row)
+                                .equals(table.column(name).text(0))))
+                .toList();
     }
 
     private List<String> line(Prediction prediction, List<String> shown, boolean expected, RateUnit unit) {

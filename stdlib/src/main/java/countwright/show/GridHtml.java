@@ -14,7 +14,7 @@ final class GridHtml {
     private static final String RULE = "rgba(128,128,128,0.55)";
     private static final String HAIRLINE = "rgba(128,128,128,0.22)";
 
-    private static final String FRAME = "overflow-x:auto;max-width:100%;margin:0.35em 0 0.7em 0";
+    private static final String FRAME = "overflow-x:auto;max-width:100%;margin:0.5em 0 1.1em 0";
     private static final String TABLE = "border-collapse:collapse;border:none;margin:0;width:auto;table-layout:auto;"
             + "background:transparent;color:inherit;font-size:0.95em;line-height:1.4;font-variant-numeric:tabular-nums";
     private static final String CAPTION =

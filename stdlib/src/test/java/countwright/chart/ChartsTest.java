@@ -69,6 +69,18 @@ class ChartsTest {
         }
 
         @Test
+        void fitted_valuesOfManyDigits_areWrittenShort() {
+            Table thirds = FAULTS.with("age", row -> row.number("age") / 3);
+            FittedModel model = CountModel.of("faults")
+                    .exposure("vehicleKm")
+                    .on(linear("age"), levels("depot"))
+                    .fit(thirds);
+
+            assertThat(Charts.fitted(model, "age").display().plainText()).doesNotContainPattern("[0-9]\\.[0-9]{6}");
+            assertThat(Charts.fitted(model, "depot").display().plainText()).doesNotContainPattern("[0-9]\\.[0-9]{6}");
+        }
+
+        @Test
         void fitted_years_areWrittenWithoutCommas() {
             Table table = Table.of(
                     NumberColumn.of("year", 2001, 2004, 2007, 2010), NumberColumn.of("faults", 12, 15, 11, 19));

@@ -41,6 +41,16 @@ class PredictionsTest {
     }
 
     @Test
+    void predict_columnAlikeInAllRows_isSaidOnceBelow() {
+        Table scenarios = Table.crossing(
+                NumberColumn.of("agecat", 1, 2), TextColumn.of("smoker", "yes"), NumberColumn.of("person_years", 100));
+
+        assertThat(model.predict(scenarios).toString())
+                .contains("The same in every row: smoker yes, person_years 100.")
+                .contains("agecat   expected deaths");
+    }
+
+    @Test
     void predict_withoutExposure_givesRatesAndSaysSo() {
         Predictions predictions =
                 model.predict(Table.of(NumberColumn.of("agecat", 1, 2), TextColumn.of("smoker", "no", "yes")));

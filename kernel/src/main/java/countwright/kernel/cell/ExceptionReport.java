@@ -4,6 +4,7 @@ import countwright.kernel.cell.CellMap.Location;
 import java.util.ArrayList;
 import java.util.List;
 import java.util.Optional;
+import java.util.regex.Pattern;
 import jdk.jshell.EvalException;
 import jdk.jshell.JShellException;
 import jdk.jshell.UnresolvedReferenceException;
@@ -17,6 +18,9 @@ final class ExceptionReport {
 
     /** Exceptions of these packages carry a message of ours that says all; their class name adds nothing. */
     private static final String OUR_LIBRARY = "countwright.";
+
+    /** The class that JShell puts around each snippet; Java names it in some messages, such as that of a null pointer. */
+    private static final Pattern WRAPPER = Pattern.compile("REPL\\.\\$JShell\\$\\w+\\.");
 
     private final CellMap cells;
 
@@ -120,8 +124,11 @@ final class ExceptionReport {
         return source.isEmpty() ? where : where + ":   " + source;
     }
 
+    /** Returns the message without the classes that JShell wraps around the names of a cell. */
     private static Optional<String> messageOf(EvalException thrown) {
-        return Optional.ofNullable(thrown.getMessage()).filter(message -> !message.isBlank());
+        return Optional.ofNullable(thrown.getMessage())
+                .map(message -> WRAPPER.matcher(message).replaceAll(""))
+                .filter(message -> !message.isBlank());
     }
 
     private static String simpleName(String className) {

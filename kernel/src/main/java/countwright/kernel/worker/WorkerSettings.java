@@ -30,6 +30,8 @@ public record WorkerSettings(List<Path> classPath, List<String> jvmOptions, Map<
     /** The environment variable with further JVM options, separated by blanks. */
     public static final String OPTIONS_VARIABLE = "COUNTWRIGHT_WORKER_OPTIONS";
 
+    private static final String FONTS_VARIABLE = "FONTCONFIG_FILE";
+
     public WorkerSettings {
         classPath = List.copyOf(classPath);
         jvmOptions = List.copyOf(jvmOptions);
@@ -44,7 +46,7 @@ public record WorkerSettings(List<Path> classPath, List<String> jvmOptions, Map<
     public static WorkerSettings ofInstallation() {
         String options = System.getenv().getOrDefault(OPTIONS_VARIABLE, "").strip();
         List<String> jvmOptions = options.isEmpty() ? List.of() : Arrays.asList(options.split("\\s+", -1));
-        return new WorkerSettings(installedClassPath(), jvmOptions, Map.of());
+        return new WorkerSettings(installedClassPath(), jvmOptions, fonts(System.getenv()));
     }
 
     /** Returns these settings with one more JVM option. */
@@ -57,6 +59,14 @@ public record WorkerSettings(List<Path> classPath, List<String> jvmOptions, Map<
     /** Returns the class path in the form the java command takes. */
     public String classPathText() {
         return classPath.stream().map(Path::toString).collect(Collectors.joining(File.pathSeparator));
+    }
+
+    /** Names our own font where the user has not named others: without any font, Java on Linux draws no chart. */
+    static Map<String, String> fonts(Map<String, String> environment) {
+        String home = System.getProperty(HOME_PROPERTY, "");
+        Path file = Path.of(home, "share", "fonts", "fonts.conf");
+        boolean ours = !home.isEmpty() && !environment.containsKey(FONTS_VARIABLE) && Files.isRegularFile(file);
+        return ours ? Map.of(FONTS_VARIABLE, file.toAbsolutePath().toString()) : Map.of();
     }
 
     private static List<Path> installedClassPath() {

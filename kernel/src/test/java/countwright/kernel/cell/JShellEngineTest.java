@@ -191,6 +191,13 @@ class JShellEngineTest {
         }
 
         @Test
+        void nullPointer_namesTheVariableAsTheUserDoes() {
+            assertThat(failureOf("String text = null;\ntext.length()").traceback())
+                    .first()
+                    .isEqualTo("NullPointerException: Cannot invoke \"String.length()\" because \"text\" is null");
+        }
+
+        @Test
         void exceptionWithCause_tellsBoth() {
             assertThat(failureOf("throw new IllegalStateException(\"outer\", new RuntimeException(\"inner\"));")
                             .traceback())

@@ -1,0 +1,174 @@
+package countwright.demo;
+
+import static org.assertj.core.api.Assertions.assertThat;
+
+import countwright.kernel.wire.Channel;
+import countwright.kernel.wire.ClientSockets;
+import countwright.kernel.wire.ConnectionFile;
+import countwright.kernel.wire.Message;
+import java.io.IOException;
+import java.nio.file.Path;
+import java.util.ArrayList;
+import java.util.List;
+import java.util.Map;
+import java.util.concurrent.TimeUnit;
+import java.util.function.Function;
+import java.util.function.Predicate;
+import java.util.stream.Collectors;
+import tools.jackson.databind.JsonNode;
+import tools.jackson.databind.node.JsonNodeFactory;
+import tools.jackson.databind.node.ObjectNode;
+
+/** The installed kernel, started and spoken to over its sockets as a front end would. */
+final class LiveKernel implements AutoCloseable {
+
+    private static final long LIMIT_SECONDS = 90;
+
+    private final List<Heard> heard = new ArrayList<>();
+    private final Process process;
+    private final ClientSockets sockets;
+
+    private record Heard(Channel channel, Message message) {}
+
+    /**
+     * What became of a cell.
+     *
+     * @param printed its standard output
+     * @param value the plain text of its result, empty if it had none
+     * @param error name, message and traceback of its error as a reader sees them, empty if it had none
+     */
+    record Outcome(String printed, String value, String error) {}
+
+    private LiveKernel(Process process, ConnectionFile connection) {
+        this.process = process;
+        this.sockets = ClientSockets.connect(connection, "tester", (channel, envelope) -> {
+            synchronized (heard) {
+                heard.add(new Heard(channel, envelope.message()));
+                heard.notifyAll();
+            }
+        });
+    }
+
+    /** Starts a kernel that works in a folder, and waits until it answers and can be heard. */
+    static LiveKernel start(Path workingFolder, Path temporary, Map<String, String> environment) throws Exception {
+        ConnectionFile connection = ConnectionFile.create("countwright");
+        Path file = temporary.resolve("connection.json");
+        connection.write(file);
+        LiveKernel kernel = new LiveKernel(process(workingFolder, temporary, file, environment), connection);
+        kernel.await(Channel.SHELL, kernel.send(Channel.SHELL, "kernel_info_request", empty()), message -> true);
+        kernel.sockets.subscribed().get(LIMIT_SECONDS, TimeUnit.SECONDS);
+        return kernel;
+    }
+
+    private static Process process(Path workingFolder, Path temporary, Path file, Map<String, String> environment)
+            throws IOException {
+        ProcessBuilder builder = new ProcessBuilder(
+                        Demo.distribution().resolve("bin/countwright").toString(), "connect", file.toString())
+                .directory(workingFolder.toFile())
+                .redirectErrorStream(true)
+                .redirectOutput(temporary.resolve("kernel.log").toFile());
+        builder.environment().putAll(environment);
+        return builder.start();
+    }
+
+    /** Runs a cell to its end. */
+    Outcome run(String code) throws InterruptedException {
+        return end(begin(code));
+    }
+
+    /** Sends a cell to be run. */
+    Message begin(String code) {
+        return send(Channel.SHELL, "execute_request", empty().put("code", code).put("allow_stdin", false));
+    }
+
+    /** Waits until a cell has printed something. */
+    void awaitOutput(Message cell) throws InterruptedException {
+        await(Channel.IOPUB, cell, message -> message.type().equals("stream"));
+    }
+
+    /** Waits for the end of a cell. */
+    Outcome end(Message cell) throws InterruptedException {
+        await(Channel.SHELL, cell, message -> message.type().equals("execute_reply"));
+        await(
+                Channel.IOPUB,
+                cell,
+                message -> message.type().equals("status")
+                        && message.content()
+                                .path("execution_state")
+                                .asString("")
+                                .equals("idle"));
+        return new Outcome(
+                texts(cell, "stream", content -> content.path("text").asString("")),
+                texts(
+                        cell,
+                        "execute_result",
+                        content -> content.path("data").path("text/plain").asString("")),
+                texts(cell, "error", LiveKernel::error));
+    }
+
+    /** Asks for the running cell to be interrupted, and waits for the answer. */
+    void interrupt() throws InterruptedException {
+        Message request = send(Channel.CONTROL, "interrupt_request", empty());
+        await(Channel.CONTROL, request, message -> message.type().equals("interrupt_reply"));
+    }
+
+    private static String error(JsonNode content) {
+        return content.path("traceback")
+                .valueStream()
+                .map(line -> line.asString("").replaceAll("\u001b\\[[0-9;]*m", ""))
+                .collect(Collectors.joining("\n"));
+    }
+
+    private String texts(Message cell, String type, Function<JsonNode, String> text) {
+        synchronized (heard) {
+            return heard.stream()
+                    .filter(item -> item.channel() == Channel.IOPUB
+                            && item.message().type().equals(type)
+                            && item.message().isCausedBy(cell.header()))
+                    .map(item -> text.apply(item.message().content()))
+                    .collect(Collectors.joining());
+        }
+    }
+
+    private Message send(Channel channel, String type, ObjectNode content) {
+        Message request = sockets.request(type, content);
+        sockets.send(channel, request);
+        return request;
+    }
+
+    private void await(Channel channel, Message cause, Predicate<Message> wanted) throws InterruptedException {
+        long deadline = System.nanoTime() + TimeUnit.SECONDS.toNanos(LIMIT_SECONDS);
+        synchronized (heard) {
+            while (heard.stream()
+                    .noneMatch(item -> item.channel() == channel
+                            && item.message().isCausedBy(cause.header())
+                            && wanted.test(item.message()))) {
+                assertThat(process.isAlive()).as("the kernel lives").isTrue();
+                long left = TimeUnit.NANOSECONDS.toMillis(deadline - System.nanoTime());
+                assertThat(left).as("time left for " + cause.type()).isPositive();
+                heard.wait(Math.min(left, 500));
+            }
+        }
+    }
+
+    private static ObjectNode empty() {
+        return JsonNodeFactory.instance.objectNode();
+    }
+
+    /** Asks the kernel to end, waits until it has, and fails if it does not. */
+    @Override
+    public void close() {
+        List<ProcessHandle> workers = process.descendants().toList();
+        send(Channel.CONTROL, "shutdown_request", empty().put("restart", false));
+        boolean stillRuns = process.onExit()
+                .completeOnTimeout(process, 10, TimeUnit.SECONDS)
+                .join()
+                .isAlive();
+        sockets.close();
+        workers.forEach(ProcessHandle::destroyForcibly);
+        process.destroyForcibly();
+        assertThat(stillRuns)
+                .as("the kernel still runs after being asked to end")
+                .isFalse();
+    }
+}
