@@ -68,7 +68,8 @@ final class ExecutedNotebook {
         return cell.path("outputs").valueStream();
     }
 
-    private static String text(JsonNode text) {
+    /** Returns a text of the notebook, which the format allows to be cut into lines. */
+    static String text(JsonNode text) {
         return text.isArray()
                 ? text.valueStream().map(line -> line.asString("")).collect(Collectors.joining())
                 : text.asString("");

@@ -76,7 +76,7 @@ class TramDoorsKernelTest {
             byte[] png = Base64.getMimeDecoder().decode(data.path("image/png").asString(""));
             assertThat(png).startsWith(0x89, 'P', 'N', 'G').hasSizeGreaterThan(5_000);
             assertThat(data.has("image/svg+xml")).isTrue();
-            assertThat(data.path("text/plain").asString("")).isNotBlank();
+            assertThat(ExecutedNotebook.text(data.path("text/plain"))).isNotBlank();
         });
     }
 

@@ -43,7 +43,8 @@ record Axis(String title, Scale scale, double min, double max, List<Tick> ticks)
         double max = high > low ? high : high + span;
         boolean fromZero = low >= 0 && low < 0.4 * max;
         double air = 0.045 * (max - min);
-        min = fromZero ? 0 : min - air;
+        // Points at or near 0 are not cut at the edge.
+        min = fromZero ? (low < 0.02 * max ? -0.02 * max : 0) : min - air;
         max = high <= 0 && low < 0 && max == 0 ? 0 : max + air;
         return new Axis(title, Scale.LINEAR, min, max, linearTicks(min, max, aboutTicks));
     }

@@ -14,7 +14,7 @@ import java.util.Optional;
  * Charts.rates(faults, "faults", "vehicleKm", "depot").save("depots.svg");
  * }</pre>
  *
- * <p>Rates are given per 1, 1,000, 100,000 or 1,000,000 units of exposure, whichever reads best; the axis says which. All
+ * <p>Rates are given per 1, 1,000, 100,000, 1,000,000 … units of exposure, whichever reads best; the axis says which. All
  * factories throw {@link IllegalArgumentException} where there is nothing to draw, saying why.
  */
 public final class Charts {

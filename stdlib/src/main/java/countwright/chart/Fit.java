@@ -4,6 +4,7 @@ import countwright.design.InteractionTerm;
 import countwright.design.LinearTerm;
 import countwright.design.MainTerm;
 import countwright.design.Term;
+import countwright.fit.Convergence;
 import countwright.model.FittedModel;
 import countwright.model.Prediction;
 import countwright.model.RateRatio;
@@ -29,6 +30,7 @@ import java.util.function.Supplier;
  * @param exposures one for each row used
  * @param means fitted mean counts, one for each row used
  * @param coefficients how many coefficients were estimated
+ * @param warning a sentence if the estimates are not the maximum of the likelihood, else empty
  * @param level the confidence level of intervals
  * @param residuals the residuals of a kind, one for each row used
  * @param predict predictions for a table of scenarios
@@ -44,6 +46,7 @@ record Fit(
         Supplier<double[]> exposures,
         Supplier<double[]> means,
         int coefficients,
+        String warning,
         double level,
         Function<Residual, double[]> residuals,
         Function<Table, List<Prediction>> predict,
@@ -60,6 +63,9 @@ record Fit(
                 model::exposures,
                 model::fittedMeans,
                 model.rowCount() - model.residualDegreesOfFreedom(),
+                model.convergence() instanceof Convergence.Converged
+                        ? ""
+                        : " The fit did not end at a finite maximum: see the notices of the model, and do not use this.",
                 model.level(),
                 model::residuals,
                 scenarios -> model.predict(scenarios).at(model.level()).rows(),

@@ -95,7 +95,7 @@ final class FittedChart {
                 .subtitle(capitalised(span(unit, curve)))
                 .caption(caption(pools.size(), single));
         Figure figure = withCurve(empty, unit, curve)
-                .layer(Layer.points(pointName(single), Ink.OBSERVED, x, unit.scaled(observed)));
+                .layer(Layer.points(pointName(pools.size() == values.length), Ink.OBSERVED, x, unit.scaled(observed)));
         String summary = "Fitted " + unit.label() + ": " + span(unit, curve) + "." + scenarios.sentence();
         return Chart.of(figure, summary, numbers(unit).toString());
     }
@@ -140,9 +140,9 @@ final class FittedChart {
         return observed;
     }
 
-    private String pointName(boolean single) {
+    private String pointName(boolean oneRowEach) {
         String what = fit.exposure().isEmpty() ? "count" : "rate";
-        return "observed " + (single ? what : "mean " + what) + (adjusted ? ", adjusted" : "");
+        return "observed " + (oneRowEach ? what : "mean " + what) + (adjusted ? ", adjusted" : "");
     }
 
     private String span(RateUnit unit, Curve curve) {
@@ -166,7 +166,8 @@ final class FittedChart {
         return scenarios.sentence().strip()
                 + (scenarios.sentence().isEmpty() ? "" : " ")
                 + points
-                + (adjusted ? ", at the fitted rate times observed / fitted events." : ".");
+                + (adjusted ? ", at the fitted rate times observed / fitted events." : ".")
+                + fit.warning();
     }
 
     private Grid numbers(RateUnit unit) {

@@ -96,9 +96,14 @@ final class FittedLevelsChart {
                         + unit.text(top.fitted().rate()) + " in " + top.name())
                 .caption("Highest fitted " + what + " on top." + scenarios.sentence()
                         + (adjusted
-                                ? " Observed " + what + "s are all events over all exposure, not adjusted for them."
+                                ? " Observed " + what + "s are "
+                                        + (fit.exposure().isEmpty()
+                                                ? "averages of all rows"
+                                                : "all events over all exposure")
+                                        + ", not adjusted for them."
                                 : "")
-                        + left)
+                        + left
+                        + fit.warning())
                 .rows("fitted (" + fit.levelText() + " interval)", rows)
                 .layer(Layer.barsAcross(fit.levelText() + " interval of the mean", Ink.FITTED, lower, upper, fittedY))
                 .layer(Layer.points(

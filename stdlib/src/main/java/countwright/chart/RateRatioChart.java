@@ -20,7 +20,9 @@ final class RateRatioChart {
                 .toList();
         if (drawable.isEmpty()) {
             throw new IllegalArgumentException(
-                    "there is nothing to draw: the model has no rate ratio that is a finite number. Add a term with on(...).");
+                    fit.rateRatios().isEmpty()
+                            ? "there is nothing to draw: the model has a baseline only, and so no rate ratio. Add a term with on(...)."
+                            : "there is nothing to draw: no rate ratio of the model is a finite number. Look at notices() of the model for the reason.");
         }
         List<RateRatio> shown = drawable.subList(0, Math.min(RateChart.MOST_ROWS, drawable.size()));
         double least = shown.stream().mapToDouble(RateRatio::ratio).min().orElseThrow();
@@ -75,7 +77,8 @@ final class RateRatioChart {
                         + (runsOff ? " Some intervals go beyond the axis; their ends are in the numbers." : "")
                         + (left == 0
                                 ? ""
-                                : " " + Numbers.count(left, "ratio") + (left == 1 ? " is" : " are") + " not shown."))
+                                : " " + Numbers.count(left, "ratio") + (left == 1 ? " is" : " are") + " not shown.")
+                        + fit.warning())
                 .rows("rate ratio (" + fit.levelText() + " interval)", rows)
                 .guide(Figure.Guide.up("no difference", Ink.REFERENCE, rowAxis, 1))
                 .layer(Layer.barsAcross(fit.levelText() + " interval", Ink.FITTED, lower, upper, y))

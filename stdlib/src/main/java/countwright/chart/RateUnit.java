@@ -3,12 +3,12 @@ package countwright.chart;
 import countwright.show.Numbers;
 
 /**
- * The amount of exposure rates are given for, such that they are easy to read: 1, or a thousand, a hundred thousand or a
- * million where the rates would otherwise be small fractions.
+ * The amount of exposure rates are given for, such that they are easy to read: 1, or a thousand, a hundred thousand, a
+ * million and so on, as in the tables of a model, where the rates would otherwise be small fractions.
  */
 record RateUnit(String countName, String exposureName, double factor) {
 
-    private static final double[] FACTORS = {1, 1_000, 100_000, 1_000_000};
+    private static final double[] FACTORS = {1, 1e3, 1e5, 1e6, 1e9, 1e12};
     private static final double LARGE_ENOUGH = 0.1;
 
     /** Returns the unit for rates of which the largest is given; an empty exposure name means mean counts. */

@@ -56,7 +56,7 @@ final class ResidualChart {
         String title = Character.toUpperCase(name.charAt(0)) + name.substring(1) + "s against fitted means";
         Figure figure = Figure.titled(title, xAxis, yAxis)
                 .subtitle(share + "; about 5% would if the model held and counts were not too small")
-                .caption(caption(x.length, drawn.length, means.length, medianOf(x)))
+                .caption((caption(x.length, drawn.length, means.length, medianOf(x)) + fit.warning()).strip())
                 .guide(Figure.Guide.across("", Ink.REFERENCE, xAxis, 0))
                 .guide(Figure.Guide.across("\u00b12", Ink.LIMIT, xAxis, 2))
                 .guide(Figure.Guide.across("", Ink.LIMIT, xAxis, -2))

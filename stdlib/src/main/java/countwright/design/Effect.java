@@ -49,15 +49,26 @@ sealed interface Effect {
     /** A column of numbers. */
     record Linear(String column) implements Effect {
 
+        private static final double TINY = 1e-50;
+
         static Linear learn(String name, Table table) {
             Column column = table.column(name);
             if (!(column instanceof NumberColumn numbers)) {
                 throw notNumbers(column, table.source());
             }
+            double largest = 0;
+            boolean varies = false;
             for (int row = 0; row < numbers.size(); row++) {
-                if (numbers.value(row) != numbers.value(0)) {
-                    return new Linear(name);
-                }
+                largest = Math.max(largest, Math.abs(numbers.value(row)));
+                varies |= numbers.value(row) != numbers.value(0);
+            }
+            if (varies && largest < TINY) {
+                throw new IllegalArgumentException(
+                        "linear(\"" + name + "\") has no value above 1e-50 in size, and squares of"
+                                + " such numbers vanish. Give the column in another unit.");
+            }
+            if (varies) {
+                return new Linear(name);
             }
             throw new IllegalArgumentException("linear(\"" + name + "\") has no effect to estimate: every row used is "
                     + numbers.text(0) + ". Leave the term out, or use rows in which it varies.");

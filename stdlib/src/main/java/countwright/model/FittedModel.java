@@ -9,6 +9,7 @@ import countwright.fit.RowFits;
 import countwright.show.Displayable;
 import countwright.show.Grid;
 import countwright.show.MimeBundle;
+import countwright.show.NearNames;
 import countwright.show.Numbers;
 import countwright.table.Table;
 import java.util.ArrayList;
@@ -154,8 +155,8 @@ public final class FittedModel implements Displayable {
         return all.stream()
                 .filter(coefficient -> coefficient.name().equals(name))
                 .findFirst()
-                .orElseThrow(() -> new IllegalArgumentException("no coefficient '" + name + "'; there are "
-                        + String.join("; ", all.stream().map(Coefficient::name).toList()) + "."));
+                .orElseThrow(() ->
+                        noCoefficient(name, all.stream().map(Coefficient::name).toList()));
     }
 
     /** Returns the log-scale coefficients with their standard errors, to be shown. */
@@ -173,6 +174,9 @@ public final class FittedModel implements Displayable {
                     Numbers.significant(c.standardError(), 2),
                     Numbers.fixed(c.z(), 2),
                     Numbers.pValue(Interval.twoSidedP(c.z())));
+        }
+        for (String warning : Notices.ofConvergence(fit)) {
+            grid = grid.note(warning);
         }
         return grid;
     }
@@ -320,6 +324,16 @@ public final class FittedModel implements Displayable {
 
     Fit fit() {
         return fit;
+    }
+
+    private static IllegalArgumentException noCoefficient(String name, List<String> names) {
+        String start = names.stream()
+                .filter(full -> full.startsWith(name + " "))
+                .findFirst()
+                .map(full -> "Did you mean '" + full + "'?")
+                .orElseGet(() -> NearNames.question(name, names));
+        return new IllegalArgumentException("there is no coefficient '" + name + "'. "
+                + (start.isEmpty() ? "" : start + " ") + "The coefficients are " + NearNames.list(names) + ".");
     }
 
     private FitSummary summary() {

@@ -1,5 +1,6 @@
 package countwright.model;
 
+import countwright.show.Numbers;
 import org.apache.commons.math3.distribution.NormalDistribution;
 import org.apache.commons.math3.special.Erf;
 
@@ -17,7 +18,8 @@ final class Interval {
      */
     static double halfWidth(double level) {
         if (!(level > 0 && level < 1)) {
-            String percent = level > 1 && level < 100 ? " For " + level + "% write " + level / 100 + "." : "";
+            String percent =
+                    level > 1 && level < 100 ? " For " + Numbers.compact(level) + "% write " + level / 100 + "." : "";
             throw new IllegalArgumentException(
                     "a confidence level lies above 0 and below 1, but this one is " + level + "." + percent);
         }

@@ -67,7 +67,7 @@ final class ModelReport {
             return grid.row(ratio.name(), "not determined", Numbers.ABSENT, Numbers.ABSENT);
         }
         double standardError = ratio.ratio() * model.fit().standardError(column);
-        Rounded rounded = Rounded.of(ratio.ratio(), standardError, ratio.lower(), ratio.upper());
+        Rounded rounded = Rounded.ofRatio(ratio.ratio(), standardError, ratio.lower(), ratio.upper());
         return grid.row(ratio.name(), rounded.estimate(), rounded.interval(), Numbers.pValue(ratio.pValue()));
     }
 
@@ -104,9 +104,9 @@ final class ModelReport {
         int df = model.residualDegreesOfFreedom();
         String dispersion = df > 0 ? Numbers.significant(model.dispersion(), 3) : Numbers.ABSENT;
         grid = grid.row("residual degrees of freedom", Numbers.count(df))
-                .row("deviance", Numbers.significant(model.deviance(), 4))
-                .row("deviance of the baseline alone", Numbers.significant(model.nullDeviance(), 4))
-                .row("Pearson chi-square", Numbers.significant(model.pearsonChiSquare(), 4))
+                .row("deviance", misfit(model.deviance()))
+                .row("deviance of the baseline alone", misfit(model.nullDeviance()))
+                .row("Pearson chi-square", misfit(model.pearsonChiSquare()))
                 .row("dispersion (Pearson / residual df)", dispersion)
                 .row("log-likelihood", Numbers.fixed(model.logLikelihood(), 2))
                 .row("AIC", Numbers.fixed(model.aic(), 2))
@@ -115,6 +115,11 @@ final class ModelReport {
             grid = grid.note(notice);
         }
         return grid;
+    }
+
+    /** Returns a sum of squared residuals as text; below a billionth it is rounding, and the fit is exact. */
+    private static String misfit(double value) {
+        return Numbers.significant(Math.abs(value) < 1e-9 ? 0 : value, 4);
     }
 
     private String title() {

@@ -1,5 +1,6 @@
 package countwright.model;
 
+import countwright.fit.Convergence;
 import countwright.fit.RowFits;
 import countwright.fit.RowSource;
 import countwright.show.NearNames;
@@ -30,15 +31,23 @@ final class Predicting {
         RowSource rows = model.fit().design().rows(scenarios, row -> 0, Fitting.offset(spec, scenarios));
         RowFits fits = RowFits.of(rows, model.fit().estimate());
         List<Predictions.LogRate> logRates = new ArrayList<>();
+        boolean settled = model.convergence() instanceof Convergence.Converged;
         boolean doubtful = false;
         boolean vanishing = false;
         for (int row = 0; row < fits.size(); row++) {
             int at = row;
             double exposure = exposures.map(column -> column.value(at)).orElse(1.0);
+            boolean vanishes = Double.isInfinite(fits.variance(row));
+            if (!vanishes && settled && !isInRange(fits.mean(row) / exposure)) {
+                throw new IllegalArgumentException("row " + (row + 1) + " of " + scenarios.source()
+                        + " is so far from the rows fitted that its rate is too "
+                        + (fits.mean(row) > 1 ? "large" : "small")
+                        + " for a number. Correct its covariates, or predict nearer to what was observed.");
+            }
             logRates.add(new Predictions.LogRate(
                     exposure, Math.log(fits.mean(row) / exposure), Math.sqrt(fits.variance(row))));
             doubtful |= fits.isDoubtful(row);
-            vanishing |= fits.mean(row) == 0;
+            vanishing |= vanishes;
         }
         return new Predictions(spec, scenarios, logRates, notes(model, scenarios, doubtful, vanishing), model.level());
     }
@@ -50,8 +59,7 @@ final class Predicting {
                 .exposure()
                 .filter(name -> !scenarios.has(name))
                 .ifPresent(name -> notes.add("The table has no column '" + name
-                        + "', so there are rates but no expected counts; the values of the rates are per 1 " + name
-                        + "."));
+                        + "', so there are rates but no expected counts; in code, rates are per 1 " + name + "."));
         if (doubtful) {
             notes.add(
                     "Some rows have a value for a coefficient that was left out of the fit; they are predicted as if what"
@@ -65,6 +73,10 @@ final class Predicting {
         notes.addAll(Notices.ofConvergence(model.fit()));
         notes.addAll(Notices.ofDispersion(model));
         return notes;
+    }
+
+    private static boolean isInRange(double rate) {
+        return rate >= Double.MIN_NORMAL && rate <= Double.MAX_VALUE;
     }
 
     private static void checkColumns(CountModel spec, Table scenarios) {

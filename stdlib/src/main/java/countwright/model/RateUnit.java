@@ -16,9 +16,9 @@ record RateUnit(double amount, Optional<String> exposure) {
 
     private static final double[] AMOUNTS = {1, 1e3, 1e5, 1e6, 1e9, 1e12};
 
-    /** Returns the smallest unit for which a rate reaches 1, or a single one if the rate is at least 0.01 as it is. */
+    /** Returns the smallest unit for which a rate reaches 1, or a single one if the rate is at least 0.1 as it is. */
     static RateUnit fitting(double rate, Optional<String> exposure) {
-        if (exposure.isEmpty() || !(rate > 0) || rate >= 0.01) {
+        if (exposure.isEmpty() || !(rate > 0) || rate >= 0.1) {
             return new RateUnit(1, exposure);
         }
         double amount = Arrays.stream(AMOUNTS)

@@ -21,6 +21,12 @@ import java.util.function.DoublePredicate;
  */
 final class UsedRows {
 
+    /** Beyond these, products of three such numbers and their sums over rows leave the range of a double. */
+    private static final double LARGEST = 1e50;
+
+    private static final double LARGEST_EXPOSURE = 1e100;
+    private static final double LARGEST_OFFSET = 230;
+
     private final Table table;
     private final Optional<String> leftOut;
 
@@ -63,11 +69,23 @@ final class UsedRows {
                 "but exposure must be positive and finite. Correct the row, or leave it out with table.where(row -> row.number"
                         + "(\"" + column.name()
                         + "\") > 0). If the column is on the log scale, pass it to offset(…)."));
-        offsets.ifPresent(column ->
-                checks.all(column, Double::isFinite, "but an offset must be finite; it is on the log scale."));
+        exposures.ifPresent(column -> checks.all(
+                column,
+                e -> e >= 1 / LARGEST_EXPOSURE && e <= LARGEST_EXPOSURE,
+                "but exposures lie from 1e-100 to 1e100. Give them in another unit."));
+        offsets.ifPresent(column -> checks.all(
+                column,
+                o -> Math.abs(o) <= LARGEST_OFFSET,
+                "but an offset is on the log scale and lies from -230 to 230. If the column holds amounts, pass it to"
+                        + " exposure(…)."));
         for (String name : linearColumns(model.terms())) {
             if (table.column(name) instanceof NumberColumn numbers) {
-                checks.all(numbers, Double::isFinite, "but linear(\"" + name + "\") needs finite numbers.");
+                checks.all(
+                        numbers,
+                        x -> Math.abs(x) <= LARGEST,
+                        "but linear(\"" + name
+                                + "\") needs finite numbers of at most 1e50 in size. Correct or leave out the"
+                                + " row, or give the column in another unit.");
             }
         }
         return keeping(table, complete, needed);
@@ -126,6 +144,8 @@ final class UsedRows {
         names.add(model.response());
         model.exposure().ifPresent(names::add);
         model.offset().ifPresent(names::add);
+        model.exposure().ifPresent(name -> refuseResponse(model, name, "exposure"));
+        model.offset().ifPresent(name -> refuseResponse(model, name, "offset"));
         for (Term term : model.terms()) {
             names.addAll(term.columns());
             if (term.columns().contains(model.response())) {
@@ -134,6 +154,13 @@ final class UsedRows {
             }
         }
         return names.stream().map(table::column).toList();
+    }
+
+    private static void refuseResponse(CountModel model, String name, String role) {
+        if (name.equals(model.response())) {
+            throw new IllegalArgumentException("'" + name + "' is the response and cannot be its own " + role
+                    + "; name the column of the amounts over which the counts were collected.");
+        }
     }
 
     private static Set<String> linearColumns(List<Term> terms) {

@@ -260,4 +260,26 @@ class ChartsTest {
                             ratio -> assertThat(text).contains(ratio.name()).contains(Numbers.ratio(ratio.ratio())));
         }
     }
+
+    @Test
+    void fitted_noFiniteMaximum_saysNotToUseIt() {
+        FittedModel model = CountModel.of("y")
+                .on(linear("x"))
+                .fit(Table.of(NumberColumn.of("y", 0, 0, 0, 4, 2, 5), NumberColumn.of("x", 1, 2, 3, 5, 5, 5)));
+        assertThat(Charts.fitted(model, "x").display().plainText()).contains("do not use this");
+        assertThat(Charts.residuals(model).display().plainText()).contains("do not use this");
+        assertThatIllegalArgumentException()
+                .isThrownBy(() -> Charts.rateRatios(model))
+                .withMessageContaining("notices()");
+    }
+
+    @Test
+    void fitted_severalRowsAtAValue_areCalledAMean() {
+        FittedModel model = CountModel.of("y")
+                .on(linear("x"))
+                .fit(Table.of(NumberColumn.of("y", 1, 2, 3, 4), NumberColumn.of("x", 0, 0, 1, 1)));
+        assertThat(Charts.fitted(model, "x").figure().layers())
+                .extracting(Layer::name)
+                .contains("observed mean count");
+    }
 }

@@ -69,6 +69,7 @@ final class SyntheticFit {
                 () -> km,
                 () -> means,
                 1 + depots.size(),
+                "",
                 0.95,
                 kind -> residuals(kind, counts, means),
                 scenarios -> predict(scenarios, depots),

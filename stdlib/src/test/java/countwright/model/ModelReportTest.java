@@ -8,6 +8,7 @@ import countwright.show.MimeBundle;
 import countwright.table.NumberColumn;
 import countwright.table.Table;
 import countwright.table.TextColumn;
+import java.util.Optional;
 import org.junit.jupiter.api.Test;
 
 class ModelReportTest {
@@ -63,5 +64,28 @@ class ModelReportTest {
         assertThat(Rounded.of(1.0259, 0.00206, 1.0218, 1.0299)).isEqualTo(new Rounded("1.0259", "1.0218 to 1.0299"));
         assertThat(Rounded.of(0, Double.POSITIVE_INFINITY, 0, Double.POSITIVE_INFINITY))
                 .isEqualTo(new Rounded("0", "0 to ∞"));
+    }
+
+    @Test
+    void rounded_endNearOne_staysOnItsSide() {
+        assertThat(Rounded.ofRatio(1.57, 0.366, 0.9957, 2.485)).isEqualTo(new Rounded("1.57", "0.996 to 2.485"));
+        assertThat(Rounded.ofRatio(2, 0.35, 1.4, 2.8)).isEqualTo(new Rounded("2.00", "1.40 to 2.80"));
+    }
+
+    @Test
+    void rounded_errorAboveTheEstimate_givesEachEndItsOwnDigits() {
+        assertThat(Rounded.of(0.00005, 0.0007, 1e-9, 290_455_229))
+                .isEqualTo(new Rounded("0.000050", "1.0e-9 to 290,455,229"));
+    }
+
+    @Test
+    void display_exactFit_showsNoRoundingErrorAsDeviance() {
+        Table table = Table.of(NumberColumn.of("y", 1, 5, 3), TextColumn.of("g", "a", "b", "c"));
+        assertThat(CountModel.of("y").on(levels("g")).fit(table).toString()).doesNotContain("e-");
+    }
+
+    @Test
+    void display_rateBelowATenth_hasTheUnitOfTheCharts() {
+        assertThat(RateUnit.fitting(0.05, Optional.of("km")).label("baseline")).isEqualTo("baseline rate per 1,000 km");
     }
 }

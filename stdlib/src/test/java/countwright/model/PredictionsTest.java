@@ -102,4 +102,20 @@ class PredictionsTest {
         assertThat(bundle.get(MimeBundle.HTML))
                 .hasValueSatisfying(html -> assertThat(html).contains("expected deaths"));
     }
+
+    @Test
+    void predict_farBeyondWhatANumberHolds_isRefusedByRow() {
+        assertThatThrownBy(() -> model.predict(
+                        Table.of(NumberColumn.of("agecat", 1, 1e4), TextColumn.of("smoker", "no", "yes"))))
+                .isInstanceOf(IllegalArgumentException.class)
+                .hasMessageContaining("row 2 of table is so far from the rows fitted")
+                .hasMessageContaining("too small");
+    }
+
+    @Test
+    void coefficient_nameOfTheColumnOnly_isHelped() {
+        assertThatThrownBy(() -> model.coefficient("agecat"))
+                .isInstanceOf(IllegalArgumentException.class)
+                .hasMessageContaining("Did you mean 'agecat (per 1)'?");
+    }
 }

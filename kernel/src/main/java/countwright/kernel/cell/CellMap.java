@@ -20,6 +20,11 @@ final class CellMap {
         origins.put(snippet.id(), new Origin(cell, cell.placeOf(start).line()));
     }
 
+    /** Returns the cell that a snippet came from. */
+    Optional<CellText> cellOf(Snippet snippet) {
+        return Optional.ofNullable(origins.get(snippet.id())).map(Origin::cell);
+    }
+
     /** Returns where a stack frame is in the user's cells; JShell names the file of such a frame after its snippet. */
     Optional<Location> locate(StackTraceElement frame) {
         String file = frame.getFileName();

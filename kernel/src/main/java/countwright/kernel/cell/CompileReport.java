@@ -45,7 +45,9 @@ final class CompileReport {
             lines.add(explanation);
         }
         if (lines.isEmpty()) {
-            first = unresolved(snippet).orElse("this piece of code cannot be compiled.");
+            first = snippet instanceof DeclarationSnippet declaration
+                    ? "'" + declaration.name() + "' " + whyUnusable(declaration)
+                    : "This piece of code cannot be compiled.";
             Place place = cell.placeOf(piece.start());
             lines.add(header(cell, place));
             lines.add(first);
@@ -53,17 +55,23 @@ final class CompileReport {
         return new CellOutcome.Failure("CompileError", first.lines().findFirst().orElse(first), lines);
     }
 
-    /** Says what a declaration waits for, if it does. */
-    Optional<String> unresolved(Snippet snippet) {
-        if (!(snippet instanceof DeclarationSnippet declaration)) {
-            return Optional.empty();
-        }
+    /** Says, after the name of a declaration, why it cannot be used as things are; a sentence without its subject. */
+    String whyUnusable(DeclarationSnippet declaration) {
         List<String> waitsFor = shell.unresolvedDependencies(declaration).toList();
-        if (waitsFor.isEmpty()) {
-            return Optional.empty();
+        if (!waitsFor.isEmpty()) {
+            return "refers to " + String.join(", ", waitsFor) + ", not declared so far.";
         }
-        return Optional.of(
-                "'" + declaration.name() + "' refers to " + String.join(", ", waitsFor) + ", not declared so far.");
+        if (declaration.kind() == Snippet.Kind.VAR) {
+            return "has lost its value, because what it depends on was declared anew.";
+        }
+        return "does not compile with what is declared now"
+                + shell.diagnostics(declaration)
+                        .filter(Diag::isError)
+                        .findFirst()
+                        .map(error -> ": "
+                                + UserNames.of(error.getMessage(Locale.ENGLISH)).strip())
+                        .orElse("")
+                + ".";
     }
 
     private static boolean isSyntax(Diag error) {
@@ -93,7 +101,7 @@ final class CompileReport {
 
     private String explain(Diag error, CellSplitter.Piece piece) {
         String code = error.getCode();
-        String message = String.valueOf(error.getMessage(Locale.ENGLISH));
+        String message = UserNames.of(String.valueOf(error.getMessage(Locale.ENGLISH)));
         if (code.startsWith("compiler.err.cant.resolve")) {
             return explainUnknown(message);
         }
@@ -124,7 +132,20 @@ final class CompileReport {
         if (member) {
             return text;
         }
-        String question = NearNames.question(name, declaredNames());
+        Optional<DeclarationSnippet> unusable = shell.snippets()
+                .filter(snippet -> shell.status(snippet) == Snippet.Status.RECOVERABLE_NOT_DEFINED)
+                .filter(DeclarationSnippet.class::isInstance)
+                .map(DeclarationSnippet.class::cast)
+                .filter(declared -> declared.name().equals(name))
+                .findFirst();
+        if (unusable.isPresent()) {
+            return "'" + name + "' was declared, but it " + whyUnusable(unusable.get())
+                    + "\n"
+                    + (unusable.get().kind() == Snippet.Kind.VAR
+                            ? "Run the cell that sets it again."
+                            : "Correct it and run it again.");
+        }
+        String question = NearNames.question(name, namesOtherThan(name));
         return text
                 + "\n"
                 + (question.isEmpty()
@@ -136,11 +157,12 @@ final class CompileReport {
         return owner + " has no such " + kind + ".";
     }
 
-    private Collection<String> declaredNames() {
+    private Collection<String> namesOtherThan(String unknown) {
         Stream<String> declared = shell.snippets()
                 .filter(snippet -> shell.status(snippet).isActive())
                 .filter(DeclarationSnippet.class::isInstance)
-                .map(snippet -> ((DeclarationSnippet) snippet).name());
+                .map(snippet -> ((DeclarationSnippet) snippet).name())
+                .filter(name -> !name.equals(unknown));
         Stream<String> imported = shell.imports().map(ImportSnippet::name);
         return Stream.concat(declared, imported).distinct().toList();
     }

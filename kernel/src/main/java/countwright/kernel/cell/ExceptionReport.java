@@ -4,7 +4,6 @@ import countwright.kernel.cell.CellMap.Location;
 import java.util.ArrayList;
 import java.util.List;
 import java.util.Optional;
-import java.util.regex.Pattern;
 import jdk.jshell.EvalException;
 import jdk.jshell.JShellException;
 import jdk.jshell.UnresolvedReferenceException;
@@ -16,24 +15,26 @@ final class ExceptionReport {
     private static final int LONGEST_LINE = 100;
     private static final String TOP_LEVEL = "do_it$";
 
+    /** The method in which JShell computes a variable's first value, called from the top level on the same line. */
+    private static final String INITIALISER = "do_it$Aux";
+
     /** Exceptions of these packages carry a message of ours that says all; their class name adds nothing. */
     private static final String OUR_LIBRARY = "countwright.";
 
-    /** The class that JShell puts around each snippet; Java names it in some messages, such as that of a null pointer. */
-    private static final Pattern WRAPPER = Pattern.compile("REPL\\.\\$JShell\\$\\w+\\.");
-
     private final CellMap cells;
+    private final CompileReport compileReport;
 
-    ExceptionReport(CellMap cells) {
+    ExceptionReport(CellMap cells, CompileReport compileReport) {
         this.cells = cells;
+        this.compileReport = compileReport;
     }
 
     CellOutcome.Failure of(JShellException exception) {
         List<String> lines = new ArrayList<>();
         if (exception instanceof UnresolvedReferenceException unresolved) {
             String name = unresolved.getSnippet().name();
-            String message = "'" + name + "' cannot be run yet: it refers to something that is not declared. "
-                    + "Declare what it waits for, then run this cell again.";
+            String message = "'" + name + "' cannot be run: it " + compileReport.whyUnusable(unresolved.getSnippet())
+                    + " Put that right, then run this cell again.";
             lines.add(message);
             addPlaces(unresolved.getStackTrace(), lines);
             return new CellOutcome.Failure("Undeclared", message, lines);
@@ -89,7 +90,7 @@ final class ExceptionReport {
         String last = "";
         for (StackTraceElement frame : frames) {
             Optional<Location> location = cells.locate(frame);
-            if (location.isEmpty()) {
+            if (location.isEmpty() || frame.getMethodName().startsWith(INITIALISER)) {
                 continue;
             }
             String place = describe(location.get(), frame.getMethodName());
@@ -126,9 +127,7 @@ final class ExceptionReport {
 
     /** Returns the message without the classes that JShell wraps around the names of a cell. */
     private static Optional<String> messageOf(EvalException thrown) {
-        return Optional.ofNullable(thrown.getMessage())
-                .map(message -> WRAPPER.matcher(message).replaceAll(""))
-                .filter(message -> !message.isBlank());
+        return Optional.ofNullable(thrown.getMessage()).map(UserNames::of).filter(message -> !message.isBlank());
     }
 
     private static String simpleName(String className) {

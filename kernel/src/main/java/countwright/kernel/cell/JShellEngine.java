@@ -2,6 +2,7 @@ package countwright.kernel.cell;
 
 import countwright.kernel.worker.WorkerSettings;
 import countwright.show.MimeBundle;
+import countwright.show.Stage;
 import java.time.Duration;
 import java.util.LinkedHashMap;
 import java.util.List;
@@ -15,12 +16,17 @@ import java.util.concurrent.atomic.AtomicBoolean;
 public final class JShellEngine implements CellEngine {
 
     private final WorkerSettings settings;
-    private final Object replacing = new Object();
-    private volatile CompletableFuture<JavaSession> session;
     private final AtomicBoolean stopRequested = new AtomicBoolean();
+
+    /** Guards what decides which session the next cell runs in, and which cell tells of a loss. */
+    private final Object turns = new Object();
+
+    // Written under the lock, read without it where any recent value will do.
+    private volatile CompletableFuture<JavaSession> session;
     private volatile boolean running;
-    private volatile Optional<String> lossToReport = Optional.empty();
-    private volatile boolean closed;
+    private Optional<String> lossToReport = Optional.empty();
+    private boolean closed;
+    private CellListener lastListener = new Unheard();
 
     private JShellEngine(WorkerSettings settings) {
         this.settings = settings;
@@ -34,49 +40,57 @@ public final class JShellEngine implements CellEngine {
 
     @Override
     public CellOutcome evaluate(String code, int executionCount, CellListener listener) {
+        lastListener = listener;
         return run(new CellText("cell [" + executionCount + "]", code), listener);
     }
 
     @Override
     public Map<String, CellOutcome> evaluateExpressions(Map<String, String> expressions) {
+        CellListener listener = new WithoutQuestions(lastListener);
         Map<String, CellOutcome> outcomes = new LinkedHashMap<>();
         expressions.forEach((name, code) ->
-                outcomes.put(name, run(new CellText("expression '" + name + "'", code), new Unheard())));
+                outcomes.put(name, run(new CellText("expression '" + name + "'", code), listener)));
         return outcomes;
     }
 
     private CellOutcome run(CellText cell, CellListener listener) {
-        stopRequested.set(false);
-        running = true;
+        CompletableFuture<JavaSession> mine;
+        synchronized (turns) {
+            stopRequested.set(false);
+            running = true;
+            mine = session;
+            lossToReport.ifPresent(how -> listener.output(
+                    CellListener.Stream.ERR,
+                    "Note: the worker was lost between two cells (" + how
+                            + "), and what earlier cells declared with it. This cell runs in a fresh one.\n"));
+            lossToReport = Optional.empty();
+        }
+        boolean lossTold = false;
         try {
-            return runInSession(cell, listener);
+            CellOutcome outcome = mine.join().run(cell, listener, stopRequested::get);
+            lossTold = outcome instanceof CellOutcome.Failure failure
+                    && failure.name().equals(WorkerExecution.LOST);
+            return outcome;
+        } catch (CompletionException e) {
+            lossTold = true;
+            Throwable cause = e.getCause() == null ? e : e.getCause();
+            String message = "the worker that runs cells could not be started: " + cause.getMessage();
+            return new CellOutcome.Failure(WorkerExecution.LOST, message, List.of(message));
         } finally {
-            running = false;
+            endTurn(mine, lossTold);
         }
     }
 
-    private CellOutcome runInSession(CellText cell, CellListener listener) {
-        CompletableFuture<JavaSession> starting = session;
-        JavaSession current;
-        try {
-            current = starting.join();
-        } catch (CompletionException e) {
-            replace(starting);
-            Throwable cause = e.getCause() == null ? e : e.getCause();
-            String message = "the worker that runs cells could not be started: " + cause.getMessage();
-            return new CellOutcome.Failure("WorkerLost", message, List.of(message));
+    private void endTurn(CompletableFuture<JavaSession> mine, boolean lossTold) {
+        synchronized (turns) {
+            running = false;
+            Optional<String> loss = mine.isCompletedExceptionally()
+                    ? Optional.of("it could not be started")
+                    : mine.join().loss();
+            if (loss.isPresent()) {
+                replace(mine, lossTold ? Optional.empty() : loss);
+            }
         }
-        lossToReport.ifPresent(how -> listener.output(
-                CellListener.Stream.ERR,
-                "Note: the worker was lost between two cells (" + how
-                        + "), and what earlier cells declared with it. This cell runs in a fresh one.\n"));
-        lossToReport = Optional.empty();
-        CellOutcome outcome = current.run(cell, listener, stopRequested::get);
-        if (current.loss().isPresent()) {
-            replace(starting);
-            current.close(Duration.ZERO);
-        }
-        return outcome;
     }
 
     @Override
@@ -108,8 +122,11 @@ public final class JShellEngine implements CellEngine {
 
     @Override
     public void close(Duration patience) {
-        closed = true;
-        CompletableFuture<JavaSession> current = session;
+        CompletableFuture<JavaSession> current;
+        synchronized (turns) {
+            closed = true;
+            current = session;
+        }
         if (current.isDone() && !current.isCompletedExceptionally()) {
             current.join().close(patience);
         } else {
@@ -139,24 +156,58 @@ public final class JShellEngine implements CellEngine {
         return starting;
     }
 
-    /** A worker lost while a cell runs is reported by that cell; one lost in between, by the next. */
+    /** A worker lost while a cell runs is told of by that cell and replaced when it ends; one lost in between, at once. */
     private void replaceIdle(CompletableFuture<JavaSession> lost, JavaSession old) {
-        if (!running && !closed && session == lost) {
-            lossToReport = old.loss();
-            replace(lost);
-            old.close(Duration.ZERO);
-        }
-    }
-
-    private void replace(CompletableFuture<JavaSession> lost) {
-        synchronized (replacing) {
-            if (!closed && session == lost) {
-                session = startSession();
+        synchronized (turns) {
+            if (!running) {
+                replace(lost, old.loss());
             }
         }
     }
 
-    /** Hears nothing: expressions asked for by a front end leave no output. */
+    private void replace(CompletableFuture<JavaSession> lost, Optional<String> toReport) {
+        synchronized (turns) {
+            if (closed || session != lost) {
+                return;
+            }
+            lossToReport = toReport;
+            session = startSession();
+        }
+        if (!lost.isCompletedExceptionally()) {
+            lost.join().close(Duration.ZERO);
+        }
+    }
+
+    /** Passes everything on but questions: an expression is evaluated for a front end, not for a person. */
+    private record WithoutQuestions(CellListener listener) implements CellListener {
+
+        @Override
+        public void output(Stream stream, String text) {
+            listener.output(stream, text);
+        }
+
+        @Override
+        public void display(MimeBundle bundle, Optional<String> displayId) {
+            listener.display(bundle, displayId);
+        }
+
+        @Override
+        public void update(MimeBundle bundle, String displayId) {
+            listener.update(bundle, displayId);
+        }
+
+        @Override
+        public void clear(Stage.Clearing when) {
+            listener.clear(when);
+        }
+
+        @Override
+        public void ask(InputRequest request) {
+            request.refuse("an expression evaluated for the front end cannot ask for input");
+        }
+    }
+
+    /** Hears nothing: stands in until there is a cell. */
     private static final class Unheard implements CellListener {
 
         @Override
@@ -169,11 +220,11 @@ public final class JShellEngine implements CellEngine {
         public void update(MimeBundle bundle, String displayId) {}
 
         @Override
-        public void clear(countwright.show.Stage.Clearing when) {}
+        public void clear(Stage.Clearing when) {}
 
         @Override
         public void ask(InputRequest request) {
-            request.refuse("an expression evaluated for the front end cannot ask for input");
+            request.refuse("no cell has run yet");
         }
     }
 }

@@ -1,6 +1,5 @@
 package countwright.kernel.cell;
 
-import countwright.kernel.cell.CellSplitter.Piece;
 import countwright.kernel.worker.Worker;
 import countwright.kernel.worker.WorkerSettings;
 import countwright.show.MimeBundle;
@@ -8,14 +7,12 @@ import countwright.worker.Frame;
 import java.io.IOException;
 import java.io.UncheckedIOException;
 import java.time.Duration;
-import java.util.List;
 import java.util.Map;
 import java.util.Optional;
 import java.util.concurrent.CompletableFuture;
 import java.util.concurrent.locks.ReentrantLock;
 import java.util.function.Supplier;
 import jdk.jshell.JShell;
-import jdk.jshell.JShellException;
 import jdk.jshell.Snippet;
 import jdk.jshell.SnippetEvent;
 import jdk.jshell.spi.ExecutionControl;
@@ -51,7 +48,13 @@ final class JavaSession {
         Thread starter = new Thread(() -> session.startWorker(settings), "start worker");
         starter.setDaemon(true);
         starter.start();
-        session.warmUp();
+        try {
+            session.warmUp();
+        } catch (RuntimeException | Error e) {
+            // Else the worker would stay, and another with every try.
+            session.close(Duration.ZERO);
+            throw e;
+        }
         return session;
     }
 
@@ -59,8 +62,12 @@ final class JavaSession {
         try {
             Worker started = Worker.start(settings, events);
             events.speaksFor(started);
-            worker.complete(started);
-        } catch (IOException | RuntimeException e) {
+            if (!worker.complete(started)) {
+                // The session was closed meanwhile.
+                started.close(Duration.ZERO);
+            }
+        } catch (IOException | RuntimeException | Error e) {
+            // Errors too, such as a JDK without the debugger interface: everything waits for this.
             worker.completeExceptionally(e);
         }
     }
@@ -104,107 +111,10 @@ final class JavaSession {
         Optional<Worker> runner = startedWorker();
         runner.ifPresent(Worker::cellStarted);
         try {
-            return runPieces(cell, listener, stopRequested);
+            return holdingCompiler(() -> new CellRun(shell, execution, cells, cell, listener, stopRequested).run());
         } finally {
             runner.ifPresent(Worker::cellEnded);
         }
-    }
-
-    private CellOutcome runPieces(CellText cell, CellListener listener, Supplier<Boolean> stopRequested) {
-        return holdingCompiler(() -> {
-            List<Piece> pieces = CellSplitter.split(cell.code(), shell.sourceCodeAnalysis());
-            if (!pieces.isEmpty() && !pieces.get(pieces.size() - 1).whole()) {
-                // Half a statement at the end: say so before anything has run.
-                return runPiece(pieces.get(pieces.size() - 1), cell, listener, Frame.Want.NOTHING);
-            }
-            CellOutcome outcome = new CellOutcome.Success(Optional.empty());
-            for (int i = 0; i < pieces.size(); i++) {
-                if (stopRequested.get()) {
-                    return interrupted(cell);
-                }
-                Piece piece = pieces.get(i);
-                boolean shown = i == pieces.size() - 1 && piece.showsValue();
-                outcome = runPiece(piece, cell, listener, shown ? Frame.Want.BUNDLE : Frame.Want.NOTHING);
-                if (outcome instanceof CellOutcome.Failure) {
-                    return stopRequested.get() && loss().isEmpty() ? interrupted(cell) : outcome;
-                }
-            }
-            return stopRequested.get() ? interrupted(cell) : outcome;
-        });
-    }
-
-    private CellOutcome runPiece(Piece piece, CellText cell, CellListener listener, Frame.Want want) {
-        execution.prepare(want);
-        List<SnippetEvent> events;
-        try {
-            events = shell.eval(piece.source());
-        } catch (IllegalStateException e) {
-            return lost(execution.loss().orElse("the compiler's session has ended"));
-        }
-        if (execution.loss().isPresent()) {
-            return lost(execution.loss().get());
-        }
-        CellOutcome outcome = new CellOutcome.Success(Optional.empty());
-        for (SnippetEvent event : events) {
-            if (event.causeSnippet() == null) {
-                outcome = outcomeOf(event, piece, cell, listener);
-            }
-        }
-        return outcome;
-    }
-
-    private CellOutcome outcomeOf(SnippetEvent event, Piece piece, CellText cell, CellListener listener) {
-        Snippet snippet = event.snippet();
-        cells.remember(snippet, cell, piece.start());
-        CompileReport compileReport = new CompileReport(shell);
-        switch (event.status()) {
-            case REJECTED, RECOVERABLE_NOT_DEFINED, NONEXISTENT -> {
-                CellOutcome.Failure failure = compileReport.of(snippet, piece, cell);
-                shell.drop(snippet);
-                return failure;
-            }
-            case RECOVERABLE_DEFINED ->
-                compileReport
-                        .unresolved(snippet)
-                        .ifPresent(note -> listener.output(
-                                CellListener.Stream.ERR, note + " It can be called once that is declared.\n"));
-            case VALID, DROPPED, OVERWRITTEN -> {}
-        }
-        if (execution.wasStopped()) {
-            return interrupted(cell);
-        }
-        JShellException exception = event.exception();
-        if (exception != null) {
-            return new ExceptionReport(cells).of(exception);
-        }
-        return new CellOutcome.Success(valueOf(snippet));
-    }
-
-    /** Takes the value of an expression, and lets go of the name JShell made up for it. */
-    private Optional<MimeBundle> valueOf(Snippet snippet) {
-        Optional<MimeBundle> value = execution.value();
-        if (snippet.subKind() == Snippet.SubKind.TEMP_VAR_EXPRESSION_SUBKIND) {
-            // Each such name would make every later snippet a little slower to compile.
-            shell.drop(snippet);
-            return value;
-        }
-        return snippet.kind() == Snippet.Kind.EXPRESSION ? value : Optional.empty();
-    }
-
-    /** Says that a cell was interrupted. */
-    static CellOutcome.Failure interrupted(CellText cell) {
-        String message = "Interrupted: " + cell.name() + " was stopped before its end. Variables are kept.";
-        return new CellOutcome.Failure("Interrupted", message, List.of(message));
-    }
-
-    /** Says that the worker is gone. */
-    static CellOutcome.Failure lost(String how) {
-        return new CellOutcome.Failure(
-                "WorkerLost",
-                "the worker that ran this cell is gone: " + how,
-                List.of(
-                        "The worker that ran this cell is gone: " + how + ".",
-                        "What earlier cells declared is lost with it. A fresh worker is ready: run again the cells you need."));
     }
 
     /** Interrupts what runs in the worker. */

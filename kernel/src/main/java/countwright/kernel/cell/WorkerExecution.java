@@ -24,13 +24,17 @@ import org.jspecify.annotations.Nullable;
  */
 final class WorkerExecution implements ExecutionControl {
 
+    /** The name of the failure of a cell whose worker is gone. */
+    static final String LOST = "WorkerLost";
+
     private final CompletableFuture<Worker> worker;
     private final ReentrantLock compilerLock;
     private Frame.Want want = Frame.Want.NOTHING;
     private Optional<MimeBundle> value = Optional.empty();
     private boolean stopped;
     private Supplier<Boolean> stopRequested = () -> false;
-    private Optional<String> loss = Optional.empty();
+    private Optional<String> fault = Optional.empty();
+    private volatile Optional<String> loss = Optional.empty();
 
     WorkerExecution(CompletableFuture<Worker> worker, ReentrantLock compilerLock) {
         this.worker = worker;
@@ -47,6 +51,7 @@ final class WorkerExecution implements ExecutionControl {
         want = nextWant;
         value = Optional.empty();
         stopped = false;
+        fault = Optional.empty();
     }
 
     /** Returns the value of the last snippet, if it was wanted and there is one. */
@@ -57,6 +62,11 @@ final class WorkerExecution implements ExecutionControl {
     /** Returns whether the last snippet was stopped by an interrupt. */
     boolean wasStopped() {
         return stopped;
+    }
+
+    /** Returns what went wrong with the last snippet on our side, of which JShell says nothing to its caller. */
+    Optional<String> fault() {
+        return fault;
     }
 
     /** Returns how the worker was lost, if it was. */
@@ -77,9 +87,11 @@ final class WorkerExecution implements ExecutionControl {
                 for (int i = 0; i < Math.min(installed.length, told.size()); i++) {
                     installed[i] = told.get(i);
                 }
+                fault = Optional.of(notInstalled.message());
                 throw new ClassInstallException(notInstalled.message(), installed);
             }
-            throw new ClassInstallException(failed.fault().toString(), new boolean[classes.length]);
+            fault = Optional.of(describe(failed.fault()));
+            throw new ClassInstallException(describe(failed.fault()), new boolean[classes.length]);
         }
     }
 
@@ -113,18 +125,19 @@ final class WorkerExecution implements ExecutionControl {
             value = done.value();
             return done.text();
         }
-        Fault fault = ((Frame.Failed) reply).fault();
-        if (fault instanceof Fault.Thrown thrown) {
+        Fault failure = ((Frame.Failed) reply).fault();
+        if (failure instanceof Fault.Thrown thrown) {
             throw exceptionOf(thrown);
         }
-        if (fault instanceof Fault.Unresolved unresolved) {
+        if (failure instanceof Fault.Unresolved unresolved) {
             throw new ResolutionException(unresolved.id(), unresolved.frames().toArray(new StackTraceElement[0]));
         }
-        if (fault instanceof Fault.Stopped) {
+        if (failure instanceof Fault.Stopped) {
             stopped = true;
             throw new StoppedException();
         }
-        throw new InternalException(fault.toString());
+        fault = Optional.of(describe(failure));
+        throw new InternalException(describe(failure));
     }
 
     @Override
@@ -169,6 +182,10 @@ final class WorkerExecution implements ExecutionControl {
             loss = Optional.of(how);
             throw new EngineTerminationException(how);
         }
+    }
+
+    private static String describe(Fault failure) {
+        return failure instanceof Fault.Internal internal ? internal.message() : failure.toString();
     }
 
     private static UserException exceptionOf(Fault.Thrown thrown) {

@@ -76,7 +76,7 @@ final class CellLane {
     private void runSafely(Request request) throws InterruptedException {
         try {
             runCell(request);
-        } catch (RuntimeException e) {
+        } catch (RuntimeException | Error e) {
             LOG.log(Level.ERROR, "A cell could not be run or answered; the next one will be.", e);
         }
     }

@@ -52,7 +52,10 @@ final class ExecuteHandler implements Handler {
         if (!silent) {
             broadcast.input(code, executionCount);
         }
-        CellOutcome outcome = evaluate(code, broadcast, turn);
+        // A blank cell does nothing: it need not wait for the engine, unless there is something to evaluate after it.
+        CellOutcome outcome = code.isBlank() && expressions.isEmpty()
+                ? new Success(Optional.empty())
+                : evaluate(code, broadcast, turn);
         inputDesk.cancel("The cell ended before the question was answered.");
         Optional<MimeBundle> result = outcome instanceof Success success ? success.result() : Optional.empty();
         if (counts) {
@@ -81,10 +84,7 @@ final class ExecuteHandler implements Handler {
 
     private CellOutcome evaluate(String code, CellBroadcast broadcast, EngineGate.Turn turn) {
         try {
-            // A blank cell does nothing: it need not wait for the engine.
-            return code.isBlank()
-                    ? new Success(Optional.empty())
-                    : turn.await().evaluate(code, executionCount, broadcast);
+            return turn.await().evaluate(code, executionCount, broadcast);
         } catch (EngineGate.NoEngineException e) {
             return new Failure(e.kind(), e.text(), List.of(e.kind() + ": " + e.text()));
         } catch (InterruptedException e) {

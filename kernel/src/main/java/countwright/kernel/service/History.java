@@ -21,6 +21,9 @@ final class History implements Handler {
 
     static final int CAPACITY = 10_000;
 
+    /** Longer results are cut: ten thousand of the longest would be gigabytes. */
+    private static final int LONGEST_OUTPUT = 10_000;
+
     /** The only session there is: an earlier one left nothing behind. */
     private static final int SESSION = 1;
 
@@ -32,7 +35,11 @@ final class History implements Handler {
         if (entries.size() == CAPACITY) {
             entries.removeFirst();
         }
-        entries.addLast(new Entry(line, input, output));
+        entries.addLast(new Entry(line, input, output.map(History::cut)));
+    }
+
+    private static String cut(String output) {
+        return output.length() <= LONGEST_OUTPUT ? output : output.substring(0, LONGEST_OUTPUT) + "…";
     }
 
     @Override

@@ -155,7 +155,7 @@ final class SocketLoop {
     private void sendQueued() {
         for (Outgoing next = outgoing.poll(); next != null; next = outgoing.poll()) {
             if (!sendNow(next.frames())) {
-                next.undeliverable().run();
+                runSafely(next.undeliverable());
             }
         }
     }
@@ -179,7 +179,16 @@ final class SocketLoop {
 
     private void runWaiting() {
         for (Runnable next = whenAllIsRead.poll(); next != null; next = whenAllIsRead.poll()) {
-            next.run();
+            runSafely(next);
+        }
+    }
+
+    /** The socket must outlive whatever goes wrong with one message, memory running short for it included. */
+    private void runSafely(Runnable action) {
+        try {
+            action.run();
+        } catch (RuntimeException | Error e) {
+            LOG.log(Level.ERROR, "A message on " + name + " could not be handled; the next one will be.", e);
         }
     }
 
@@ -206,16 +215,8 @@ final class SocketLoop {
             int dropped = count;
             LOG.log(Level.WARNING, () -> "Ignored a message on " + name + ": " + dropped + " frames are too many.");
         } else {
-            handOn(frames);
+            runSafely(() -> receiver.accept(frames));
         }
         return true;
-    }
-
-    private void handOn(List<byte[]> frames) {
-        try {
-            receiver.accept(frames);
-        } catch (RuntimeException | StackOverflowError e) {
-            LOG.log(Level.ERROR, "A message on " + name + " could not be handled; the next one will be.", e);
-        }
     }
 }

@@ -7,7 +7,6 @@ import com.sun.jdi.InvalidTypeException;
 import com.sun.jdi.ObjectReference;
 import com.sun.jdi.ReferenceType;
 import com.sun.jdi.ThreadReference;
-import com.sun.jdi.VMDisconnectedException;
 import com.sun.jdi.VirtualMachine;
 import com.sun.jdi.connect.Connector;
 import com.sun.jdi.connect.IllegalConnectorArgumentsException;
@@ -32,6 +31,7 @@ final class Debugger implements AutoCloseable {
     private static final Logger LOG = System.getLogger(Debugger.class.getName());
     private static final String CELL_THREAD = CellThread.class.getName();
     private static final int ACCEPT_MILLIS = 30_000;
+    private static final Object LISTENING = new Object();
 
     private final ListeningConnector connector;
     private final Map<String, Connector.Argument> arguments;
@@ -44,7 +44,7 @@ final class Debugger implements AutoCloseable {
         this.address = address;
     }
 
-    /** Starts listening on a free loopback port. */
+    /** Starts listening on a free loopback port. The connector keeps one unguarded list for all who listen. */
     static Debugger listen() throws IOException {
         ListeningConnector connector = Bootstrap.virtualMachineManager().listeningConnectors().stream()
                 .filter(each -> each.transport().name().equals("dt_socket"))
@@ -55,7 +55,9 @@ final class Debugger implements AutoCloseable {
         set(arguments, "port", "0");
         set(arguments, "timeout", Integer.toString(ACCEPT_MILLIS));
         try {
-            return new Debugger(connector, arguments, connector.startListening(arguments));
+            synchronized (LISTENING) {
+                return new Debugger(connector, arguments, connector.startListening(arguments));
+            }
         } catch (IllegalConnectorArgumentsException e) {
             throw new IOException("the debugger interface does not take a loopback address", e);
         }
@@ -104,7 +106,8 @@ final class Debugger implements AutoCloseable {
                 return false;
             }
             return stopUserCode(type);
-        } catch (VMDisconnectedException | InvalidTypeException e) {
+        } catch (RuntimeException | InvalidTypeException e) {
+            // Of many kinds: disconnected, a thread just gone, a fault of the interface. There is always another try.
             LOG.log(Level.DEBUG, "the cell could not be stopped", e);
             return false;
         }
@@ -134,21 +137,17 @@ final class Debugger implements AutoCloseable {
 
     private void stopListening() {
         try {
-            connector.stopListening(arguments);
+            synchronized (LISTENING) {
+                connector.stopListening(arguments);
+            }
         } catch (IOException | IllegalConnectorArgumentsException e) {
             LOG.log(Level.DEBUG, "already not listening", e);
         }
     }
 
+    /** Stops listening. The connection is left to end with the worker: to end it politely can hang with a stopped one. */
     @Override
     public void close() {
         stopListening();
-        var unused = machine.thenAccept(attached -> {
-            try {
-                attached.dispose();
-            } catch (VMDisconnectedException e) {
-                LOG.log(Level.DEBUG, "the worker went first");
-            }
-        });
     }
 }

@@ -3,10 +3,12 @@ package countwright.kernel.worker;
 import countwright.worker.Frame;
 import java.lang.System.Logger;
 import java.lang.System.Logger.Level;
+import java.time.Duration;
 import java.util.concurrent.Executors;
 import java.util.concurrent.RejectedExecutionException;
 import java.util.concurrent.ScheduledExecutorService;
 import java.util.concurrent.TimeUnit;
+import java.util.concurrent.locks.ReentrantLock;
 
 /**
  * Stops what runs in a worker: first by Thread.interrupt, for code that listens; after a grace by throwing into the cell
@@ -19,15 +21,22 @@ final class Interrupter implements AutoCloseable {
     private static final long GRACE_MILLIS = 300;
     private static final long RETRY_MILLIS = 100;
 
-    /** Before this many tries a second interrupt is taken for impatience, not for a wish to lose the variables. */
-    private static final int TRIES_BEFORE_KILL = 12;
+    /** Before this time a second interrupt is taken for impatience, not for a wish to lose the variables. */
+    private static final Duration PATIENCE = Duration.ofMillis(1_500);
 
     private final Worker worker;
     private final Debugger debugger;
     private final ScheduledExecutorService clock;
+
+    /**
+     * Held while a stop is under way, so that it cannot reach the next cell. Not this object's monitor: the debugger
+     * interface has no timeouts, and an interrupt must be taken while it hangs.
+     */
+    private final ReentrantLock forcing = new ReentrantLock();
+
     private boolean running;
     private boolean stopping;
-    private int tries;
+    private long stoppingSince;
     private volatile boolean killed;
 
     Interrupter(Worker worker, Debugger debugger) {
@@ -45,9 +54,16 @@ final class Interrupter implements AutoCloseable {
         stopping = false;
     }
 
-    synchronized void cellEnded() {
-        running = false;
-        stopping = false;
+    void cellEnded() {
+        forcing.lock();
+        try {
+            synchronized (this) {
+                running = false;
+                stopping = false;
+            }
+        } finally {
+            forcing.unlock();
+        }
     }
 
     /** Starts to stop the cell that runs, whatever part of it is under way; does nothing if none runs. */
@@ -56,7 +72,7 @@ final class Interrupter implements AutoCloseable {
             return;
         }
         if (stopping) {
-            if (tries >= TRIES_BEFORE_KILL) {
+            if (System.nanoTime() - stoppingSince > PATIENCE.toNanos()) {
                 LOG.log(Level.WARNING, "the cell cannot be stopped; ending worker {0}", worker.processId());
                 killed = true;
                 worker.kill();
@@ -64,7 +80,7 @@ final class Interrupter implements AutoCloseable {
             return;
         }
         stopping = true;
-        tries = 0;
+        stoppingSince = System.nanoTime();
         worker.send(new Frame.Interrupt());
         schedule(GRACE_MILLIS);
     }
@@ -73,12 +89,20 @@ final class Interrupter implements AutoCloseable {
         return killed;
     }
 
-    private synchronized void stopByForce() {
-        if (stopping) {
-            tries++;
-            var unused = debugger.stopUserCode();
-            schedule(RETRY_MILLIS);
+    private void stopByForce() {
+        forcing.lock();
+        try {
+            if (isStopping()) {
+                schedule(RETRY_MILLIS);
+                var unused = debugger.stopUserCode();
+            }
+        } finally {
+            forcing.unlock();
         }
+    }
+
+    private synchronized boolean isStopping() {
+        return stopping;
     }
 
     private void schedule(long millis) {

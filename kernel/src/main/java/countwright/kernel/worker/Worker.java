@@ -2,6 +2,7 @@ package countwright.kernel.worker;
 
 import countwright.worker.Frame;
 import countwright.worker.FrameStream;
+import countwright.worker.WorkerMain;
 import java.io.IOException;
 import java.io.InputStream;
 import java.io.OutputStream;
@@ -33,6 +34,7 @@ public final class Worker implements AutoCloseable {
 
     private static final Logger LOG = System.getLogger(Worker.class.getName());
     private static final int CONNECT_MILLIS = 30_000;
+    private static final int HANDSHAKE_MILLIS = 5_000;
     private static final long EXIT_STATUS_MILLIS = 3_000;
 
     private final Process process;
@@ -44,10 +46,12 @@ public final class Worker implements AutoCloseable {
     private final CompletableFuture<String> loss = new CompletableFuture<>();
     private volatile boolean leaving;
 
-    private Worker(Process process, Socket socket, FrameStream stream, Debugger debugger, WorkerListener listener) {
+    private record Connection(Socket socket, FrameStream stream) {}
+
+    private Worker(Process process, Connection connection, Debugger debugger, WorkerListener listener) {
         this.process = process;
-        this.socket = socket;
-        this.stream = stream;
+        this.socket = connection.socket();
+        this.stream = connection.stream();
         this.listener = listener;
         this.interrupter = new Interrupter(this, debugger);
     }
@@ -60,27 +64,23 @@ public final class Worker implements AutoCloseable {
     public static Worker start(WorkerSettings settings, WorkerListener listener) throws IOException {
         Debugger debugger = Debugger.listen();
         try (ServerSocket server = new ServerSocket(0, 1, InetAddress.getLoopbackAddress())) {
-            String token = newToken();
             Process process = spawn(settings, debugger);
             debugger.attachBehind();
-            try (OutputStream stdin = process.getOutputStream()) {
-                stdin.write((server.getLocalPort() + " " + token + "\n").getBytes(StandardCharsets.US_ASCII));
-            }
-            ProcessOutput output = new ProcessOutput(process.getInputStream(), listener);
             // A worker that dies at birth never connects.
             var unused = process.onExit().thenRun(() -> closeQuietly(server));
-            Socket socket = connect(server, process, output);
-            FrameStream stream = new FrameStream(socket.getInputStream(), socket.getOutputStream());
-            if (!(stream.read() instanceof Frame.Ready ready) || !ready.token().equals(token)) {
-                socket.close();
+            ProcessOutput output = new ProcessOutput(process.getInputStream(), listener);
+            try {
+                String token = newToken();
+                tell(process, server.getLocalPort() + " " + token + "\n");
+                Worker worker = new Worker(process, accept(server, token), debugger, listener);
+                Thread reader = new Thread(worker::readForever, "from worker");
+                reader.setDaemon(true);
+                reader.start();
+                return worker;
+            } catch (IOException e) {
                 process.destroyForcibly();
-                throw new IOException("something other than the worker connected to the kernel");
+                throw new IOException("the worker did not start. It said: " + output.lastWords(), e);
             }
-            Worker worker = new Worker(process, socket, stream, debugger, listener);
-            Thread reader = new Thread(worker::readForever, "from worker");
-            reader.setDaemon(true);
-            reader.start();
-            return worker;
         } catch (IOException | RuntimeException e) {
             debugger.close();
             throw e;
@@ -188,17 +188,26 @@ public final class Worker implements AutoCloseable {
                         request.complete(reply);
                     }
                 } else if (frame instanceof Frame.ToKernel said) {
-                    listener.said(said);
+                    passOn(said);
                 } else {
                     throw new IOException("damaged stream: the worker sent a frame of the kernel's");
                 }
             }
-        } catch (IOException | RuntimeException end) {
+        } catch (IOException | RuntimeException | Error end) {
+            // Whatever it was, nothing reads the replies any more, so nobody may go on waiting for one.
             lose(end);
         }
     }
 
-    private void lose(Exception end) {
+    private void passOn(Frame.ToKernel said) {
+        try {
+            listener.said(said);
+        } catch (RuntimeException e) {
+            LOG.log(Level.ERROR, "Something the worker said could not be passed on; the next will be.", e);
+        }
+    }
+
+    private void lose(Throwable end) {
         String how = describeLoss();
         if (!leaving) {
             LOG.log(Level.INFO, "worker {0} lost: {1} ({2})", process.pid(), how, String.valueOf(end.getMessage()));
@@ -223,10 +232,14 @@ public final class Worker implements AutoCloseable {
             return "the kernel is closing";
         }
         int status = process.exitValue();
+        if (leaving) {
+            return "the kernel has ended it";
+        }
         if (interrupter.hasKilled()) {
             return "it did not react to the interrupt and was ended on the second one";
         }
         return switch (status) {
+            case WorkerMain.OUT_OF_MEMORY -> "its memory was so full that it could not go on";
             case 128 + 9 -> "it was killed from outside (signal 9), as the system does when memory runs out";
             case 128 + 6, 128 + 11, 128 + 4, 128 + 7, 128 + 8 ->
                 "its JVM crashed in native code (signal " + (status - 128) + ")";
@@ -251,7 +264,7 @@ public final class Worker implements AutoCloseable {
         command.addAll(settings.jvmOptions());
         command.add("-cp");
         command.add(settings.classPathText());
-        command.add("countwright.worker.WorkerMain");
+        command.add(WorkerMain.class.getName());
         ProcessBuilder builder = new ProcessBuilder(command).redirectErrorStream(true);
         Map<String, String> environment = builder.environment();
         // Options meant for the kernel would be announced by the worker's JVM into the user's first cell.
@@ -265,15 +278,33 @@ public final class Worker implements AutoCloseable {
         return System.getProperty("java.home") + "/bin/java";
     }
 
-    private static Socket connect(ServerSocket server, Process process, ProcessOutput output) throws IOException {
-        server.setSoTimeout(CONNECT_MILLIS);
-        try {
+    private static void tell(Process process, String line) {
+        try (OutputStream stdin = process.getOutputStream()) {
+            stdin.write(line.getBytes(StandardCharsets.US_ASCII));
+        } catch (IOException alreadyGone) {
+            LOG.log(Level.DEBUG, "the worker is gone before it was told anything; it will not connect");
+        }
+    }
+
+    /** Waits for the connection that knows the token: any program on this machine can reach the port. */
+    private static Connection accept(ServerSocket server, String token) throws IOException {
+        long deadline = System.nanoTime() + TimeUnit.MILLISECONDS.toNanos(CONNECT_MILLIS);
+        while (true) {
+            long left = TimeUnit.NANOSECONDS.toMillis(deadline - System.nanoTime());
+            server.setSoTimeout((int) Math.max(1, left));
             Socket socket = server.accept();
-            socket.setTcpNoDelay(true);
-            return socket;
-        } catch (IOException e) {
-            process.destroyForcibly();
-            throw new IOException("the worker did not start. It said: " + output.lastWords(), e);
+            try {
+                socket.setSoTimeout(HANDSHAKE_MILLIS);
+                FrameStream stream = new FrameStream(socket.getInputStream(), socket.getOutputStream());
+                if (stream.read() instanceof Frame.Ready ready && ready.token().equals(token)) {
+                    socket.setSoTimeout(0);
+                    socket.setTcpNoDelay(true);
+                    return new Connection(socket, stream);
+                }
+            } catch (IOException e) {
+                LOG.log(Level.DEBUG, "a connection that does not speak as the worker does", e);
+            }
+            closeQuietly(socket);
         }
     }
 

@@ -5,16 +5,13 @@ import countwright.show.Renderer;
 import java.lang.reflect.InvocationTargetException;
 import java.lang.reflect.Method;
 import java.util.ArrayList;
-import java.util.IdentityHashMap;
 import java.util.List;
-import java.util.Map;
 import java.util.Optional;
 import java.util.concurrent.BlockingQueue;
 import java.util.concurrent.LinkedBlockingQueue;
 import jdk.jshell.execution.DirectExecutionControl;
 import jdk.jshell.spi.ExecutionControl.ClassBytecodes;
 import jdk.jshell.spi.ExecutionControl.ClassInstallException;
-import jdk.jshell.spi.SPIResolutionException;
 import org.jspecify.annotations.Nullable;
 
 /**
@@ -30,15 +27,12 @@ public final class CellThread extends Thread {
     /** The phase in which an asynchronous stop does no harm. */
     public static final int USER_CODE = 1;
 
-    /** How many causes of an exception are reported. */
-    static final int DEEPEST_CAUSE = 16;
-
     private static final int OURS = 0;
 
     /** Not more: with a debugger attached, unwinding an overflow takes 300 ms a megabyte. */
     private static final long STACK_BYTES = 2L << 20;
 
-    private static final int MOST_FRAMES = 400;
+    private static final int RESERVE_BYTES = 4 << 20;
     private static final long LARGEST_BUNDLE = 64L << 20;
 
     /** What the kernel throws into this thread. Made beforehand, since nothing can be made while it is suspended. */
@@ -52,6 +46,9 @@ public final class CellThread extends Thread {
     private final BlockingQueue<Frame.Request> requests = new LinkedBlockingQueue<>();
     private final Outbox outbox;
     private final ClassKeeper classes = new ClassKeeper();
+
+    /** Given up when user code has filled the memory, so that there is room to say so and to run the cell that mends it. */
+    private byte[] reserve = new byte[RESERVE_BYTES];
 
     CellThread(Outbox outbox) {
         super(null, null, "cell", STACK_BYTES);
@@ -91,7 +88,8 @@ public final class CellThread extends Thread {
                 continue;
             } catch (Throwable unexpected) {
                 phase = OURS;
-                reply = new Frame.Failed(new Fault.Internal(unexpected.toString()));
+                reserve = new byte[0];
+                reply = new Frame.Failed(new Fault.Internal(String.valueOf(unexpected)));
             }
             outbox.put(reply);
         }
@@ -136,6 +134,7 @@ public final class CellThread extends Thread {
         } catch (ReflectiveOperationException | LinkageError e) {
             return new Frame.Failed(new Fault.Internal(e.toString()));
         }
+        refillReserve();
         // Two layers, because a stop may arrive anywhere until the phase is ours again, also in the inner handlers.
         try {
             return invokeStoppably(method, request.want());
@@ -149,7 +148,7 @@ public final class CellThread extends Thread {
         }
     }
 
-    private static Frame.Reply invokeStoppably(Method method, Frame.Want want) {
+    private Frame.Reply invokeStoppably(Method method, Frame.Want want) {
         try {
             phase = USER_CODE;
             Object value = method.invoke(null);
@@ -157,15 +156,28 @@ public final class CellThread extends Thread {
             phase = OURS;
             return new Frame.Done("", bundle);
         } catch (InvocationTargetException e) {
-            phase = OURS;
-            return new Frame.Failed(faultOf(e.getCause() == null ? e : e.getCause()));
-        } catch (CellStop stop) {
-            phase = OURS;
-            return new Frame.Failed(new Fault.Stopped());
+            return failed(e.getCause() == null ? e : e.getCause());
         } catch (Throwable e) {
-            // The method was found and is accessible, so this came from rendering its value.
-            phase = OURS;
-            return new Frame.Failed(faultOf(e));
+            // The method was found and is accessible, so this came from rendering its value, or is a stop.
+            return failed(e);
+        }
+    }
+
+    /** Still in the phase of user code: an exception can have methods of its own, which may have to be stopped. */
+    private Frame.Failed failed(Throwable thrown) {
+        if (thrown instanceof OutOfMemoryError) {
+            reserve = new byte[0];
+        }
+        return new Frame.Failed(Faults.of(thrown));
+    }
+
+    private void refillReserve() {
+        if (reserve.length == 0) {
+            try {
+                reserve = new byte[RESERVE_BYTES];
+            } catch (OutOfMemoryError stillFull) {
+                reserve = new byte[0];
+            }
         }
     }
 
@@ -188,41 +200,6 @@ public final class CellThread extends Thread {
 
     private static Frame.Done done(String text) {
         return new Frame.Done(text, Optional.empty());
-    }
-
-    private static Fault faultOf(Throwable thrown) {
-        if (thrown instanceof CellStop) {
-            return new Fault.Stopped();
-        }
-        if (thrown instanceof SPIResolutionException unresolved) {
-            return new Fault.Unresolved(unresolved.id(), framesOf(unresolved));
-        }
-        return thrownFault(thrown, new IdentityHashMap<>());
-    }
-
-    private static Fault.Thrown thrownFault(Throwable thrown, Map<Throwable, Boolean> seen) {
-        seen.put(thrown, true);
-        Throwable cause = thrown.getCause();
-        boolean tell = cause != null && !seen.containsKey(cause) && seen.size() <= DEEPEST_CAUSE;
-        return new Fault.Thrown(
-                thrown.getClass().getName(),
-                messageOf(thrown),
-                framesOf(thrown),
-                tell && cause != null ? Optional.of(thrownFault(cause, seen)) : Optional.empty());
-    }
-
-    private static Optional<String> messageOf(Throwable thrown) {
-        try {
-            return Optional.ofNullable(thrown.getLocalizedMessage());
-        } catch (RuntimeException | Error e) {
-            return Optional.of("(its message could not be read: getMessage threw "
-                    + e.getClass().getName() + ")");
-        }
-    }
-
-    private static List<StackTraceElement> framesOf(Throwable thrown) {
-        StackTraceElement[] frames = thrown.getStackTrace();
-        return List.of(frames).subList(0, Math.min(frames.length, MOST_FRAMES));
     }
 
     /** JShell's own class loading and redefinition, without its way of running. */

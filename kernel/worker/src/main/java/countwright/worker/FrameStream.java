@@ -208,8 +208,8 @@ public final class FrameStream {
     }
 
     private Fault.Thrown readThrown(int depth) throws IOException {
-        if (depth > CellThread.DEEPEST_CAUSE) {
-            throw new IOException("damaged stream: a chain of more than " + CellThread.DEEPEST_CAUSE + " causes");
+        if (depth > Faults.DEEPEST_CAUSE) {
+            throw new IOException("damaged stream: a chain of more than " + Faults.DEEPEST_CAUSE + " causes");
         }
         String className = readText();
         Optional<String> message = readOptionalText();

@@ -2,23 +2,25 @@ package countwright.worker;
 
 import java.io.ByteArrayOutputStream;
 import java.io.IOException;
-import java.io.InterruptedIOException;
 import java.util.ArrayDeque;
 import java.util.ArrayList;
 import java.util.Deque;
 import java.util.List;
+import java.util.Objects;
 import org.jspecify.annotations.Nullable;
 
 /**
  * Everything the worker says, in the order it was said, written to the stream by one thread.
  *
  * <p>Threads of user code never touch the stream: one stopped in the middle of a frame would break it. Output that piles
- * up while the writer is busy is merged, so a flood of lines becomes few large frames, and a writer of output waits
- * once {@link #MOST_PENDING} bytes are under way, which bounds the memory.
+ * up while the writer is busy is merged, so a flood of lines becomes few large frames. Who prints or shows waits while
+ * {@link #MOST_PENDING} bytes of output or {@link #MOST_FRAMES} frames are under way, which bounds the memory.
  */
 final class Outbox {
 
     private static final int MOST_PENDING = 4 << 20;
+    private static final int MOST_FRAMES = 200;
+    private static final int LARGEST_PIECE = 1 << 20;
 
     private final Object lock = new Object();
     private final FrameStream stream;
@@ -51,18 +53,35 @@ final class Outbox {
         }
     }
 
-    /** Queues output, waiting while too much of it is under way. */
-    void putOutput(Frame.Channel channel, byte[] bytes, int start, int length) throws InterruptedIOException {
+    /** Queues a frame that user code caused, waiting while too much is under way. */
+    void putWhenRoom(Frame frame) {
         waitForRoom();
+        put(frame);
+    }
+
+    /** Queues output, waiting while too much is under way; a long one goes in pieces, since a frame has a limit. */
+    void putOutput(Frame.Channel channel, byte[] bytes, int start, int length) {
+        Objects.checkFromIndexSize(start, length, bytes.length);
+        int end = start + length;
+        for (int from = start; from < end; from += LARGEST_PIECE) {
+            waitForRoom();
+            append(channel, bytes, from, Math.min(LARGEST_PIECE, end - from));
+        }
+    }
+
+    private void append(Frame.Channel channel, byte[] bytes, int start, int length) {
         int before = CellThread.guard();
         try {
             synchronized (lock) {
+                if (frames.isEmpty() && output.size() == 0) {
+                    // Only then can the writer be waiting for something to write; a flood should not wake it each time.
+                    lock.notifyAll();
+                }
                 if (outputChannel != channel) {
                     closeOutput();
                     outputChannel = channel;
                 }
                 output.write(bytes, start, length);
-                lock.notifyAll();
             }
         } finally {
             CellThread.unguard(before);
@@ -83,15 +102,25 @@ final class Outbox {
         }
     }
 
-    private void waitForRoom() throws InterruptedIOException {
-        synchronized (lock) {
-            while (output.size() > MOST_PENDING) {
-                try {
-                    lock.wait();
-                } catch (InterruptedException e) {
-                    Thread.currentThread().interrupt();
-                    throw new InterruptedIOException("interrupted while waiting to write output");
+    /**
+     * An interrupt does not end the wait, which the writer always ends soon: print streams swallow the exception there
+     * would be, and with it the text. A stop ends it.
+     */
+    private void waitForRoom() {
+        boolean interrupted = false;
+        try {
+            synchronized (lock) {
+                while (output.size() > MOST_PENDING || frames.size() > MOST_FRAMES) {
+                    try {
+                        lock.wait();
+                    } catch (InterruptedException e) {
+                        interrupted = true;
+                    }
                 }
+            }
+        } finally {
+            if (interrupted) {
+                Thread.currentThread().interrupt();
             }
         }
     }
@@ -116,6 +145,8 @@ final class Outbox {
                     lock.notifyAll();
                 }
             }
+        } catch (OutOfMemoryError full) {
+            Runtime.getRuntime().halt(WorkerMain.OUT_OF_MEMORY);
         } catch (IOException | InterruptedException | RuntimeException | Error kernelGone) {
             // Without a way to speak this process is of no use to anyone.
             Runtime.getRuntime().halt(WorkerMain.LOST_KERNEL);

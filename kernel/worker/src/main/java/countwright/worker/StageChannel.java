@@ -22,22 +22,22 @@ final class StageChannel implements Stage {
 
     @Override
     public void display(MimeBundle bundle) {
-        outbox.put(new Frame.Shown(CellThread.checkSize(bundle), Optional.empty()));
+        outbox.putWhenRoom(new Frame.Shown(CellThread.checkSize(bundle), Optional.empty()));
     }
 
     @Override
     public void display(MimeBundle bundle, String displayId) {
-        outbox.put(new Frame.Shown(CellThread.checkSize(bundle), Optional.of(displayId)));
+        outbox.putWhenRoom(new Frame.Shown(CellThread.checkSize(bundle), Optional.of(displayId)));
     }
 
     @Override
     public void update(MimeBundle bundle, String displayId) {
-        outbox.put(new Frame.Updated(CellThread.checkSize(bundle), displayId));
+        outbox.putWhenRoom(new Frame.Updated(CellThread.checkSize(bundle), displayId));
     }
 
     @Override
     public void clear(Clearing when) {
-        outbox.put(new Frame.Cleared(when));
+        outbox.putWhenRoom(new Frame.Cleared(when));
     }
 
     @Override
@@ -46,7 +46,7 @@ final class StageChannel implements Stage {
         BlockingQueue<Frame.ToWorker> reply = new ArrayBlockingQueue<>(1);
         waiting.put(question, reply);
         try {
-            outbox.put(new Frame.Asked(question, prompt, echo));
+            outbox.putWhenRoom(new Frame.Asked(question, prompt, echo));
             Frame.ToWorker frame = reply.take();
             if (frame instanceof Frame.Refuse refuse) {
                 throw new IllegalStateException(refuse.reason());

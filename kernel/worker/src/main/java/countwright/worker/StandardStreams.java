@@ -19,7 +19,20 @@ final class StandardStreams {
     }
 
     private static PrintStream printing(Outbox outbox, Frame.Channel channel) {
-        return new PrintStream(new OutboxOutput(outbox, channel), false, StandardCharsets.UTF_8);
+        return new KeptOpen(new OutboxOutput(outbox, channel));
+    }
+
+    /** Closing a writer around System.out is a common slip, which must not silence all later cells. */
+    private static final class KeptOpen extends PrintStream {
+
+        KeptOpen(OutputStream out) {
+            super(out, false, StandardCharsets.UTF_8);
+        }
+
+        @Override
+        public void close() {
+            flush();
+        }
     }
 
     private static final class OutboxOutput extends OutputStream {
@@ -33,12 +46,12 @@ final class StandardStreams {
         }
 
         @Override
-        public void write(int value) throws IOException {
+        public void write(int value) {
             write(new byte[] {(byte) value}, 0, 1);
         }
 
         @Override
-        public void write(byte[] bytes, int start, int length) throws IOException {
+        public void write(byte[] bytes, int start, int length) {
             outbox.putOutput(channel, bytes, start, length);
         }
     }

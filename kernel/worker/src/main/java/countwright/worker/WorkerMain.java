@@ -16,6 +16,9 @@ import java.util.ServiceLoader;
  */
 public final class WorkerMain {
 
+    /** Exit status when memory is so full that this process cannot even talk to the kernel. */
+    public static final int OUT_OF_MEMORY = 87;
+
     /** Exit status when the kernel has gone. */
     static final int LOST_KERNEL = 86;
 
@@ -71,6 +74,8 @@ public final class WorkerMain {
             }
         } catch (IOException kernelGone) {
             return;
+        } catch (OutOfMemoryError full) {
+            Runtime.getRuntime().halt(OUT_OF_MEMORY);
         }
     }
 

@@ -1,0 +1,250 @@
+package countwright.kernel.cell;
+
+import countwright.kernel.cell.CellSplitter.Piece;
+import countwright.show.MimeBundle;
+import countwright.worker.Frame;
+import java.util.ArrayList;
+import java.util.List;
+import java.util.Optional;
+import java.util.function.Supplier;
+import java.util.regex.Pattern;
+import jdk.jshell.DeclarationSnippet;
+import jdk.jshell.JShell;
+import jdk.jshell.JShellException;
+import jdk.jshell.Snippet;
+import jdk.jshell.SnippetEvent;
+
+/**
+ * One run of one cell: piece after piece, to the end or to the first that fails. The caller holds the compiler lock.
+ *
+ * <p>What a piece does to other declarations is told once the cell has ended, because a later piece often mends it: a
+ * method may call one declared below it, and whoever runs a class again usually runs its variables again.
+ */
+final class CellRun {
+
+    private final JShell shell;
+    private final WorkerExecution execution;
+    private final CellMap cells;
+    private final CellText cell;
+    private final CellListener listener;
+    private final Supplier<Boolean> stopRequested;
+    private final CompileReport compileReport;
+    private final List<Waiting> waiting = new ArrayList<>();
+    private final List<SnippetEvent> dependents = new ArrayList<>();
+    private List<Piece> pieces = List.of();
+
+    /** A declaration that waits for another. */
+    private record Waiting(DeclarationSnippet snippet, Piece piece) {}
+
+    CellRun(
+            JShell shell,
+            WorkerExecution execution,
+            CellMap cells,
+            CellText cell,
+            CellListener listener,
+            Supplier<Boolean> stopRequested) {
+        this.shell = shell;
+        this.execution = execution;
+        this.cells = cells;
+        this.cell = cell;
+        this.listener = listener;
+        this.stopRequested = stopRequested;
+        this.compileReport = new CompileReport(shell);
+    }
+
+    CellOutcome run() {
+        pieces = CellSplitter.split(cell.code(), shell.sourceCodeAnalysis());
+        if (!pieces.isEmpty() && !pieces.get(pieces.size() - 1).whole()) {
+            // Half a statement at the end: say so before anything has run.
+            return runPiece(pieces.get(pieces.size() - 1), Frame.Want.NOTHING);
+        }
+        CellOutcome outcome = runAll();
+        if (execution.loss().isPresent()) {
+            return outcome;
+        }
+        dependents.forEach(this::tellChange);
+        Optional<CellOutcome.Failure> neverDeclared = settleWaiting();
+        return outcome instanceof CellOutcome.Success && neverDeclared.isPresent() ? neverDeclared.get() : outcome;
+    }
+
+    private CellOutcome runAll() {
+        CellOutcome outcome = new CellOutcome.Success(Optional.empty());
+        for (int i = 0; i < pieces.size(); i++) {
+            if (stopRequested.get()) {
+                return interrupted(cell);
+            }
+            Piece piece = pieces.get(i);
+            boolean shown = i == pieces.size() - 1 && piece.showsValue();
+            outcome = runPiece(piece, shown ? Frame.Want.BUNDLE : Frame.Want.NOTHING);
+            if (outcome instanceof CellOutcome.Failure) {
+                return stopRequested.get() && execution.loss().isEmpty() ? interrupted(cell) : outcome;
+            }
+        }
+        return stopRequested.get() ? interrupted(cell) : outcome;
+    }
+
+    private CellOutcome runPiece(Piece piece, Frame.Want want) {
+        Optional<Snippet> unchanged = sameAsBefore(piece);
+        if (unchanged.isPresent()) {
+            cells.remember(unchanged.get(), cell, piece.start());
+            return new CellOutcome.Success(Optional.empty());
+        }
+        execution.prepare(want);
+        List<SnippetEvent> events;
+        try {
+            events = shell.eval(piece.source());
+        } catch (IllegalStateException e) {
+            return lost(execution.loss().orElse("the compiler's session has ended"));
+        }
+        if (execution.loss().isPresent()) {
+            return lost(execution.loss().get());
+        }
+        CellOutcome outcome = new CellOutcome.Success(Optional.empty());
+        for (SnippetEvent event : events) {
+            if (event.causeSnippet() != null) {
+                dependents.add(event);
+            } else if (outcome instanceof CellOutcome.Success) {
+                // More than one where a piece declares several variables: the first that failed is the outcome.
+                outcome = outcomeOf(event, piece);
+            }
+        }
+        return outcome;
+    }
+
+    /**
+     * Finds the class or method that stands exactly as in the piece. Declaring it anew would make it a new class, and
+     * empty every variable that depends on it, although nothing has changed.
+     */
+    private Optional<Snippet> sameAsBefore(Piece piece) {
+        String source = piece.source().strip();
+        return shell.snippets()
+                .filter(snippet -> snippet.kind() == Snippet.Kind.TYPE_DECL || snippet.kind() == Snippet.Kind.METHOD)
+                .filter(snippet -> snippet.source().strip().equals(source))
+                .filter(snippet -> shell.status(snippet) == Snippet.Status.VALID)
+                .findFirst();
+    }
+
+    private CellOutcome outcomeOf(SnippetEvent event, Piece piece) {
+        Snippet snippet = event.snippet();
+        cells.remember(snippet, cell, piece.start());
+        switch (event.status()) {
+            case REJECTED, NONEXISTENT -> {
+                return rejected(snippet, piece);
+            }
+            case RECOVERABLE_NOT_DEFINED -> {
+                if (!(snippet instanceof DeclarationSnippet declaration) || !waitsForThisCell(declaration)) {
+                    return rejected(snippet, piece);
+                }
+                waiting.add(new Waiting(declaration, piece));
+            }
+            case RECOVERABLE_DEFINED -> waiting.add(new Waiting((DeclarationSnippet) snippet, piece));
+            case VALID, DROPPED, OVERWRITTEN -> {}
+        }
+        if (execution.wasStopped()) {
+            return interrupted(cell);
+        }
+        JShellException exception = event.exception();
+        if (exception != null) {
+            return new ExceptionReport(cells, compileReport).of(exception);
+        }
+        return execution
+                .fault()
+                .<CellOutcome>map(CellRun::broken)
+                .orElseGet(() -> new CellOutcome.Success(valueOf(snippet)));
+    }
+
+    private CellOutcome.Failure rejected(Snippet snippet, Piece piece) {
+        CellOutcome.Failure failure = compileReport.of(snippet, piece, cell);
+        shell.drop(snippet);
+        return failure;
+    }
+
+    /** Tells whether all types a declaration lacks are declared in this cell, as with classes that refer to each other. */
+    private boolean waitsForThisCell(DeclarationSnippet declaration) {
+        if (declaration.kind() != Snippet.Kind.TYPE_DECL && declaration.kind() != Snippet.Kind.METHOD) {
+            return false;
+        }
+        List<String> lacking = shell.unresolvedDependencies(declaration).toList();
+        return !lacking.isEmpty() && lacking.stream().allMatch(this::isDeclaredHere);
+    }
+
+    private boolean isDeclaredHere(String dependency) {
+        String name = dependency.substring(dependency.lastIndexOf(' ') + 1);
+        Pattern declaring = Pattern.compile("\\b(class|interface|enum|record)\\s+" + Pattern.quote(name) + "\\b");
+        return pieces.stream()
+                .anyMatch(piece -> declaring.matcher(piece.source()).find());
+    }
+
+    /** Tells what still waits at the end of the cell; what cannot even be referred to is an error. */
+    private Optional<CellOutcome.Failure> settleWaiting() {
+        Optional<CellOutcome.Failure> failure = Optional.empty();
+        for (Waiting each : waiting) {
+            Snippet.Status status = shell.status(each.snippet());
+            if (status == Snippet.Status.RECOVERABLE_DEFINED) {
+                tell("'" + each.snippet().name() + "' " + compileReport.whyUnusable(each.snippet())
+                        + " It can be called once that is put right.");
+            } else if (status == Snippet.Status.RECOVERABLE_NOT_DEFINED && failure.isEmpty()) {
+                failure = Optional.of(rejected(each.snippet(), each.piece()));
+            }
+        }
+        return failure;
+    }
+
+    /** Tells of a declaration of an earlier cell that this cell has broken or emptied. */
+    private void tellChange(SnippetEvent event) {
+        if (event.previousStatus() != Snippet.Status.VALID
+                || !(event.snippet() instanceof DeclarationSnippet changed)
+                || shell.status(changed) != event.status()) {
+            return;
+        }
+        String where =
+                cells.cellOf(changed).map(origin -> " of " + origin.name()).orElse("");
+        boolean broken = event.status() == Snippet.Status.RECOVERABLE_DEFINED
+                || event.status() == Snippet.Status.RECOVERABLE_NOT_DEFINED;
+        boolean emptied = event.status() == Snippet.Status.VALID && event.isSignatureChange();
+        if (changed.kind() == Snippet.Kind.VAR && (broken || emptied)) {
+            tell("Note: '" + changed.name() + "'" + where
+                    + " has lost its value, because what it depends on was declared anew. Run it again.");
+        } else if (broken) {
+            tell("Note: '" + changed.name() + "'" + where + " cannot be used any more: it "
+                    + compileReport.whyUnusable(changed) + " Correct it and run it again.");
+        }
+    }
+
+    private void tell(String note) {
+        listener.output(CellListener.Stream.ERR, note + "\n");
+    }
+
+    /** Takes the value of an expression, and lets go of the name JShell made up for it. */
+    private Optional<MimeBundle> valueOf(Snippet snippet) {
+        Optional<MimeBundle> value = execution.value();
+        if (snippet.subKind() == Snippet.SubKind.TEMP_VAR_EXPRESSION_SUBKIND) {
+            // Each such name would make every later snippet a little slower to compile.
+            shell.drop(snippet);
+            return value;
+        }
+        return snippet.kind() == Snippet.Kind.EXPRESSION ? value : Optional.empty();
+    }
+
+    private static CellOutcome.Failure interrupted(CellText cell) {
+        String message = "Interrupted: " + cell.name() + " was stopped before its end. Variables are kept.";
+        return new CellOutcome.Failure("Interrupted", message, List.of(message));
+    }
+
+    private static CellOutcome.Failure lost(String how) {
+        return new CellOutcome.Failure(
+                WorkerExecution.LOST,
+                "the worker that ran this cell is gone: " + how,
+                List.of(
+                        "The worker that ran this cell is gone: " + how + ".",
+                        "What earlier cells declared is lost with it. A fresh worker is ready: run again the cells you need."));
+    }
+
+    private static CellOutcome.Failure broken(String how) {
+        String message = "this could not be run, through a fault of the kernel's own: " + how;
+        return new CellOutcome.Failure(
+                "KernelError",
+                message,
+                List.of("KernelError: " + message, "Run the cell again; if it fails again, restart the kernel."));
+    }
+}
