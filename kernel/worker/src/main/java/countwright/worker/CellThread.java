@@ -35,6 +35,11 @@ public final class CellThread extends Thread {
     private static final int RESERVE_BYTES = 4 << 20;
     private static final long LARGEST_BUNDLE = 64L << 20;
 
+    // Made beforehand, for the moment in which nothing can be made any more.
+    private static final byte[] NOTHING = {};
+    private static final Frame.Reply MEMORY_FULL = new Frame.Failed(new Fault.Thrown(
+            OutOfMemoryError.class.getName(), Optional.of("Java heap space"), List.of(), Optional.empty()));
+
     /** What the kernel throws into this thread. Made beforehand, since nothing can be made while it is suspended. */
     @SuppressWarnings("StaticAssignmentOfThrowable")
     static final CellStop STOP = new CellStop();
@@ -80,17 +85,34 @@ public final class CellThread extends Thread {
     @Override
     public void run() {
         current = this;
-        while (true) {
-            Frame.Reply reply;
-            try {
-                reply = answer(requests.take());
-            } catch (InterruptedException lateInterrupt) {
-                continue;
-            } catch (Throwable unexpected) {
-                phase = OURS;
-                reserve = new byte[0];
-                reply = new Frame.Failed(new Fault.Internal(String.valueOf(unexpected)));
+        try {
+            while (true) {
+                serveNext();
             }
+        } catch (Throwable lost) {
+            // A worker that no longer answers would hang its cell for ever; one that is gone is replaced.
+            Runtime.getRuntime().halt(WorkerMain.OUT_OF_MEMORY);
+        }
+    }
+
+    private void serveNext() {
+        Frame.Reply reply;
+        try {
+            reply = answer(requests.take());
+        } catch (InterruptedException lateInterrupt) {
+            return;
+        } catch (OutOfMemoryError full) {
+            phase = OURS;
+            reserve = NOTHING;
+            reply = MEMORY_FULL;
+        } catch (Throwable unexpected) {
+            phase = OURS;
+            reply = new Frame.Failed(new Fault.Internal(String.valueOf(unexpected)));
+        }
+        try {
+            outbox.put(reply);
+        } catch (OutOfMemoryError full) {
+            reserve = NOTHING;
             outbox.put(reply);
         }
     }
@@ -166,7 +188,7 @@ public final class CellThread extends Thread {
     /** Still in the phase of user code: an exception can have methods of its own, which may have to be stopped. */
     private Frame.Failed failed(Throwable thrown) {
         if (thrown instanceof OutOfMemoryError) {
-            reserve = new byte[0];
+            reserve = NOTHING;
         }
         return new Frame.Failed(Faults.of(thrown));
     }
@@ -176,7 +198,7 @@ public final class CellThread extends Thread {
             try {
                 reserve = new byte[RESERVE_BYTES];
             } catch (OutOfMemoryError stillFull) {
-                reserve = new byte[0];
+                reserve = NOTHING;
             }
         }
     }
