@@ -1,7 +1,7 @@
 #!/bin/sh
 # Prints what a trivial cell costs: through the kernel, in JShell in one process, and through the reference Python kernel.
 # Needs the built distribution and a Python with jupyter_client (and ipykernel, for the Python kernel's line), named in
-# COUNTWRIGHT_PYTHON or else python3. Takes some two minutes; run it on a machine that does nothing else.
+# COUNTWRIGHT_PYTHON or else python3. Takes some three minutes; run it on a machine that does nothing else.
 set -u
 
 fail() {

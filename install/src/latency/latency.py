@@ -112,7 +112,8 @@ def main():
     options.add_argument("--java", default="java")
     options.add_argument("--cells", type=int, default=400, help="cells measured in each session")
     options.add_argument("--block", type=int, default=20, help="cells a turn")
-    options.add_argument("--warm", type=int, default=200, help="cells before measuring")
+    options.add_argument("--warm", type=int, default=1500,
+                         help="cells before measuring, so that all have settled: HotSpot compiles javac for long")
     chosen = options.parse_args()
 
     worker = os.pathsep.join(str(jar) for jar in sorted((chosen.home / "lib/worker").glob("*.jar")))
@@ -140,7 +141,7 @@ def main():
 
     medians = {name: statistics.median(values) for name, values in times.items()}
     version = subprocess.run([chosen.java, "-version"], capture_output=True, text=True).stderr.splitlines()[0]
-    print(f"The cell {CELL}, {len(times[base])} times in each session; {os.cpu_count()} cores, "
+    print(f"The cell {CELL}, {len(times[base])} times in each session after {chosen.warm} to warm up; {os.cpu_count()} cores, "
           f"load {os.getloadavg()[0]:.1f}; {version}")
     print(f"{'':58}{'median ms':>10}{'quarter':>9}{'three q.':>9}{'ratio':>7}")
     for name, values in times.items():
