@@ -33,6 +33,7 @@ public final class CellThread extends Thread {
     private static final long STACK_BYTES = 2L << 20;
 
     private static final int RESERVE_BYTES = 4 << 20;
+    private static final long AMPLE_ROOM_BYTES = 32L << 20;
     private static final long LARGEST_BUNDLE = 64L << 20;
 
     // Made beforehand, for the moment in which nothing can be made any more.
@@ -193,8 +194,11 @@ public final class CellThread extends Thread {
         return new Frame.Failed(Faults.of(thrown));
     }
 
+    /** Takes the reserve back only once there is ample room: before that, the cell that mends matters needs it. */
     private void refillReserve() {
-        if (reserve.length == 0) {
+        Runtime memory = Runtime.getRuntime();
+        long room = memory.maxMemory() - memory.totalMemory() + memory.freeMemory();
+        if (reserve.length == 0 && room > AMPLE_ROOM_BYTES) {
             try {
                 reserve = new byte[RESERVE_BYTES];
             } catch (OutOfMemoryError stillFull) {
