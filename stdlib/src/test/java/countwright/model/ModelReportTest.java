@@ -59,6 +59,13 @@ class ModelReportTest {
     }
 
     @Test
+    void covariance_published_showsItsVariances() {
+        // Insect sprays: the variance of a log mean count is 1 / (sum of its counts), which is 174 for spray A.
+        assertThat(PublishedData.fit("insectsprays_poisson").covariance().toString())
+                .containsSubsequence("coefficient", "1 baseline", "0.005747", "2 spray B vs A");
+    }
+
+    @Test
     void rounded_estimateAndInterval_shareTheirDecimals() {
         assertThat(Rounded.of(0.5808, 0.103, 0.4101, 0.8226)).isEqualTo(new Rounded("0.58", "0.41 to 0.82"));
         assertThat(Rounded.of(1.0259, 0.00206, 1.0218, 1.0299)).isEqualTo(new Rounded("1.0259", "1.0218 to 1.0299"));

@@ -105,7 +105,11 @@ final class CompileReport {
         if (code.startsWith("compiler.err.cant.resolve")) {
             return explainUnknown(message);
         }
-        if (code.startsWith("compiler.err.premature.eof") || !piece.whole()) {
+        if (code.startsWith("compiler.err.unclosed.char.lit")) {
+            return "Single quotes hold one character.\nText stands in double quotes: \"like this\".";
+        }
+        boolean open = code.startsWith("compiler.err.premature.eof") || code.startsWith("compiler.err.unclosed");
+        if (open || (!piece.whole() && code.startsWith("compiler.err.expected"))) {
             return message.lines().findFirst().orElse(message)
                     + ".\nThe cell ends before this statement does: close the open bracket, brace or quote.";
         }

@@ -210,7 +210,9 @@ public final class Worker implements AutoCloseable {
     private void lose(Throwable end) {
         String how = describeLoss();
         if (!leaving) {
-            LOG.log(Level.INFO, "worker {0} lost: {1} ({2})", process.pid(), how, String.valueOf(end.getMessage()));
+            // As text, since the logger would put a thousands separator into the process id.
+            LOG.log(Level.INFO, "worker {0} lost: {1}", Long.toString(process.pid()), how);
+            LOG.log(Level.DEBUG, "how its stream ended", end);
         }
         interrupter.close();
         closeQuietly(socket);

@@ -76,6 +76,11 @@ class JShellEngineTest {
         }
 
         @Test
+        void printedLine_isNoResult() {
+            assertNoResult("System.out.printf(\"%d%n\", 3)");
+        }
+
+        @Test
         void emptyCellAndComments_haveNoResult() {
             assertNoResult("");
             assertNoResult("  \n");
@@ -168,6 +173,14 @@ class JShellEngineTest {
                             "         ^^^^^^^^^^^^",
                             "'vehicleCuont' is not known: no variable of that name has been declared or imported.\n"
                                     + "Did you mean 'vehicleCount'?");
+        }
+
+        @Test
+        void textInSingleQuotes_isToldApartFromAnOpenBracket() {
+            assertThat(failureOf("String s = 'hello'").traceback().toString())
+                    .contains("double quotes")
+                    .doesNotContain("open bracket");
+            assertThat(failureOf("?Table").traceback().toString()).doesNotContain("open bracket");
         }
 
         @Test

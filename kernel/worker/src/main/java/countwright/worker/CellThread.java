@@ -208,7 +208,10 @@ public final class CellThread extends Thread {
     }
 
     private static Optional<MimeBundle> render(@Nullable Object value) {
-        return Renderer.render(value).map(CellThread::checkSize);
+        // System.out.printf(...) and append(...) return the stream itself, which is nobody's result.
+        return value == System.out || value == System.err
+                ? Optional.empty()
+                : Renderer.render(value).map(CellThread::checkSize);
     }
 
     /** Refuses what would not fit through the stream, before any of it is on its way. */
