@@ -85,8 +85,8 @@ final class FittedChart {
         double[] x = centres(pools, values);
         double[] observed = observed(pools, x);
 
-        RateUnit unit =
-                RateUnit.forRates(fit.response(), fit.exposure(), Math.max(highest(curve.rates()), highest(observed)));
+        RateText unit =
+                RateText.forRates(fit.response(), fit.exposure(), Math.max(highest(curve.rates()), highest(observed)));
         double top = Math.max(highest(curve.upper()), highest(observed)) * unit.factor();
         Figure empty = Figure.titled(
                         (fit.exposure().isEmpty() ? "Fitted mean count over " : "Fitted rate over ") + covariate,
@@ -100,7 +100,7 @@ final class FittedChart {
         return Chart.of(figure, summary, numbers(unit).toString());
     }
 
-    private Figure withCurve(Figure figure, RateUnit unit, Curve curve) {
+    private Figure withCurve(Figure figure, RateText unit, Curve curve) {
         String interval = fit.levelText() + " interval of the mean";
         double[] rates = unit.scaled(curve.rates());
         double[] lower = unit.scaled(curve.lower());
@@ -145,7 +145,7 @@ final class FittedChart {
         return "observed " + (oneRowEach ? what : "mean " + what) + (adjusted ? ", adjusted" : "");
     }
 
-    private String span(RateUnit unit, Curve curve) {
+    private String span(RateText unit, Curve curve) {
         int last = curve.values().length - 1;
         String start = unit.text(curve.rates()[0]) + " at " + covariate + " " + Scenarios.value(curve.values()[0]);
         return last == 0
@@ -170,7 +170,7 @@ final class FittedChart {
                 + fit.warning();
     }
 
-    private Grid numbers(RateUnit unit) {
+    private Grid numbers(RateText unit) {
         Curve chosen = at(quarters());
         Grid table = Grid.titled("")
                 .numberColumn(covariate)

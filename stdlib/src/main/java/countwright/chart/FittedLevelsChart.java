@@ -50,7 +50,7 @@ final class FittedLevelsChart {
                     highestEnd,
                     Math.max(level.observed(), finiteOr(level.fitted().rateUpper(), 0)));
         }
-        RateUnit unit = RateUnit.forRates(fit.response(), fit.exposure(), highestRate);
+        RateText unit = RateText.forRates(fit.response(), fit.exposure(), highestRate);
         // An interval without end (a level without events) must not squeeze all others into a corner.
         double axisEnd = Math.min(highestEnd, 5 * highestRate) * unit.factor();
         double[] fitted = new double[size];
@@ -115,7 +115,7 @@ final class FittedLevelsChart {
         return Chart.of(figure, summary, grid.toString());
     }
 
-    private static String text(RateUnit unit, LevelRate level) {
+    private static String text(RateText unit, LevelRate level) {
         Prediction p = level.fitted();
         return unit.text(p.rate(), p.rateLower(), p.rateUpper());
     }

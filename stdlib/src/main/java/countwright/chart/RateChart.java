@@ -35,14 +35,14 @@ final class RateChart {
         List<GroupRate> shown = largest(all);
         double pooled = totalCount / totalExposure;
         double highest = shown.stream().mapToDouble(g -> g.rate().rate()).max().orElse(0);
-        RateUnit unit = RateUnit.forRates(count, exposure, Math.max(highest, pooled));
+        RateText unit = RateText.forRates(count, exposure, Math.max(highest, pooled));
         return draw(counted, group, unit, shown, all.size(), pooled, totalCount, totalExposure);
     }
 
     private static Chart draw(
             Counted counted,
             String group,
-            RateUnit unit,
+            RateText unit,
             List<GroupRate> shown,
             int groupCount,
             double pooled,
@@ -85,7 +85,7 @@ final class RateChart {
         Figure figure = Figure.titled("Observed rate by " + group, x, rowAxis)
                 .subtitle("All together: " + Numbers.compact(totalCount) + " " + counted.countName() + " in "
                         + Numbers.significant(totalExposure, 3) + " " + counted.unit() + ", or " + unit.text(pooled)
-                        + perAmount(unit))
+                        + unit.unit().suffix())
                 .caption("Highest rate on top. Bars: exact 95% intervals (Garwood 1936), each group by itself, counts"
                         + " taken as Poisson." + left + counted.leftOutSentence())
                 .rows(counted.countName() + " / " + counted.unit(), rows)
@@ -105,11 +105,6 @@ final class RateChart {
                                         bottom.rate().lower(),
                                         bottom.rate().upper()) + ".");
         return Chart.of(figure, summary, grid.toString());
-    }
-
-    /** Returns " per 1,000" or " for each", which completes a rate in a sentence that has named both columns. */
-    private static String perAmount(RateUnit unit) {
-        return " per " + (unit.factor() == 1 ? "" : Numbers.compact(unit.factor()) + " ") + unit.exposureName();
     }
 
     private static List<GroupRate> largest(List<GroupRate> all) {

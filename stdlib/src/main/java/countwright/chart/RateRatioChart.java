@@ -61,9 +61,8 @@ final class RateRatioChart {
             runsOff |= r.lower() < x.min() || r.upper() > x.max();
             awayFromOne += r.lower() > 1 || r.upper() < 1 ? 1 : 0;
             y[i] = size - i;
-            String interval = Numbers.interval(r.lower(), r.upper());
-            rows.add(new Figure.NamedRow(r.name(), Numbers.ratio(r.ratio()) + " (" + interval + ")"));
-            grid = grid.row(r.name(), Numbers.ratio(r.ratio()), interval);
+            rows.add(new Figure.NamedRow(r.name(), r.ratioText() + " (" + r.intervalText() + ")"));
+            grid = grid.row(r.name(), r.ratioText(), r.intervalText());
         }
         Axis rowAxis = Axis.rows(size);
         int left = fit.rateRatios().size() - size;
@@ -88,7 +87,7 @@ final class RateRatioChart {
             summary.append(summary.isEmpty() ? "" : "; ")
                     .append(r.name())
                     .append(": ")
-                    .append(Numbers.ratio(r.ratio()));
+                    .append(r.ratioText());
         }
         return Chart.of(figure, summary + (size > 6 ? "; and " + (size - 6) + " more." : "."), grid.toString());
     }

@@ -10,6 +10,7 @@ import countwright.fit.Estimate;
 import countwright.show.Grid;
 import countwright.show.MimeBundle;
 import countwright.show.Numbers;
+import countwright.show.RateUnit;
 import java.util.ArrayList;
 import java.util.Iterator;
 import java.util.LinkedHashSet;
@@ -66,9 +67,7 @@ final class ModelReport {
         if (model.fit().isUndetermined(column)) {
             return grid.row(ratio.name(), "not determined", Numbers.ABSENT, Numbers.ABSENT);
         }
-        double standardError = ratio.ratio() * model.fit().standardError(column);
-        Rounded rounded = Rounded.ofRatio(ratio.ratio(), standardError, ratio.lower(), ratio.upper());
-        return grid.row(ratio.name(), rounded.estimate(), rounded.interval(), Numbers.pValue(ratio.pValue()));
+        return grid.row(ratio.name(), ratio.ratioText(), ratio.intervalText(), Numbers.pValue(ratio.pValue()));
     }
 
     private boolean grows(int column) {
@@ -88,9 +87,13 @@ final class ModelReport {
                         unit.scaled(standardError),
                         unit.scaled(baseline.lower()),
                         unit.scaled(baseline.upper()));
-        Grid withRow = grid.row(unit.label("baseline"), rounded.estimate(), rounded.interval(), "");
+        Grid withRow = grid.row(baselineName(unit), rounded.estimate(), rounded.interval(), "");
         List<String> settings = baselineSettings();
         return settings.isEmpty() ? withRow : withRow.note("Baseline: " + String.join(", ", settings) + ".");
+    }
+
+    private static String baselineName(RateUnit unit) {
+        return unit.exposure().isEmpty() ? "baseline mean" : "baseline rate" + unit.suffix();
     }
 
     private Grid hold() {

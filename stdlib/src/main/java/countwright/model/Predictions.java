@@ -4,6 +4,7 @@ import countwright.show.Displayable;
 import countwright.show.Grid;
 import countwright.show.MimeBundle;
 import countwright.show.Numbers;
+import countwright.show.RateUnit;
 import countwright.table.Table;
 import java.util.ArrayList;
 import java.util.LinkedHashSet;
@@ -109,8 +110,8 @@ public final class Predictions implements Displayable {
         List<String> alike = predictions.size() > 1 ? alike(shownColumns(expected)) : List.of();
         List<String> shown = new ArrayList<>(shownColumns(expected));
         shown.removeAll(alike);
-        String caption = "Predicted " + spec.response()
-                + (spec.exposure().isPresent() ? ", with the " + unit.label("").strip() : "");
+        String caption =
+                "Predicted " + spec.response() + (spec.exposure().isPresent() ? ", with the rate" + unit.suffix() : "");
         Grid grid = Grid.titled(caption).numberColumn("row");
         for (String name : shown) {
             grid = table.column(name).kind().equals("numbers") ? grid.numberColumn(name) : grid.textColumn(name);

@@ -110,11 +110,6 @@ public final class Numbers {
                 : significant(value, 4);
     }
 
-    /** Returns a ratio, such as a rate ratio, to three significant digits. */
-    public static String ratio(double value) {
-        return significant(value, 3);
-    }
-
     /**
      * Returns an interval, both ends to the same decimals, so that the end nearer to zero has at least three significant
      * digits and the width at least two: "0.871 to 1.234".

@@ -254,10 +254,10 @@ class ChartsTest {
 
             String text = Charts.rateRatios(model).toString();
 
-            assertThat(model.rateRatios())
-                    .isNotEmpty()
-                    .allSatisfy(
-                            ratio -> assertThat(text).contains(ratio.name()).contains(Numbers.ratio(ratio.ratio())));
+            assertThat(model.rateRatios()).isNotEmpty().allSatisfy(ratio -> {
+                assertThat(text).contains(ratio.name(), ratio.ratioText(), ratio.intervalText());
+                assertThat(model.rateRatioTable().toString()).contains(ratio.ratioText(), ratio.intervalText());
+            });
         }
     }
 

@@ -5,6 +5,7 @@ import static org.assertj.core.api.Assertions.assertThat;
 
 import countwright.reference.PublishedData;
 import countwright.show.MimeBundle;
+import countwright.show.RateUnit;
 import countwright.table.NumberColumn;
 import countwright.table.Table;
 import countwright.table.TextColumn;
@@ -93,6 +94,6 @@ class ModelReportTest {
 
     @Test
     void display_rateBelowATenth_hasTheUnitOfTheCharts() {
-        assertThat(RateUnit.fitting(0.05, Optional.of("km")).label("baseline")).isEqualTo("baseline rate per 1,000 km");
+        assertThat(RateUnit.fitting(0.05, Optional.of("km")).suffix()).isEqualTo(" per 1,000 km");
     }
 }
