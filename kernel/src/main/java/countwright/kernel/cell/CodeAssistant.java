@@ -66,7 +66,9 @@ final class CodeAssistant {
         Map<String, Completions.Match> matches = new LinkedHashMap<>();
         for (boolean fits : new boolean[] {true, false}) {
             for (Suggestion suggestion : suggestions) {
-                if (suggestion.matchesType() == fits) {
+                // The names JShell makes up for bare expressions are nobody's wish.
+                if (suggestion.matchesType() == fits
+                        && !suggestion.continuation().startsWith("$")) {
                     String text = suggestion.continuation();
                     matches.putIfAbsent(text, new Completions.Match(text, typeOf(text)));
                 }

@@ -12,7 +12,6 @@ import java.util.regex.Pattern;
 import java.util.stream.Stream;
 import jdk.jshell.DeclarationSnippet;
 import jdk.jshell.Diag;
-import jdk.jshell.ImportSnippet;
 import jdk.jshell.JShell;
 import jdk.jshell.Snippet;
 
@@ -103,7 +102,7 @@ final class CompileReport {
         String code = error.getCode();
         String message = UserNames.of(String.valueOf(error.getMessage(Locale.ENGLISH)));
         if (code.startsWith("compiler.err.cant.resolve")) {
-            return explainUnknown(message);
+            return explainUnknown(message, error, piece);
         }
         if (code.startsWith("compiler.err.unclosed.char.lit")) {
             return "Single quotes hold one character.\nText stands in double quotes: \"like this\".";
@@ -119,7 +118,7 @@ final class CompileReport {
         return capitalised(message.strip());
     }
 
-    private String explainUnknown(String message) {
+    private String explainUnknown(String message, Diag error, CellSplitter.Piece piece) {
         Matcher symbol = SYMBOL.matcher(message);
         if (!symbol.find()) {
             return capitalised(message.strip());
@@ -134,7 +133,8 @@ final class CompileReport {
                         ? memberSentence(kind, owner)
                         : "no " + kind + " of that name has been declared or imported.");
         if (member) {
-            return text;
+            String question = NearNames.question(name, membersAt(error, piece));
+            return question.isEmpty() ? text : text + "\n" + question;
         }
         Optional<DeclarationSnippet> unusable = shell.snippets()
                 .filter(snippet -> shell.status(snippet) == Snippet.Status.RECOVERABLE_NOT_DEFINED)
@@ -149,7 +149,7 @@ final class CompileReport {
                             ? "Run the cell that sets it again."
                             : "Correct it and run it again.");
         }
-        String question = NearNames.question(name, namesOtherThan(name));
+        String question = NearNames.question(name, namesFor(name));
         return text
                 + "\n"
                 + (question.isEmpty()
@@ -161,14 +161,33 @@ final class CompileReport {
         return owner + " has no such " + kind + ".";
     }
 
-    private Collection<String> namesOtherThan(String unknown) {
+    /** Returns what could stand after the dot at which the compiler gave up. */
+    private List<String> membersAt(Diag error, CellSplitter.Piece piece) {
+        int dot = (int) error.getPosition();
+        String source = piece.source();
+        return dot >= 0 && dot < source.length() && source.charAt(dot) == '.'
+                ? suggestions(source.substring(0, dot + 1))
+                : List.of();
+    }
+
+    /** Returns the names declared, and those in reach that begin as the unknown one does. */
+    private Collection<String> namesFor(String unknown) {
         Stream<String> declared = shell.snippets()
                 .filter(snippet -> shell.status(snippet).isActive())
                 .filter(DeclarationSnippet.class::isInstance)
-                .map(snippet -> ((DeclarationSnippet) snippet).name())
-                .filter(name -> !name.equals(unknown));
-        Stream<String> imported = shell.imports().map(ImportSnippet::name);
-        return Stream.concat(declared, imported).distinct().toList();
+                .map(snippet -> ((DeclarationSnippet) snippet).name());
+        return Stream.concat(declared, suggestions(unknown.substring(0, 1)).stream())
+                .filter(name -> !name.equals(unknown))
+                .distinct()
+                .toList();
+    }
+
+    private List<String> suggestions(String source) {
+        return shell.sourceCodeAnalysis().completionSuggestions(source, source.length(), new int[1]).stream()
+                .map(suggestion -> suggestion.continuation().replaceAll("[^\\w].*", ""))
+                .filter(name -> !name.isEmpty() && !name.startsWith("$"))
+                .distinct()
+                .toList();
     }
 
     private static String capitalised(String text) {

@@ -15,7 +15,7 @@ final class ExceptionReport {
     private static final int LONGEST_LINE = 100;
     private static final String TOP_LEVEL = "do_it$";
 
-    /** The method in which JShell computes a variable's first value, called from the top level on the same line. */
+    /** The method in which JShell computes a variable's first value: it knows the line, its caller only the first. */
     private static final String INITIALISER = "do_it$Aux";
 
     /** Exceptions of these packages carry a message of ours that says all; their class name adds nothing. */
@@ -88,11 +88,14 @@ final class ExceptionReport {
         int told = 0;
         int left = 0;
         String last = "";
+        boolean callsInitialiser = false;
         for (StackTraceElement frame : frames) {
             Optional<Location> location = cells.locate(frame);
-            if (location.isEmpty() || frame.getMethodName().startsWith(INITIALISER)) {
+            if (location.isEmpty() || callsInitialiser) {
+                callsInitialiser = false;
                 continue;
             }
+            callsInitialiser = frame.getMethodName().startsWith(INITIALISER);
             String place = describe(location.get(), frame.getMethodName());
             if (place.equals(last)) {
                 left++;
@@ -115,7 +118,7 @@ final class ExceptionReport {
         String where = "  in " + location.cell().name() + ", line " + location.line();
         if (methodName.startsWith("lambda$")) {
             where += ", in a lambda";
-        } else if (!methodName.equals(TOP_LEVEL) && !methodName.isEmpty()) {
+        } else if (!methodName.startsWith(TOP_LEVEL) && !methodName.isEmpty()) {
             where += ", in " + methodName;
         }
         String source = location.cell().line(location.line()).strip();

@@ -21,8 +21,14 @@ final class KernelSpecHome {
     }
 
     static KernelSpecHome ofThisUser() {
-        return new KernelSpecHome(
-                System.getenv(), System.getProperty("os.name", ""), Path.of(System.getProperty("user.home", "")));
+        return of(System.getenv(), System.getProperty("os.name", ""), System.getProperty("user.home", ""));
+    }
+
+    /** Front ends take the home folder from HOME, where Java asks the system's list of users; they must look in one place. */
+    static KernelSpecHome of(Map<String, String> environment, String system, String javasHome) {
+        String home = environment.getOrDefault("HOME", "");
+        boolean windows = system.toLowerCase(Locale.ROOT).startsWith("windows");
+        return new KernelSpecHome(environment, system, Path.of(windows || home.isEmpty() ? javasHome : home));
     }
 
     /** Returns the user's own folder of kernelspecs. */

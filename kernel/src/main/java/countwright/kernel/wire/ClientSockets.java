@@ -35,7 +35,7 @@ public final class ClientSockets implements AutoCloseable {
     private static final int HANDSHAKE_MILLIS = 400;
 
     private final ZMQ.Context context = ZMQ.context(1);
-    private final Map<Channel, SocketLoop> loops = new EnumMap<>(Channel.class);
+    private final SocketLoops loops = new SocketLoops();
     private final Map<String, CompletableFuture<Void>> beats = new ConcurrentHashMap<>();
     private final CompletableFuture<Void> subscribed = new CompletableFuture<>();
     private final MessageCodec codec;
@@ -54,7 +54,7 @@ public final class ClientSockets implements AutoCloseable {
         for (Channel channel : Channel.values()) {
             connected.put(channel, sockets.connected(channel, connection));
         }
-        connected.forEach((channel, socket) -> sockets.loops.put(
+        connected.forEach((channel, socket) -> sockets.loops.add(
                 channel,
                 new SocketLoop(
                         "client-" + channel.protocolName(),
@@ -62,7 +62,9 @@ public final class ClientSockets implements AutoCloseable {
                         socket,
                         WireLimits.STANDARD,
                         frames -> sockets.receive(channel, frames, deliveries))));
-        sockets.loops.values().forEach(SocketLoop::start);
+        for (Channel channel : Channel.values()) {
+            sockets.loops.on(channel).start();
+        }
         return sockets;
     }
 
@@ -87,7 +89,7 @@ public final class ClientSockets implements AutoCloseable {
             throw new IllegalArgumentException(
                     "a front end sends on shell, control and stdin, not on " + channel.protocolName() + ".");
         }
-        loop(channel).send(codec.encode(new Envelope(Route.none(), message)));
+        loops.on(channel).send(codec.encode(new Envelope(Route.none(), message)));
     }
 
     /**
@@ -104,22 +106,14 @@ public final class ClientSockets implements AutoCloseable {
         CompletableFuture<Void> echo = new CompletableFuture<>();
         beats.put(token, echo);
         // The empty frame is what a REQ socket would send; unlike one, this socket survives a lost echo.
-        loop(Channel.HEARTBEAT).send(List.of(new byte[0], token.getBytes(StandardCharsets.US_ASCII)));
+        loops.on(Channel.HEARTBEAT).send(List.of(new byte[0], token.getBytes(StandardCharsets.US_ASCII)));
         return echo.whenComplete((done, failure) -> beats.remove(token));
     }
 
     /** Sends what is still queued, waiting a second at most, and closes all sockets. */
     @Override
     public void close() {
-        loops.values().forEach(SocketLoop::close);
-        try {
-            for (SocketLoop loop : loops.values()) {
-                loop.join();
-            }
-            context.close();
-        } catch (InterruptedException e) {
-            Thread.currentThread().interrupt();
-        }
+        loops.close(context);
     }
 
     private ZMQ.Socket connected(Channel channel, ConnectionFile connection) {
@@ -160,9 +154,5 @@ public final class ClientSockets implements AutoCloseable {
             subscribed.complete(null);
         }
         deliveries.deliver(channel, envelope);
-    }
-
-    private SocketLoop loop(Channel channel) {
-        return Optional.ofNullable(loops.get(channel)).orElseThrow();
     }
 }

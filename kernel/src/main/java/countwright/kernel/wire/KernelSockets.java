@@ -6,7 +6,6 @@ import java.nio.charset.StandardCharsets;
 import java.util.EnumMap;
 import java.util.List;
 import java.util.Map;
-import java.util.Optional;
 import java.util.UUID;
 import org.zeromq.SocketType;
 import org.zeromq.ZMQ;
@@ -32,7 +31,7 @@ public final class KernelSockets implements AutoCloseable {
     private static final int LONGEST_TOPIC = 1024;
 
     private final ZMQ.Context context = ZMQ.context(1);
-    private final Map<Channel, SocketLoop> loops = new EnumMap<>(Channel.class);
+    private final SocketLoops loops = new SocketLoops();
     private final MessageCodec codec;
     private final WireLimits limits;
     private volatile Deliveries receiver = (channel, envelope) -> {};
@@ -63,18 +62,18 @@ public final class KernelSockets implements AutoCloseable {
         if (connection.key().isEmpty()) {
             LOG.log(Level.WARNING, "The key is empty: anyone who reaches the ports of this kernel can run code in it.");
         }
-        bound.forEach((channel, socket) -> sockets.loops.put(channel, sockets.newLoop(channel, socket)));
-        sockets.loop(Channel.HEARTBEAT).start();
-        sockets.loop(Channel.IOPUB).start();
+        bound.forEach((channel, socket) -> sockets.loops.add(channel, sockets.newLoop(channel, socket)));
+        sockets.loops.on(Channel.HEARTBEAT).start();
+        sockets.loops.on(Channel.IOPUB).start();
         return sockets;
     }
 
     /** Starts to deliver what comes in on shell, control and stdin. To be called once. */
     public void start(Deliveries deliveries) {
         receiver = deliveries;
-        loop(Channel.STDIN).start();
-        loop(Channel.CONTROL).start();
-        loop(Channel.SHELL).start();
+        loops.on(Channel.STDIN).start();
+        loops.on(Channel.CONTROL).start();
+        loops.on(Channel.SHELL).start();
     }
 
     /** Returns the session id that this kernel's messages carry. */
@@ -84,31 +83,23 @@ public final class KernelSockets implements AutoCloseable {
 
     /** Sends a message. */
     public void send(Channel channel, Envelope envelope) {
-        loop(channel).send(codec.encode(envelope));
+        loops.on(channel).send(codec.encode(envelope));
     }
 
     /** Asks a front end a question on stdin; runs the action if no such front end listens there. */
     public void ask(Envelope question, Runnable undeliverable) {
-        loop(Channel.STDIN).send(codec.encode(question), undeliverable);
+        loops.on(Channel.STDIN).send(codec.encode(question), undeliverable);
     }
 
     /** Runs a short action once every message that has arrived on a channel by now has been delivered. */
     public void whenAllIsDelivered(Channel channel, Runnable action) {
-        loop(channel).whenAllIsRead(action);
+        loops.on(channel).whenAllIsRead(action);
     }
 
     /** Sends what is still queued, waiting a second at most for slow front ends, and closes all sockets. */
     @Override
     public void close() {
-        loops.values().forEach(SocketLoop::close);
-        try {
-            for (SocketLoop loop : loops.values()) {
-                loop.join();
-            }
-            context.close();
-        } catch (InterruptedException e) {
-            Thread.currentThread().interrupt();
-        }
+        loops.close(context);
     }
 
     private ZMQ.Socket bound(Channel channel, ConnectionFile connection) {
@@ -143,7 +134,7 @@ public final class KernelSockets implements AutoCloseable {
     private SocketLoop newLoop(Channel channel, ZMQ.Socket socket) {
         return new SocketLoop(channel.protocolName(), context, socket, limits, frames -> {
             switch (channel) {
-                case HEARTBEAT -> loop(Channel.HEARTBEAT).send(frames);
+                case HEARTBEAT -> loops.on(Channel.HEARTBEAT).send(frames);
                 case IOPUB -> welcome(frames.get(0));
                 case SHELL, CONTROL, STDIN -> receive(channel, frames);
             }
@@ -173,9 +164,5 @@ public final class KernelSockets implements AutoCloseable {
                 Header.create("iopub_welcome", session, "kernel"),
                 JsonNodeFactory.instance.objectNode().put("subscription", topic));
         send(Channel.IOPUB, new Envelope(Route.topic(topic), welcome));
-    }
-
-    private SocketLoop loop(Channel channel) {
-        return Optional.ofNullable(loops.get(channel)).orElseThrow();
     }
 }

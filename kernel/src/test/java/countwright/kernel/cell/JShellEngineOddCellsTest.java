@@ -2,12 +2,10 @@ package countwright.kernel.cell;
 
 import static org.assertj.core.api.Assertions.assertThat;
 
-import countwright.kernel.worker.WorkerSettings;
 import java.util.Map;
 import java.util.concurrent.CompletableFuture;
 import java.util.concurrent.TimeUnit;
 import org.junit.jupiter.api.AfterAll;
-import org.junit.jupiter.api.BeforeAll;
 import org.junit.jupiter.api.Test;
 import org.junit.jupiter.api.Timeout;
 import org.junit.jupiter.params.ParameterizedTest;
@@ -17,32 +15,25 @@ import org.junit.jupiter.params.provider.ValueSource;
 @Timeout(120)
 class JShellEngineOddCellsTest {
 
-    private static JShellEngine engine;
+    private static final EngineUnderTest KERNEL = EngineUnderTest.start("256m");
 
-    @BeforeAll
-    static void startEngine() {
-        engine = JShellEngine.start(WorkerSettings.ofInstallation().withJvmOption("-Xmx256m"));
-    }
+    private static final JShellEngine engine = KERNEL.engine();
 
     @AfterAll
     static void closeEngine() {
-        engine.close();
+        KERNEL.close();
     }
 
     private static CellOutcome run(String code) {
-        return engine.evaluate(code, 1, new Heard());
+        return KERNEL.run(code);
     }
 
     private static String resultOf(String code) {
-        CellOutcome outcome = run(code);
-        assertThat(outcome).isInstanceOf(CellOutcome.Success.class);
-        return ((CellOutcome.Success) outcome).result().orElseThrow().plainText();
+        return KERNEL.resultOf(code);
     }
 
     private static CellOutcome.Failure failureOf(String code) {
-        CellOutcome outcome = run(code);
-        assertThat(outcome).isInstanceOf(CellOutcome.Failure.class);
-        return (CellOutcome.Failure) outcome;
+        return KERNEL.failureOf(code);
     }
 
     private static String errOf(String code) {

@@ -2,43 +2,34 @@ package countwright.kernel.cell;
 
 import static org.assertj.core.api.Assertions.assertThat;
 
-import countwright.kernel.worker.WorkerSettings;
 import java.util.Map;
 import java.util.concurrent.CompletableFuture;
 import java.util.concurrent.TimeUnit;
 import org.junit.jupiter.api.AfterAll;
-import org.junit.jupiter.api.BeforeAll;
 import org.junit.jupiter.api.Nested;
 import org.junit.jupiter.api.Test;
 
 class JShellEngineTest {
 
-    private static JShellEngine engine;
+    private static final EngineUnderTest KERNEL = EngineUnderTest.start("512m");
 
-    @BeforeAll
-    static void startEngine() {
-        engine = JShellEngine.start(WorkerSettings.ofInstallation().withJvmOption("-Xmx512m"));
-    }
+    private static final JShellEngine engine = KERNEL.engine();
 
     @AfterAll
     static void closeEngine() {
-        engine.close();
+        KERNEL.close();
     }
 
     private static CellOutcome run(String code) {
-        return engine.evaluate(code, 1, new Heard());
+        return KERNEL.run(code);
     }
 
     private static String resultOf(String code) {
-        CellOutcome outcome = run(code);
-        assertThat(outcome).isInstanceOf(CellOutcome.Success.class);
-        return ((CellOutcome.Success) outcome).result().orElseThrow().plainText();
+        return KERNEL.resultOf(code);
     }
 
     private static CellOutcome.Failure failureOf(String code) {
-        CellOutcome outcome = run(code);
-        assertThat(outcome).isInstanceOf(CellOutcome.Failure.class);
-        return (CellOutcome.Failure) outcome;
+        return KERNEL.failureOf(code);
     }
 
     private static void assertNoResult(String code) {
@@ -211,6 +202,24 @@ class JShellEngineTest {
         }
 
         @Test
+        void exceptionInAVariablesValue_isToldOnItsOwnLineOnce() {
+            assertThat(failureOf("var text = List.of(1)\n    .stream()\n    .map(i -> i)\n    .toList()\n    .get(7);")
+                            .traceback())
+                    .hasSize(2)
+                    .last()
+                    .isEqualTo("  in cell [1], line 5:   .get(7);");
+        }
+
+        @Test
+        void misspeltMember_isNamedWithANearOne() {
+            run("Table near = Table.of(numbers(\"age\", 1, 2));");
+            assertThat(failureOf("near\n    .sumary()").traceback().toString()).contains("Did you mean 'summary'?");
+            assertThat(failureOf("near.rowCuont()").traceback().toString()).contains("Did you mean 'rowCount'?");
+            assertThat(failureOf("Tabel t = near;").traceback().toString()).contains("Did you mean 'Table'?");
+            assertThat(failureOf("near.zzzzzz()").traceback().toString()).doesNotContain("Did you mean");
+        }
+
+        @Test
         void exceptionWithCause_tellsBoth() {
             assertThat(failureOf("throw new IllegalStateException(\"outer\", new RuntimeException(\"inner\"));")
                             .traceback())
@@ -343,6 +352,14 @@ class JShellEngineTest {
             assertThat(completions.start()).isEqualTo(18);
             assertThat(completions.end()).isEqualTo(20);
             assertThat(completions.matches()).contains(new Completions.Match("sqrt(", "function"));
+        }
+
+        @Test
+        void completion_ofAnything_leavesOutNamesNobodyGave() {
+            run("1 + 1");
+            assertThat(engine.complete("List.of(", 8).matches())
+                    .isNotEmpty()
+                    .noneMatch(match -> match.text().startsWith("$"));
         }
 
         @Test

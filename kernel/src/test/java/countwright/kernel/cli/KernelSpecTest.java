@@ -144,6 +144,15 @@ class KernelSpecTest {
             assertThat(place(environment, "Mac OS X")).isEqualTo(Path.of("/chosen/kernels"));
         }
 
+        @Test
+        void place_homeOfTheEnvironment_isWhereFrontEndsLook() {
+            Map<String, String> environment = Map.of("HOME", "/elsewhere");
+            assertThat(KernelSpecHome.of(environment, "Linux", "/home/user").perUser())
+                    .isEqualTo(Path.of("/elsewhere/.local/share/jupyter/kernels"));
+            assertThat(KernelSpecHome.of(Map.of(), "Linux", "/home/user").perUser())
+                    .isEqualTo(Path.of("/home/user/.local/share/jupyter/kernels"));
+        }
+
         private Path place(Map<String, String> environment, String system) {
             return new KernelSpecHome(environment, system, user).perUser();
         }
