@@ -8,9 +8,12 @@ import java.util.List;
 import java.util.Map;
 import java.util.regex.Pattern;
 import org.junit.jupiter.api.Test;
+import org.junit.jupiter.api.condition.DisabledOnOs;
+import org.junit.jupiter.api.condition.OS;
 import org.junit.jupiter.api.io.TempDir;
 
 /** The cells that the README shows run as they stand, in the folder it names. */
+@DisabledOnOs(value = OS.WINDOWS, disabledReason = "the launcher is a POSIX shell script")
 class ReadmeKernelTest {
 
     private static final Pattern JAVA_BLOCK = Pattern.compile("```java\\n(.*?)```", Pattern.DOTALL);
