@@ -10,6 +10,7 @@ final class Tag {
     static final int ANSWER = 6;
     static final int REFUSE = 7;
     static final int LEAVE = 8;
+    static final int RELEASE = 9;
     static final int READY = 16;
     static final int DONE = 17;
     static final int FAILED = 18;
