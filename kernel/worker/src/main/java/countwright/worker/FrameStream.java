@@ -71,6 +71,13 @@ public final class FrameStream {
             writeText(refuse.reason());
         } else if (frame instanceof Frame.Leave) {
             out.writeByte(Tag.LEAVE);
+        } else if (frame instanceof Frame.CellStarted started) {
+            out.writeByte(Tag.CELL_STARTED);
+            out.writeInt(started.restorable());
+        } else if (frame instanceof Frame.CloseAwaited) {
+            out.writeByte(Tag.CLOSE_AWAITED);
+        } else if (frame instanceof Frame.RestoreAsked) {
+            out.writeByte(Tag.RESTORE_ASKED);
         } else if (frame instanceof Frame.Ready ready) {
             out.writeByte(Tag.READY);
             writeText(ready.token());
@@ -132,6 +139,9 @@ public final class FrameStream {
             case Tag.ANSWER -> new Frame.Answer(in.readInt(), readText());
             case Tag.REFUSE -> new Frame.Refuse(in.readInt(), readText());
             case Tag.LEAVE -> new Frame.Leave();
+            case Tag.CELL_STARTED -> new Frame.CellStarted(in.readInt());
+            case Tag.CLOSE_AWAITED -> new Frame.CloseAwaited();
+            case Tag.RESTORE_ASKED -> new Frame.RestoreAsked();
             case Tag.READY -> new Frame.Ready(readText(), in.readLong());
             case Tag.DONE ->
                 new Frame.Done(readText(), in.readBoolean() ? Optional.of(readBundle()) : Optional.empty());
@@ -380,6 +390,9 @@ public final class FrameStream {
         static final int UPDATED = 21;
         static final int CLEARED = 22;
         static final int ASKED = 23;
+        static final int CELL_STARTED = 40;
+        static final int CLOSE_AWAITED = 41;
+        static final int RESTORE_ASKED = 42;
         static final int THROWN = 1;
         static final int UNRESOLVED = 2;
         static final int STOPPED = 3;
