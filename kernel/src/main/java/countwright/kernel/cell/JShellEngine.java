@@ -74,8 +74,7 @@ public final class JShellEngine implements CellEngine {
         try {
             JavaSession runner = mine.join();
             CellOutcome outcome = runner.run(cell, listener, succeeded, stopRequested::get);
-            if (outcome instanceof CellOutcome.Failure failure
-                    && failure.name().equals(WorkerExecution.LOST)) {
+            if (outcome instanceof CellOutcome.Failure failure && failure.name().equals(WorkerExecution.LOST)) {
                 lossTold = true;
                 succeeded.sessionLost();
                 return withOffer(failure);

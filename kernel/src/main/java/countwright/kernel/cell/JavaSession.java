@@ -150,6 +150,8 @@ final class JavaSession {
     private CellOutcome runAgain(
             CellText cell, CellListener quiet, CellListener after, Supplier<Boolean> stopRequested) {
         events.listenWith(quiet);
+        // What the one before has redirected must not reach this one.
+        startedWorker().ifPresent(started -> started.send(new Frame.CellStarted(0)));
         try {
             // Asked for by a cell run again, restoring is what is under way already.
             return new CellRun(shell, execution, cells, cell, quiet, stopRequested, Optional::empty).run();

@@ -53,8 +53,7 @@ final class SessionReserve implements AutoCloseable {
 
     private static boolean isUsable(CompletableFuture<JavaSession> session) {
         return !session.isDone()
-                || (!session.isCompletedExceptionally()
-                        && session.join().loss().isEmpty());
+                || (!session.isCompletedExceptionally() && session.join().loss().isEmpty());
     }
 
     private void refillAfter(long millis) {

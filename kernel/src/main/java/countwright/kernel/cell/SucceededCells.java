@@ -32,17 +32,19 @@ final class SucceededCells {
     private long size;
     private int forgotten;
 
-    /** Takes down a cell that has succeeded; a lost one with the same code has thereby been run again. */
+    /** Takes down a cell that has succeeded; a lost one with the same code has thereby been run again, in its place. */
     synchronized void add(CellText cell) {
+        long order = nextOrder++;
         for (Iterator<Kept> each = lost.iterator(); each.hasNext(); ) {
             Kept old = each.next();
             if (old.cell().code().equals(cell.code())) {
                 each.remove();
                 size -= old.size();
+                order = old.order();
                 break;
             }
         }
-        Kept kept = new Kept(nextOrder++, cell);
+        Kept kept = new Kept(order, cell);
         alive.addLast(kept);
         size += kept.size();
         while (size > MOST_CHARACTERS) {

@@ -114,7 +114,9 @@ final class CellCutter {
 
     /** Resumes what a step of an earlier attempt has held too late. */
     private void letGo() throws InterruptedException {
-        for (EventSet late = machine.eventQueue().remove(1); late != null; late = machine.eventQueue().remove(1)) {
+        for (EventSet late = machine.eventQueue().remove(1);
+                late != null;
+                late = machine.eventQueue().remove(1)) {
             late.resume();
         }
     }

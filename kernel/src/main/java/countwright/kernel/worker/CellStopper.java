@@ -93,7 +93,8 @@ final class CellStopper {
     }
 
     static boolean isInUserCode(ClassType cellThread) {
-        return cellThread.getValue(cellThread.fieldByName("phase")) instanceof IntegerValue phase && phase.value() == CellThread.USER_CODE;
+        return cellThread.getValue(cellThread.fieldByName("phase")) instanceof IntegerValue phase
+                && phase.value() == CellThread.USER_CODE;
     }
 
     /** Tries each thread for a while: the cell is over soon, and what goes on in the pool then would go on for ever. */

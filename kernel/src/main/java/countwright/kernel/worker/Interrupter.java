@@ -20,13 +20,13 @@ final class Interrupter implements AutoCloseable {
 
     private static final Logger LOG = System.getLogger(Interrupter.class.getName());
     private static final long GRACE_MILLIS = 300;
-    private static final long RETRY_MILLIS = 100;
+    private static final long RETRY_MILLIS = 60;
 
     /**
      * For so long a stop waits for a moment in which it leaves no lock held, of which there are many in any loop, and code
      * that catches it has time to end by itself.
      */
-    private static final long CARE_MILLIS = 550;
+    private static final long CARE_MILLIS = 450;
 
     private static final long AGAIN_SOON_MILLIS = 10;
 
@@ -114,6 +114,7 @@ final class Interrupter implements AutoCloseable {
         forcing.lock();
         try {
             if (isStopping(since)) {
+                worker.send(new Frame.StopWhenSpeaking());
                 Debugger.Found found = debugger.stopUserCode(effort);
                 if (found == Debugger.Found.AWAITED_CONNECTION) {
                     worker.send(new Frame.CloseAwaited());

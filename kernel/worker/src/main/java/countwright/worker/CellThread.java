@@ -49,6 +49,8 @@ public final class CellThread extends Thread {
     static volatile int phase = OURS;
     static volatile @Nullable Thread current;
 
+    private static volatile boolean stopWhenSpeaking;
+
     /** Set by the kernel when it has made user code return before its end. */
     static volatile boolean cut;
 
@@ -105,6 +107,18 @@ public final class CellThread extends Thread {
                     "close connection");
             closing.setDaemon(true);
             closing.start();
+        }
+    }
+
+    /** Has this thread stop itself when it next says something: a flood is nearly always where no stop may be thrown. */
+    static void stopWhenSpeaking() {
+        stopWhenSpeaking = true;
+    }
+
+    /** Called where user code on any thread is about to say something. */
+    static void stopIfAsked() {
+        if (stopWhenSpeaking && phase == USER_CODE && Thread.currentThread() == current) {
+            throw STOP;
         }
     }
 
@@ -184,6 +198,7 @@ public final class CellThread extends Thread {
         }
         refillReserve();
         cut = false;
+        stopWhenSpeaking = false;
         // Two layers, because a stop may arrive anywhere until the phase is ours again, also in the inner handlers.
         try {
             Frame.Reply reply = invokeStoppably(method, request.want());

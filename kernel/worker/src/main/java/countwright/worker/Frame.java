@@ -42,6 +42,9 @@ public sealed interface Frame {
     /** Says that a cell starts, and how many cells of a lost session could be run again. */
     record CellStarted(int restorable) implements ToWorker {}
 
+    /** Asks the cell thread to stop when it next prints, shows or asks something. */
+    record StopWhenSpeaking() implements ToWorker {}
+
     /** Asks to close the connection that the cell thread waits for; the debugger has named it. */
     record CloseAwaited() implements ToWorker {}
 

@@ -74,6 +74,8 @@ public final class FrameStream {
         } else if (frame instanceof Frame.CellStarted started) {
             out.writeByte(Tag.CELL_STARTED);
             out.writeInt(started.restorable());
+        } else if (frame instanceof Frame.StopWhenSpeaking) {
+            out.writeByte(Tag.STOP_WHEN_SPEAKING);
         } else if (frame instanceof Frame.CloseAwaited) {
             out.writeByte(Tag.CLOSE_AWAITED);
         } else if (frame instanceof Frame.RestoreAsked) {
@@ -140,6 +142,7 @@ public final class FrameStream {
             case Tag.REFUSE -> new Frame.Refuse(in.readInt(), readText());
             case Tag.LEAVE -> new Frame.Leave();
             case Tag.CELL_STARTED -> new Frame.CellStarted(in.readInt());
+            case Tag.STOP_WHEN_SPEAKING -> new Frame.StopWhenSpeaking();
             case Tag.CLOSE_AWAITED -> new Frame.CloseAwaited();
             case Tag.RESTORE_ASKED -> new Frame.RestoreAsked();
             case Tag.READY -> new Frame.Ready(readText(), in.readLong());
@@ -393,6 +396,7 @@ public final class FrameStream {
         static final int CELL_STARTED = 40;
         static final int CLOSE_AWAITED = 41;
         static final int RESTORE_ASKED = 42;
+        static final int STOP_WHEN_SPEAKING = 43;
         static final int THROWN = 1;
         static final int UNRESOLVED = 2;
         static final int STOPPED = 3;

@@ -107,6 +107,7 @@ final class Outbox {
      * would be, and with it the text. A stop ends it.
      */
     private void waitForRoom() {
+        CellThread.stopIfAsked();
         boolean interrupted = false;
         try {
             synchronized (lock) {

@@ -71,6 +71,8 @@ public final class WorkerMain {
                     streams.putInPlace();
                     Show.onto(stage);
                     stage.restorable(started.restorable());
+                } else if (frame instanceof Frame.StopWhenSpeaking) {
+                    CellThread.stopWhenSpeaking();
                 } else if (frame instanceof Frame.CloseAwaited) {
                     cells.closeAwaited();
                 } else if (frame instanceof Frame.Answer answer) {
