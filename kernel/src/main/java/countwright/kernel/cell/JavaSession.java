@@ -31,6 +31,7 @@ final class JavaSession {
     private final CellMap cells = new CellMap();
     private final WorkerExecution execution = new WorkerExecution(worker, compilerLock);
     private final JShell shell;
+    private final SnippetLedger ledger;
     private final CodeAssistant assistant;
     private volatile boolean used;
     private volatile boolean restored;
@@ -41,6 +42,8 @@ final class JavaSession {
                 // Without this the compiler would see the kernel's own class path.
                 .compilerOptions("--class-path", settings.classPathText())
                 .build();
+        ledger = new SnippetLedger(shell);
+        execution.doBeforeUnlocking(ledger::showAll);
         assistant = new CodeAssistant(shell.sourceCodeAnalysis());
     }
 
@@ -85,7 +88,7 @@ final class JavaSession {
             }
             // The first evaluation is ten times slower than the next, in the compiler as in the worker.
             execution.prepare(Frame.Want.BUNDLE);
-            shell.eval("1 + 1").forEach(event -> shell.drop(event.snippet()));
+            shell.eval("1 + 1").forEach(event -> ledger.forget(event.snippet()));
             return true;
         });
     }
@@ -139,8 +142,8 @@ final class JavaSession {
             return restore.run();
         };
         try {
-            return holdingCompiler(
-                    () -> new CellRun(shell, execution, cells, cell, listener, stopRequested, restoreIfAsked).run());
+            return holdingCompiler(() ->
+                    new CellRun(shell, ledger, execution, cells, cell, listener, stopRequested, restoreIfAsked).run());
         } finally {
             runner.ifPresent(Worker::cellEnded);
         }
@@ -154,7 +157,7 @@ final class JavaSession {
         startedWorker().ifPresent(started -> started.send(new Frame.CellStarted(0)));
         try {
             // Asked for by a cell run again, restoring is what is under way already.
-            return new CellRun(shell, execution, cells, cell, quiet, stopRequested, Optional::empty).run();
+            return new CellRun(shell, ledger, execution, cells, cell, quiet, stopRequested, Optional::empty).run();
         } finally {
             events.listenWith(after);
         }

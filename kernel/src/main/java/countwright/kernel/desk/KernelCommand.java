@@ -66,6 +66,8 @@ public final class KernelCommand {
     private static KernelCommand ofRunningJava(Optional<Path> home) {
         List<String> command = new ArrayList<>();
         command.add(Path.of(System.getProperty("java.home"), "bin", "java").toString());
+        // For the cell engine, which keeps JShell quick in long sessions.
+        command.add("--add-opens=jdk.jshell/jdk.jshell=ALL-UNNAMED");
         home.ifPresent(folder -> command.add("-D" + HOME_PROPERTY + "=" + folder.toAbsolutePath()));
         Optional.ofNullable(System.getProperty(WORKER_PATH_PROPERTY))
                 .ifPresent(path -> command.add("-D" + WORKER_PATH_PROPERTY + "=" + path));

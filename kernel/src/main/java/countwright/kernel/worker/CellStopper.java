@@ -37,7 +37,11 @@ final class CellStopper {
 
     private static final String OUTBOX = "countwright.worker.Outbox";
     private static final String TASK = "java.util.concurrent.ForkJoinTask";
-    private static final String CONCURRENT = "java.util.concurrent.";
+
+    /** Where a stop could leave a lock held or a pool in disorder. */
+    private static final List<String> DELICATE =
+            List.of("java.util.concurrent.ForkJoin", "java.util.concurrent.locks.");
+
     private static final String COMMON_POOL = "ForkJoinPool.commonPool-worker-";
 
     /** The package into which the compiler puts what stands in cells. */
@@ -65,8 +69,12 @@ final class CellStopper {
                 || !(valueOf("STOP") instanceof ObjectReference stop)) {
             return Debugger.Found.NOTHING;
         }
-        if (effort == Debugger.Effort.CUT && new CellCutter(machine, cellThread).cut(thread, stop)) {
-            return Debugger.Found.USER_CODE;
+        if (effort == Debugger.Effort.CUT) {
+            // What waits for a monitor can be made to return as little as it can be thrown into.
+            Debugger.Found freed = free(thread, stop);
+            if (freed != Debugger.Found.USER_CODE || new CellCutter(machine, cellThread).cut(thread, stop)) {
+                return freed;
+            }
         }
         boolean parallel;
         thread.suspend();
@@ -74,7 +82,7 @@ final class CellStopper {
             if (!isInUserCode()) {
                 return Debugger.Found.NOTHING;
             }
-            if (effort == Debugger.Effort.STOP && typeOf(thread.frame(0)).startsWith(CONCURRENT)) {
+            if (effort == Debugger.Effort.STOP && isDelicate(thread)) {
                 return Debugger.Found.LOCKING;
             }
             parallel = hasFrameOf(thread, TASK);
@@ -85,7 +93,7 @@ final class CellStopper {
         if (parallel) {
             stopPool(stop);
         }
-        return effort == Debugger.Effort.STOP ? Debugger.Found.USER_CODE : free(thread, stop);
+        return effort == Debugger.Effort.STOP_AND_FREE ? free(thread, stop) : Debugger.Found.USER_CODE;
     }
 
     private boolean isInUserCode() {
@@ -117,7 +125,7 @@ final class CellStopper {
                 return true;
             }
             // In the middle of the pool's book-keeping, or of our own, a stop would do damage.
-            if (typeOf(thread.frame(0)).startsWith(CONCURRENT) || isSpeaking(thread)) {
+            if (isDelicate(thread) || isSpeaking(thread)) {
                 return false;
             }
             thread.stop(stop);
@@ -135,6 +143,11 @@ final class CellStopper {
             }
         }
         return false;
+    }
+
+    private static boolean isDelicate(ThreadReference thread) throws IncompatibleThreadStateException {
+        String top = typeOf(thread.frame(0));
+        return DELICATE.stream().anyMatch(top::startsWith);
     }
 
     private static String typeOf(StackFrame frame) {
@@ -155,7 +168,7 @@ final class CellStopper {
                 if (owner != null && !owner.equals(thread) && runsCells(owner) && !isSpeaking(owner)) {
                     owner.stop(stop);
                 }
-                return Debugger.Found.USER_CODE;
+                return Debugger.Found.MONITOR;
             }
             ObjectReference connection = awaitedConnection(thread);
             if (connection == null) {

@@ -110,6 +110,8 @@ final class Debugger implements AutoCloseable {
         LOCKING,
         /** Running user code, into which a stop was thrown. */
         USER_CODE,
+        /** Waiting for a monitor; what holds it was stopped if that is user code. */
+        MONITOR,
         /** Waiting for a connection in native code; the cell thread's class has been told which. */
         AWAITED_CONNECTION
     }
