@@ -96,11 +96,26 @@ final class LiveKernel implements AutoCloseable {
         return send(Channel.SHELL, type, content);
     }
 
+    /** Asks for the running cell to be interrupted, and does not wait for the reply. */
+    Message askForInterrupt() {
+        return send(Channel.CONTROL, "interrupt_request", empty());
+    }
+
     /** Waits for the reply to something asked, and returns its content. */
-    JsonNode reply(Message request) throws InterruptedException {
-        return await(Channel.SHELL, request, message -> message.type().endsWith("_reply"))
+    JsonNode reply(Channel channel, Message request) throws InterruptedException {
+        return await(channel, request, message -> message.type().endsWith("_reply"))
                 .message()
                 .content();
+    }
+
+    /** Returns all that has been replied to something asked. */
+    List<JsonNode> replies(Channel channel, Message request) {
+        synchronized (heard) {
+            return heard.stream()
+                    .filter(item -> item.channel() == channel && item.message().isCausedBy(request.header()))
+                    .<JsonNode>map(item -> item.message().content())
+                    .toList();
+        }
     }
 
     /** Returns when the reply to a cell that has ended arrived here, in the terms of {@link System#nanoTime}. */
@@ -141,6 +156,11 @@ final class LiveKernel implements AutoCloseable {
                                 .path("execution_state")
                                 .asString("")
                                 .equals("idle"));
+        return outcome(cell);
+    }
+
+    /** Returns what has been heard of a cell that has ended. */
+    Outcome outcome(Message cell) {
         return new Outcome(
                 texts(cell, "stream", content -> content.path("text").asString("")),
                 texts(

@@ -2,6 +2,7 @@ package countwright.demo;
 
 import static org.assertj.core.api.Assertions.assertThat;
 
+import countwright.kernel.wire.Channel;
 import countwright.kernel.wire.Message;
 import java.nio.file.Path;
 import java.util.Map;
@@ -202,7 +203,7 @@ class WorkerLossKernelTest {
                                     .put("code", "Math.sq")
                                     .put("cursor_pos", 7));
             worker.destroyForcibly();
-            JsonNode reply = kernel().reply(asked);
+            JsonNode reply = kernel().reply(Channel.SHELL, asked);
             assertThat(reply.path("matches").toString()).contains("sqrt(");
             long answered = System.nanoTime();
             Message next = kernel().begin("6 * 7");

@@ -32,8 +32,8 @@ final class CellStopper {
     /** Native waits are called from close by. */
     private static final int NEAREST_FRAMES = 12;
 
-    /** How often a thread of a pool is tried that cannot be stopped just now; each try takes a few milliseconds. */
-    private static final int MOST_TRIES = 20;
+    /** How long the threads of a pool are stopped, share after share. */
+    private static final long POOL_MILLIS = 400;
 
     private static final String OUTBOX = "countwright.worker.Outbox";
     private static final String TASK = "java.util.concurrent.ForkJoinTask";
@@ -105,13 +105,20 @@ final class CellStopper {
                 && phase.value() == CellThread.USER_CODE;
     }
 
-    /** Tries each thread for a while: the cell is over soon, and what goes on in the pool then would go on for ever. */
+    /**
+     * Stops the pool's threads again and again, since each goes on with its next share; until none is left, but not for
+     * long. Whatever went on in the pool after the cell would go on for ever.
+     */
     private void stopPool(ObjectReference stop) throws InvalidTypeException, IncompatibleThreadStateException {
-        for (ThreadReference thread : machine.allThreads()) {
-            for (int i = 0; i < MOST_TRIES && thread.name().startsWith(COMMON_POOL); i++) {
-                if (stopWorkerOfPool(thread, stop)) {
-                    break;
-                }
+        List<ThreadReference> pool = machine.allThreads().stream()
+                .filter(thread -> thread.name().startsWith(COMMON_POOL))
+                .toList();
+        long deadline = System.nanoTime() + POOL_MILLIS * 1_000_000;
+        boolean quiet = false;
+        while (!quiet && System.nanoTime() < deadline) {
+            quiet = true;
+            for (ThreadReference thread : pool) {
+                quiet &= stopWorkerOfPool(thread, stop);
             }
         }
     }
@@ -129,7 +136,7 @@ final class CellStopper {
                 return false;
             }
             thread.stop(stop);
-            return true;
+            return false;
         } finally {
             thread.resume();
         }
