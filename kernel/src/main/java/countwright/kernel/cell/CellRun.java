@@ -279,7 +279,12 @@ final class CellRun {
             }
             ledger.forget(snippet);
         } else if (snippet instanceof VarSnippet variable && event.status() == Snippet.Status.OVERWRITTEN) {
-            ledger.className(snippet).ifPresent(owner -> execution.release(owner, variable.name()));
+            // Declared anew in the very same words, a variable keeps its class.
+            Optional<String> successor =
+                    Optional.ofNullable(event.causeSnippet()).flatMap(ledger::className);
+            ledger.className(snippet)
+                    .filter(owner -> !successor.equals(Optional.of(owner)))
+                    .ifPresent(owner -> execution.release(owner, variable.name()));
         }
     }
 

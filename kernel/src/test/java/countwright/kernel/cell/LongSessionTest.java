@@ -137,6 +137,17 @@ class LongSessionTest {
     }
 
     @Test
+    void variablesDeclaredAnewHaveTheirNewValues() {
+        for (int i = 0; i < 3; i++) {
+            assertThat(session.resultOf("int[] same = {1, 2}; int count = 0;\nsame.length"))
+                    .isEqualTo("2");
+            assertThat(session.resultOf("int[] changed = new int[" + i + "]; String told = \"n" + i + "\";\n"
+                            + "told + changed.length"))
+                    .isEqualTo("n" + i + i);
+        }
+    }
+
+    @Test
     void valueOfABareExpressionIsReleased() {
         session.run("Object shown = new Object(); var look = new java.lang.ref.WeakReference<>(shown);");
         session.run("look.get()");
