@@ -103,23 +103,32 @@ class ChaosKernelTest {
                 switch (kind) {
                     case VALUE -> cell(kernel, kind, number + " * 7919", token);
                     case PRINTED -> cell(kernel, kind, "System.out.println(" + number + " * 7919);", token + "\n");
-                    case SLOW -> cell(kernel, kind, "Thread.sleep(" + random.nextInt(400) + ");\n" + number + " * 7919", token);
-                    case COMPLETE -> new Asked(
-                            kind,
-                            Channel.SHELL,
-                            kernel.ask("complete_request", code("Math.sq").put("cursor_pos", 7)),
-                            "sqrt(");
-                    case INSPECT -> new Asked(
-                            kind,
-                            Channel.SHELL,
-                            kernel.ask(
-                                    "inspect_request",
-                                    code("Math.sqrt(2)").put("cursor_pos", 7).put("detail_level", 0)),
-                            "double Math.sqrt");
-                    case KERNEL_INFO -> new Asked(
-                            kind, Channel.SHELL, kernel.ask("kernel_info_request", empty()), "countwright");
-                    case IS_COMPLETE -> new Asked(
-                            kind, Channel.SHELL, kernel.ask("is_complete_request", code("int f() {")), "incomplete");
+                    case SLOW ->
+                        cell(kernel, kind, "Thread.sleep(" + random.nextInt(400) + ");\n" + number + " * 7919", token);
+                    case COMPLETE ->
+                        new Asked(
+                                kind,
+                                Channel.SHELL,
+                                kernel.ask("complete_request", code("Math.sq").put("cursor_pos", 7)),
+                                "sqrt(");
+                    case INSPECT ->
+                        new Asked(
+                                kind,
+                                Channel.SHELL,
+                                kernel.ask(
+                                        "inspect_request",
+                                        code("Math.sqrt(2)")
+                                                .put("cursor_pos", 7)
+                                                .put("detail_level", 0)),
+                                "double Math.sqrt");
+                    case KERNEL_INFO ->
+                        new Asked(kind, Channel.SHELL, kernel.ask("kernel_info_request", empty()), "countwright");
+                    case IS_COMPLETE ->
+                        new Asked(
+                                kind,
+                                Channel.SHELL,
+                                kernel.ask("is_complete_request", code("int f() {")),
+                                "incomplete");
                     case INTERRUPT -> new Asked(kind, Channel.CONTROL, kernel.askForInterrupt(), "ok");
                 });
     }
@@ -151,9 +160,13 @@ class ChaosKernelTest {
         }
         switch (each.kind()) {
             case VALUE, SLOW ->
-                assertThat(kernel.outcome(each.message()).value()).as("value of " + each).isEqualTo(each.expected());
+                assertThat(kernel.outcome(each.message()).value())
+                        .as("value of " + each)
+                        .isEqualTo(each.expected());
             case PRINTED ->
-                assertThat(kernel.outcome(each.message()).printed()).as("output of " + each).endsWith(each.expected());
+                assertThat(kernel.outcome(each.message()).printed())
+                        .as("output of " + each)
+                        .endsWith(each.expected());
             default -> assertThat(reply.toString()).as("reply to " + each).contains(each.expected());
         }
     }

@@ -12,9 +12,16 @@ import java.util.Optional;
 import java.util.concurrent.CompletableFuture;
 import java.util.concurrent.CompletionException;
 import java.util.concurrent.atomic.AtomicBoolean;
+import java.util.function.Function;
 
 /** Cells compiled by JShell in this process and run in a worker, which is replaced whenever it is lost. */
 public final class JShellEngine implements CellEngine {
+
+    /** How often a question is asked while sessions come and go. */
+    private static final int MOST_ATTEMPTS = 4;
+
+    /** How long a question waits for the session that replaces a lost one. */
+    private static final Duration REPLACEMENT = Duration.ofSeconds(5);
 
     private final SessionReserve reserve;
     private final SucceededCells succeeded = new SucceededCells();
@@ -123,17 +130,55 @@ public final class JShellEngine implements CellEngine {
 
     @Override
     public Completeness completeness(String code) {
-        return session.join().completeness(code);
+        return asking(each -> each.completeness(code));
     }
 
     @Override
     public Completions complete(String code, int cursor) {
-        return session.join().complete(code, cursor);
+        return asking(each -> each.complete(code, cursor));
     }
 
     @Override
     public MimeBundle inspect(String code, int cursor, Detail detail) {
-        return session.join().inspect(code, cursor, detail);
+        return asking(each -> each.inspect(code, cursor, detail));
+    }
+
+    /**
+     * Asks the compiler something. With its worker JShell closes itself: a question that comes then, or is under way, is
+     * asked again of the session that takes the place of the lost one.
+     */
+    private <T> T asking(Function<JavaSession, T> question) {
+        for (int attempt = 1; true; attempt++) {
+            CompletableFuture<JavaSession> asked = session;
+            try {
+                return question.apply(asked.join());
+            } catch (IllegalStateException | CompletionException e) {
+                boolean lost =
+                        asked.isCompletedExceptionally() || asked.join().loss().isPresent();
+                if (!lost || attempt == MOST_ATTEMPTS || !awaitReplacement(asked)) {
+                    throw e;
+                }
+            }
+        }
+    }
+
+    private boolean awaitReplacement(CompletableFuture<JavaSession> lost) {
+        long deadline = System.nanoTime() + REPLACEMENT.toNanos();
+        synchronized (turns) {
+            while (session == lost && !closed) {
+                long left = (deadline - System.nanoTime()) / 1_000_000;
+                if (left <= 0) {
+                    return false;
+                }
+                try {
+                    turns.wait(left);
+                } catch (InterruptedException closing) {
+                    Thread.currentThread().interrupt();
+                    return false;
+                }
+            }
+            return !closed;
+        }
     }
 
     @Override
@@ -153,6 +198,7 @@ public final class JShellEngine implements CellEngine {
         CompletableFuture<JavaSession> current;
         synchronized (turns) {
             closed = true;
+            turns.notifyAll();
             current = session;
         }
         reserve.close();
@@ -190,6 +236,7 @@ public final class JShellEngine implements CellEngine {
             }
             fresh = reserve.take();
             session = fresh;
+            turns.notifyAll();
         }
         watch(fresh);
         if (!lost.isCompletedExceptionally()) {
