@@ -21,7 +21,7 @@ public final class JShellEngine implements CellEngine {
     private static final int MOST_ATTEMPTS = 4;
 
     /** How long a question waits for the session that replaces a lost one. */
-    private static final Duration REPLACEMENT = Duration.ofSeconds(5);
+    private static final Duration REPLACEMENT = Duration.ofSeconds(20);
 
     private final SessionReserve reserve;
     private final SucceededCells succeeded = new SucceededCells();
@@ -152,7 +152,8 @@ public final class JShellEngine implements CellEngine {
             CompletableFuture<JavaSession> asked = session;
             try {
                 return question.apply(asked.join());
-            } catch (IllegalStateException | CompletionException e) {
+            } catch (RuntimeException e) {
+                // Of many kinds: closed, or closing in the middle of an answer.
                 boolean lost =
                         asked.isCompletedExceptionally() || asked.join().loss().isPresent();
                 if (!lost || attempt == MOST_ATTEMPTS || !awaitReplacement(asked)) {
