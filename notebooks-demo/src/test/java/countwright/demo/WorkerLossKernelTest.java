@@ -164,8 +164,13 @@ class WorkerLossKernelTest {
     @Test
     void haltedFromOutside_interruptReportsItAndTheSecondReplacesIt() throws Exception {
         TIMES.within(1.0, "kill -STOP, from the second interrupt", () -> {
-            Message halting = kernel().begin("System.out.println(\"going\"); " + KILL.formatted("-STOP"));
+            ProcessHandle worker = worker();
+            Message halting = kernel().begin("{ System.out.println(\"going\"); while (true) {} }");
             kernel().awaitOutput(halting);
+            int status = new ProcessBuilder("kill", "-STOP", Long.toString(worker.pid()))
+                    .start()
+                    .waitFor();
+            assertThat(status).isZero();
             kernel().interrupt();
             kernel().complainedAt(halting, "interrupt again to end its worker");
             long again = System.nanoTime();
