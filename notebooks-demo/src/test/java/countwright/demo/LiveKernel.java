@@ -28,7 +28,7 @@ final class LiveKernel implements AutoCloseable {
     private final Process process;
     private final ClientSockets sockets;
 
-    private record Heard(Channel channel, Message message) {}
+    private record Heard(Channel channel, Message message, long nanoTime) {}
 
     /**
      * What became of a cell.
@@ -43,7 +43,7 @@ final class LiveKernel implements AutoCloseable {
         this.process = process;
         this.sockets = ClientSockets.connect(connection, "tester", (channel, envelope) -> {
             synchronized (heard) {
-                heard.add(new Heard(channel, envelope.message()));
+                heard.add(new Heard(channel, envelope.message(), System.nanoTime()));
                 heard.notifyAll();
             }
         });
@@ -81,6 +81,65 @@ final class LiveKernel implements AutoCloseable {
         return send(Channel.SHELL, "execute_request", empty().put("code", code).put("allow_stdin", false));
     }
 
+    /** Sends a cell that may ask for input. */
+    Message beginAsking(String code) {
+        return send(Channel.SHELL, "execute_request", empty().put("code", code).put("allow_stdin", true));
+    }
+
+    /** Waits until a cell has asked for input. */
+    void awaitQuestion(Message cell) throws InterruptedException {
+        await(Channel.STDIN, cell, message -> message.type().equals("input_request"));
+    }
+
+    /** Asks for something on the shell channel, and does not wait for the reply. */
+    Message ask(String type, ObjectNode content) {
+        return send(Channel.SHELL, type, content);
+    }
+
+    /** Asks for the running cell to be interrupted, and does not wait for the reply. */
+    Message askForInterrupt() {
+        return send(Channel.CONTROL, "interrupt_request", empty());
+    }
+
+    /** Waits for the reply to something asked, and returns its content. */
+    JsonNode reply(Channel channel, Message request) throws InterruptedException {
+        return await(channel, request, message -> message.type().endsWith("_reply"))
+                .message()
+                .content();
+    }
+
+    /** Returns all that has been replied to something asked. */
+    List<JsonNode> replies(Channel channel, Message request) {
+        synchronized (heard) {
+            return heard.stream()
+                    .filter(item -> item.channel() == channel && item.message().isCausedBy(request.header()))
+                    .<JsonNode>map(item -> item.message().content())
+                    .toList();
+        }
+    }
+
+    /** Returns when the reply to a cell that has ended arrived here, in the terms of {@link System#nanoTime}. */
+    long repliedAt(Message cell) throws InterruptedException {
+        return await(Channel.SHELL, cell, message -> message.type().equals("execute_reply"))
+                .nanoTime();
+    }
+
+    /** Waits until a cell has written a text to its error stream, and returns when that arrived. */
+    long complainedAt(Message cell, String text) throws InterruptedException {
+        return await(
+                        Channel.IOPUB,
+                        cell,
+                        message -> message.type().equals("stream")
+                                && message.content().path("name").asString("").equals("stderr")
+                                && message.content().path("text").asString("").contains(text))
+                .nanoTime();
+    }
+
+    /** Returns the processes that the kernel has started: the worker, and one in reserve. */
+    List<ProcessHandle> workers() {
+        return process.descendants().toList();
+    }
+
     /** Waits until a cell has printed something. */
     void awaitOutput(Message cell) throws InterruptedException {
         await(Channel.IOPUB, cell, message -> message.type().equals("stream"));
@@ -97,6 +156,11 @@ final class LiveKernel implements AutoCloseable {
                                 .path("execution_state")
                                 .asString("")
                                 .equals("idle"));
+        return outcome(cell);
+    }
+
+    /** Returns what has been heard of a cell that has ended. */
+    Outcome outcome(Message cell) {
         return new Outcome(
                 texts(cell, "stream", content -> content.path("text").asString("")),
                 texts(
@@ -136,13 +200,19 @@ final class LiveKernel implements AutoCloseable {
         return request;
     }
 
-    private void await(Channel channel, Message cause, Predicate<Message> wanted) throws InterruptedException {
+    private Heard await(Channel channel, Message cause, Predicate<Message> wanted) throws InterruptedException {
         long deadline = System.nanoTime() + TimeUnit.SECONDS.toNanos(LIMIT_SECONDS);
         synchronized (heard) {
-            while (heard.stream()
-                    .noneMatch(item -> item.channel() == channel
+            int next = 0;
+            while (true) {
+                for (; next < heard.size(); next++) {
+                    Heard item = heard.get(next);
+                    if (item.channel() == channel
                             && item.message().isCausedBy(cause.header())
-                            && wanted.test(item.message()))) {
+                            && wanted.test(item.message())) {
+                        return item;
+                    }
+                }
                 assertThat(process.isAlive()).as("the kernel lives").isTrue();
                 long left = TimeUnit.NANOSECONDS.toMillis(deadline - System.nanoTime());
                 assertThat(left).as("time left for " + cause.type()).isPositive();

@@ -26,6 +26,20 @@ public interface Stage {
      */
     String ask(String prompt, Echo echo);
 
+    /**
+     * Has the cells of a lost session run again, once the statement that asked has ended.
+     *
+     * @throws IllegalStateException if this host does not keep cells
+     */
+    default void restoreSession() {
+        throw new IllegalStateException("there is no session to restore: this is not a notebook.");
+    }
+
+    /** Returns how many cells {@link #restoreSession} would run again. */
+    default int restorableCells() {
+        return 0;
+    }
+
     /** When shown things are removed. */
     enum Clearing {
         /** At once. */

@@ -23,6 +23,7 @@ final class CellEvents implements WorkerListener {
     private final CompletableFuture<Worker> worker = new CompletableFuture<>();
     private final Utf8Decoder out = new Utf8Decoder();
     private final Utf8Decoder err = new Utf8Decoder();
+    private final AtomicBoolean restoreAsked = new AtomicBoolean();
     private volatile @Nullable CellListener listener;
 
     /** Says which worker questions are answered to. */
@@ -30,9 +31,15 @@ final class CellEvents implements WorkerListener {
         worker.complete(speaker);
     }
 
-    /** Sends everything from here on to a listener. */
+    /** Sends everything from here on to the listener of a cell that starts. */
     void listenWith(CellListener cellListener) {
+        restoreAsked.set(false);
         listener = cellListener;
+    }
+
+    /** Returns whether the worker has asked to restore the lost session since the last call or the start of the cell. */
+    boolean takeRestoreAsked() {
+        return restoreAsked.getAndSet(false);
     }
 
     @Override
@@ -41,7 +48,9 @@ final class CellEvents implements WorkerListener {
         if (current == null) {
             return;
         }
-        if (frame instanceof Frame.Output output) {
+        if (frame instanceof Frame.RestoreAsked) {
+            restoreAsked.set(true);
+        } else if (frame instanceof Frame.Output output) {
             byte[] bytes = output.bytes().toArray();
             if (output.channel() == Frame.Channel.OUT) {
                 say(current, CellListener.Stream.OUT, out.decode(bytes));

@@ -29,6 +29,7 @@ final class CellRun {
     private final CellText cell;
     private final CellListener listener;
     private final Supplier<Boolean> stopRequested;
+    private final Supplier<Optional<CellOutcome.Failure>> afterPiece;
     private final CompileReport compileReport;
     private final List<Waiting> waiting = new ArrayList<>();
     private final List<SnippetEvent> dependents = new ArrayList<>();
@@ -44,7 +45,8 @@ final class CellRun {
             CellMap cells,
             CellText cell,
             CellListener listener,
-            Supplier<Boolean> stopRequested) {
+            Supplier<Boolean> stopRequested,
+            Supplier<Optional<CellOutcome.Failure>> afterPiece) {
         this.shell = shell;
         this.ledger = ledger;
         this.execution = execution;
@@ -52,6 +54,7 @@ final class CellRun {
         this.cell = cell;
         this.listener = listener;
         this.stopRequested = stopRequested;
+        this.afterPiece = afterPiece;
         this.compileReport = new CompileReport(shell);
     }
 
@@ -79,6 +82,9 @@ final class CellRun {
             Piece piece = pieces.get(i);
             boolean shown = i == pieces.size() - 1 && piece.showsValue();
             outcome = runPiece(piece, shown ? Frame.Want.BUNDLE : Frame.Want.NOTHING);
+            if (outcome instanceof CellOutcome.Success) {
+                outcome = afterPiece.get().<CellOutcome>map(failure -> failure).orElse(outcome);
+            }
             if (outcome instanceof CellOutcome.Failure) {
                 return stopRequested.get() && execution.loss().isEmpty() ? interrupted(cell) : outcome;
             }
@@ -300,7 +306,7 @@ final class CellRun {
                 "the worker that ran this cell is gone: " + how,
                 List.of(
                         "The worker that ran this cell is gone: " + how + ".",
-                        "What earlier cells declared is lost with it. A fresh worker is ready: run again the cells you need."));
+                        "What earlier cells declared is lost with it. A fresh worker is ready."));
     }
 
     private static CellOutcome.Failure broken(String how) {

@@ -4,6 +4,7 @@ import countwright.kernel.worker.WorkerSettings;
 import countwright.show.MimeBundle;
 import countwright.show.Stage;
 import java.time.Duration;
+import java.util.ArrayList;
 import java.util.LinkedHashMap;
 import java.util.List;
 import java.util.Map;
@@ -11,11 +12,19 @@ import java.util.Optional;
 import java.util.concurrent.CompletableFuture;
 import java.util.concurrent.CompletionException;
 import java.util.concurrent.atomic.AtomicBoolean;
+import java.util.function.Function;
 
 /** Cells compiled by JShell in this process and run in a worker, which is replaced whenever it is lost. */
 public final class JShellEngine implements CellEngine {
 
-    private final WorkerSettings settings;
+    /** How often a question is asked while sessions come and go. */
+    private static final int MOST_ATTEMPTS = 4;
+
+    /** How long a question waits for the session that replaces a lost one. */
+    private static final Duration REPLACEMENT = Duration.ofSeconds(20);
+
+    private final SessionReserve reserve;
+    private final SucceededCells succeeded = new SucceededCells();
     private final AtomicBoolean stopRequested = new AtomicBoolean();
 
     /** Guards what decides which session the next cell runs in, and which cell tells of a loss. */
@@ -29,8 +38,9 @@ public final class JShellEngine implements CellEngine {
     private CellListener lastListener = new Unheard();
 
     private JShellEngine(WorkerSettings settings) {
-        this.settings = settings;
-        this.session = startSession();
+        this.reserve = new SessionReserve(settings);
+        this.session = reserve.take();
+        watch(session);
     }
 
     /** Starts a session behind the caller's back and returns at once; the first use waits for it. */
@@ -41,7 +51,8 @@ public final class JShellEngine implements CellEngine {
     @Override
     public CellOutcome evaluate(String code, int executionCount, CellListener listener) {
         lastListener = listener;
-        return run(new CellText("cell [" + executionCount + "]", code), listener);
+        CellText cell = new CellText("cell [" + executionCount + "]", code);
+        return run(cell, listener, code.isBlank() ? Remembering.NO : Remembering.YES);
     }
 
     @Override
@@ -49,11 +60,11 @@ public final class JShellEngine implements CellEngine {
         CellListener listener = new WithoutQuestions(lastListener);
         Map<String, CellOutcome> outcomes = new LinkedHashMap<>();
         expressions.forEach((name, code) ->
-                outcomes.put(name, run(new CellText("expression '" + name + "'", code), listener)));
+                outcomes.put(name, run(new CellText("expression '" + name + "'", code), listener, Remembering.NO)));
         return outcomes;
     }
 
-    private CellOutcome run(CellText cell, CellListener listener) {
+    private CellOutcome run(CellText cell, CellListener listener, Remembering remembering) {
         CompletableFuture<JavaSession> mine;
         synchronized (turns) {
             stopRequested.set(false);
@@ -62,14 +73,22 @@ public final class JShellEngine implements CellEngine {
             lossToReport.ifPresent(how -> listener.output(
                     CellListener.Stream.ERR,
                     "Note: the worker was lost between two cells (" + how
-                            + "), and what earlier cells declared with it. This cell runs in a fresh one.\n"));
+                            + "), and what earlier cells declared with it. This cell runs in a fresh one.\n"
+                            + offer().map(line -> line + "\n").orElse("")));
             lossToReport = Optional.empty();
         }
         boolean lossTold = false;
         try {
-            CellOutcome outcome = mine.join().run(cell, listener, stopRequested::get);
-            lossTold = outcome instanceof CellOutcome.Failure failure
-                    && failure.name().equals(WorkerExecution.LOST);
+            JavaSession runner = mine.join();
+            CellOutcome outcome = runner.run(cell, listener, succeeded, stopRequested::get);
+            if (outcome instanceof CellOutcome.Failure failure && failure.name().equals(WorkerExecution.LOST)) {
+                lossTold = true;
+                succeeded.sessionLost();
+                return withOffer(failure);
+            }
+            if (outcome instanceof CellOutcome.Success && remembering == Remembering.YES && !runner.hasRestored()) {
+                succeeded.add(cell);
+            }
             return outcome;
         } catch (CompletionException e) {
             lossTold = true;
@@ -79,6 +98,22 @@ public final class JShellEngine implements CellEngine {
         } finally {
             endTurn(mine, lossTold);
         }
+    }
+
+    /** Says what can be done about the loss, in one line; empty if no cell had succeeded. */
+    private Optional<String> offer() {
+        int count = succeeded.lostCount();
+        if (count == 0) {
+            return Optional.empty();
+        }
+        String cells = count == 1 ? "the cell that had succeeded" : "the " + count + " cells that had succeeded";
+        return Optional.of("Session.restore() runs " + cells + " again, in order.");
+    }
+
+    private CellOutcome.Failure withOffer(CellOutcome.Failure failure) {
+        List<String> lines = new ArrayList<>(failure.traceback());
+        offer().ifPresent(lines::add);
+        return new CellOutcome.Failure(failure.name(), failure.message(), lines);
     }
 
     private void endTurn(CompletableFuture<JavaSession> mine, boolean lossTold) {
@@ -95,17 +130,56 @@ public final class JShellEngine implements CellEngine {
 
     @Override
     public Completeness completeness(String code) {
-        return session.join().completeness(code);
+        return asking(each -> each.completeness(code));
     }
 
     @Override
     public Completions complete(String code, int cursor) {
-        return session.join().complete(code, cursor);
+        return asking(each -> each.complete(code, cursor));
     }
 
     @Override
     public MimeBundle inspect(String code, int cursor, Detail detail) {
-        return session.join().inspect(code, cursor, detail);
+        return asking(each -> each.inspect(code, cursor, detail));
+    }
+
+    /**
+     * Asks the compiler something. With its worker JShell closes itself: a question that comes then, or is under way, is
+     * asked again of the session that takes the place of the lost one.
+     */
+    private <T> T asking(Function<JavaSession, T> question) {
+        for (int attempt = 1; true; attempt++) {
+            CompletableFuture<JavaSession> asked = session;
+            try {
+                return question.apply(asked.join());
+            } catch (RuntimeException e) {
+                // Of many kinds: closed, or closing in the middle of an answer.
+                boolean lost =
+                        asked.isCompletedExceptionally() || asked.join().loss().isPresent();
+                if (!lost || attempt == MOST_ATTEMPTS || !awaitReplacement(asked)) {
+                    throw e;
+                }
+            }
+        }
+    }
+
+    private boolean awaitReplacement(CompletableFuture<JavaSession> lost) {
+        long deadline = System.nanoTime() + REPLACEMENT.toNanos();
+        synchronized (turns) {
+            while (session == lost && !closed) {
+                long left = (deadline - System.nanoTime()) / 1_000_000;
+                if (left <= 0) {
+                    return false;
+                }
+                try {
+                    turns.wait(left);
+                } catch (InterruptedException closing) {
+                    Thread.currentThread().interrupt();
+                    return false;
+                }
+            }
+            return !closed;
+        }
     }
 
     @Override
@@ -125,8 +199,10 @@ public final class JShellEngine implements CellEngine {
         CompletableFuture<JavaSession> current;
         synchronized (turns) {
             closed = true;
+            turns.notifyAll();
             current = session;
         }
+        reserve.close();
         if (current.isDone() && !current.isCompletedExceptionally()) {
             current.join().close(patience);
         } else {
@@ -134,48 +210,45 @@ public final class JShellEngine implements CellEngine {
         }
     }
 
-    private CompletableFuture<JavaSession> startSession() {
-        CompletableFuture<JavaSession> starting = new CompletableFuture<>();
-        Thread thread = new Thread(
-                () -> {
-                    try {
-                        JavaSession started = JavaSession.start(settings);
-                        Optional<String> stillborn = started.loss();
-                        if (stillborn.isPresent()) {
-                            throw new IllegalStateException(stillborn.get());
-                        }
-                        starting.complete(started);
-                        started.onLoss(() -> replaceIdle(starting, started));
-                    } catch (RuntimeException | Error e) {
-                        starting.completeExceptionally(e);
-                    }
-                },
-                "start session");
-        thread.setDaemon(true);
-        thread.start();
-        return starting;
+    /** Only called once it is the session that the next cell runs in: it may be lost already. */
+    private void watch(CompletableFuture<JavaSession> taken) {
+        var unused = taken.thenAccept(started -> started.onLoss(() -> replaceIdle(taken, started)));
     }
 
     /** A worker lost while a cell runs is told of by that cell and replaced when it ends; one lost in between, at once. */
     private void replaceIdle(CompletableFuture<JavaSession> lost, JavaSession old) {
         synchronized (turns) {
             if (!running) {
-                replace(lost, old.loss());
+                // One that was lost in reserve, or before its first cell, has cost nobody anything.
+                replace(lost, old.isUsed() ? old.loss() : Optional.empty());
             }
         }
     }
 
     private void replace(CompletableFuture<JavaSession> lost, Optional<String> toReport) {
+        CompletableFuture<JavaSession> fresh;
         synchronized (turns) {
             if (closed || session != lost) {
                 return;
             }
-            lossToReport = toReport;
-            session = startSession();
+            succeeded.sessionLost();
+            if (toReport.isPresent()) {
+                lossToReport = toReport;
+            }
+            fresh = reserve.take();
+            session = fresh;
+            turns.notifyAll();
         }
+        watch(fresh);
         if (!lost.isCompletedExceptionally()) {
             lost.join().close(Duration.ZERO);
         }
+    }
+
+    /** Whether a cell that succeeds is run again by {@code Session.restore()}. */
+    private enum Remembering {
+        YES,
+        NO
     }
 
     /** Passes everything on but questions: an expression is evaluated for a front end, not for a person. */

@@ -33,6 +33,8 @@ final class JavaSession {
     private final JShell shell;
     private final SnippetLedger ledger;
     private final CodeAssistant assistant;
+    private volatile boolean used;
+    private volatile boolean restored;
 
     private JavaSession(WorkerSettings settings) {
         shell = JShell.builder()
@@ -107,17 +109,57 @@ final class JavaSession {
         var unused = worker.thenCompose(Worker::loss).thenRun(action);
     }
 
-    /** Runs a cell; {@code stopRequested} is asked between its pieces. */
-    CellOutcome run(CellText cell, CellListener listener, Supplier<Boolean> stopRequested) {
+    /** Returns whether a cell has run here. */
+    boolean isUsed() {
+        return used;
+    }
+
+    /** Returns whether the cell that runs, or ran last, has asked to restore the lost session. */
+    boolean hasRestored() {
+        return restored;
+    }
+
+    /**
+     * Runs a cell.
+     *
+     * @param lost what {@code Session.restore()} in the cell runs again
+     * @param stopRequested asked between the pieces of the cell
+     */
+    CellOutcome run(CellText cell, CellListener listener, SucceededCells lost, Supplier<Boolean> stopRequested) {
+        used = true;
+        restored = false;
         events.listenWith(listener);
         execution.askBeforeRunning(stopRequested);
         Optional<Worker> runner = startedWorker();
-        runner.ifPresent(Worker::cellStarted);
+        runner.ifPresent(started -> started.cellStarted(lost.lostCount()));
+        RestoreRun restore = new RestoreRun(
+                lost, listener, stopRequested, (again, quiet) -> runAgain(again, quiet, listener, stopRequested));
+        Supplier<Optional<CellOutcome.Failure>> restoreIfAsked = () -> {
+            if (!events.takeRestoreAsked()) {
+                return Optional.empty();
+            }
+            restored = true;
+            return restore.run();
+        };
         try {
-            return holdingCompiler(
-                    () -> new CellRun(shell, ledger, execution, cells, cell, listener, stopRequested).run());
+            return holdingCompiler(() ->
+                    new CellRun(shell, ledger, execution, cells, cell, listener, stopRequested, restoreIfAsked).run());
         } finally {
             runner.ifPresent(Worker::cellEnded);
+        }
+    }
+
+    /** Runs a lost cell again in the turn of another, which asked for it and is between two of its pieces. */
+    private CellOutcome runAgain(
+            CellText cell, CellListener quiet, CellListener after, Supplier<Boolean> stopRequested) {
+        events.listenWith(quiet);
+        // What the one before has redirected must not reach this one.
+        startedWorker().ifPresent(started -> started.send(new Frame.CellStarted(0)));
+        try {
+            // Asked for by a cell run again, restoring is what is under way already.
+            return new CellRun(shell, ledger, execution, cells, cell, quiet, stopRequested, Optional::empty).run();
+        } finally {
+            events.listenWith(after);
         }
     }
 

@@ -1,12 +1,11 @@
 package countwright.kernel.worker;
 
 import com.sun.jdi.Bootstrap;
+import com.sun.jdi.ClassNotLoadedException;
 import com.sun.jdi.ClassType;
-import com.sun.jdi.IntegerValue;
+import com.sun.jdi.IncompatibleThreadStateException;
 import com.sun.jdi.InvalidTypeException;
-import com.sun.jdi.ObjectReference;
 import com.sun.jdi.ReferenceType;
-import com.sun.jdi.ThreadReference;
 import com.sun.jdi.VirtualMachine;
 import com.sun.jdi.connect.Connector;
 import com.sun.jdi.connect.IllegalConnectorArgumentsException;
@@ -18,7 +17,6 @@ import java.lang.System.Logger.Level;
 import java.util.List;
 import java.util.Map;
 import java.util.concurrent.CompletableFuture;
-import org.jspecify.annotations.Nullable;
 
 /**
  * The debugger interface to a worker, used for one thing: throwing into the cell thread when interrupting it does not
@@ -94,45 +92,50 @@ final class Debugger implements AutoCloseable {
         }
     }
 
-    /** Throws into the cell thread if it is in user code just now; returns whether it was. */
-    boolean stopUserCode() {
+    /** How much is done to stop a cell. */
+    enum Effort {
+        /** The cell thread, where that leaves no lock held, and the threads that work for it in a parallel stream. */
+        STOP,
+        /** The same wherever it is, and what it waits for as well. */
+        STOP_AND_FREE,
+        /** User code is made to return on the spot, for a loop that catches whatever is thrown into it. */
+        CUT
+    }
+
+    /** What the cell thread was found to do. */
+    enum Found {
+        /** Nothing that is known, or nothing could be looked at. */
+        NOTHING,
+        /** In the middle of locking or the like, and left alone. */
+        LOCKING,
+        /** Running user code, into which a stop was thrown. */
+        USER_CODE,
+        /** Waiting for a monitor; what holds it was stopped if that is user code. */
+        MONITOR,
+        /** Waiting for a connection in native code; the cell thread's class has been told which. */
+        AWAITED_CONNECTION
+    }
+
+    /** Throws into the cell thread if it is in user code just now. */
+    Found stopUserCode(Effort effort) {
         VirtualMachine attached = machine.isCompletedExceptionally() ? null : machine.getNow(null);
         if (attached == null) {
-            return false;
+            return Found.NOTHING;
         }
         try {
             List<ReferenceType> types = attached.classesByName(CELL_THREAD);
             if (types.isEmpty() || !(types.get(0) instanceof ClassType type)) {
-                return false;
+                return Found.NOTHING;
             }
-            return stopUserCode(type);
-        } catch (RuntimeException | InvalidTypeException e) {
+            return new CellStopper(attached, type).stop(effort);
+        } catch (RuntimeException
+                | InvalidTypeException
+                | IncompatibleThreadStateException
+                | ClassNotLoadedException e) {
             // Of many kinds: disconnected, a thread just gone, a fault of the interface. There is always another try.
             LOG.log(Level.DEBUG, "the cell could not be stopped", e);
-            return false;
+            return Found.NOTHING;
         }
-    }
-
-    private static boolean stopUserCode(ClassType type) throws InvalidTypeException {
-        ThreadReference thread = (ThreadReference) valueOf(type, "current");
-        ObjectReference stop = (ObjectReference) valueOf(type, "STOP");
-        if (thread == null || stop == null) {
-            return false;
-        }
-        thread.suspend();
-        try {
-            if (!(valueOf(type, "phase") instanceof IntegerValue phase) || phase.value() != CellThread.USER_CODE) {
-                return false;
-            }
-            thread.stop(stop);
-            return true;
-        } finally {
-            thread.resume();
-        }
-    }
-
-    private static com.sun.jdi.@Nullable Value valueOf(ClassType type, String field) {
-        return type.getValue(type.fieldByName(field));
     }
 
     private void stopListening() {

@@ -53,7 +53,7 @@ public final class Worker implements AutoCloseable {
         this.socket = connection.socket();
         this.stream = connection.stream();
         this.listener = listener;
-        this.interrupter = new Interrupter(this, debugger);
+        this.interrupter = new Interrupter(this, debugger, listener::processSaid);
     }
 
     /**
@@ -126,9 +126,10 @@ public final class Worker implements AutoCloseable {
         }
     }
 
-    /** Says that a cell starts, so that an interrupt has something to stop. */
-    public void cellStarted() {
+    /** Says that a cell starts, so that an interrupt has something to stop; and how many lost cells it could restore. */
+    public void cellStarted(int restorable) {
         interrupter.cellStarted();
+        send(new Frame.CellStarted(restorable));
     }
 
     /** Says that the cell is over. */
@@ -243,6 +244,7 @@ public final class Worker implements AutoCloseable {
             return "it did not react to the interrupt and was ended on the second one";
         }
         return switch (status) {
+            case WorkerMain.LOST_KERNEL -> "its stream to the kernel was closed from inside";
             case WorkerMain.OUT_OF_MEMORY -> "its memory was so full that it could not go on";
             case 128 + 9 -> "it was killed from outside (signal 9), as the system does when memory runs out";
             case 128 + 6, 128 + 11, 128 + 4, 128 + 7, 128 + 8 ->

@@ -52,6 +52,14 @@ public final class CellThread extends Thread {
     static volatile int phase = OURS;
     static volatile @Nullable Thread current;
 
+    private static volatile boolean stopWhenSpeaking;
+
+    /** Set by the kernel when it has made user code return before its end. */
+    static volatile boolean cut;
+
+    /** The connection that this thread waits for in native code, where no stop reaches it; written by the kernel. */
+    static volatile @Nullable Object awaited;
+
     private final BlockingQueue<Frame.Request> requests = new LinkedBlockingQueue<>();
     private final Outbox outbox;
     private final ClassKeeper classes = new ClassKeeper();
@@ -83,6 +91,37 @@ public final class CellThread extends Thread {
     static void unguard(int before) {
         if (Thread.currentThread() == current) {
             phase = before;
+        }
+    }
+
+    /** Closes the connection that this thread waits for, which ends the wait; on a thread of its own, since it may last. */
+    void closeAwaited() {
+        if (awaited instanceof AutoCloseable connection) {
+            awaited = null;
+            Thread closing = new Thread(
+                    () -> {
+                        try {
+                            connection.close();
+                        } catch (Exception | Error e) {
+                            // Then the wait goes on, and the kernel reports it.
+                            return;
+                        }
+                    },
+                    "close connection");
+            closing.setDaemon(true);
+            closing.start();
+        }
+    }
+
+    /** Has this thread stop itself when it next says something: a flood is nearly always where no stop may be thrown. */
+    static void stopWhenSpeaking() {
+        stopWhenSpeaking = true;
+    }
+
+    /** Called where user code on any thread is about to say something. */
+    static void stopIfAsked() {
+        if (stopWhenSpeaking && phase == USER_CODE && Thread.currentThread() == current) {
+            throw STOP;
         }
     }
 
@@ -164,10 +203,13 @@ public final class CellThread extends Thread {
             return new Frame.Failed(new Fault.Internal(e.toString()));
         }
         refillReserve();
+        cut = false;
+        stopWhenSpeaking = false;
         CellValue.set(null);
         // Two layers, because a stop may arrive anywhere until the phase is ours again, also in the inner handlers.
         try {
-            return invokeStoppably(method, request.want());
+            Frame.Reply reply = invokeStoppably(method, request.want());
+            return cut ? new Frame.Failed(new Fault.Stopped()) : reply;
         } catch (CellStop late) {
             phase = OURS;
             return new Frame.Failed(new Fault.Stopped());

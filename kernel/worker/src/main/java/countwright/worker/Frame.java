@@ -49,6 +49,15 @@ public sealed interface Frame {
     /** Adds folders or archives to what user code can see. */
     record AddToClassPath(String path) implements Request {}
 
+    /** Says that a cell starts, and how many cells of a lost session could be run again. */
+    record CellStarted(int restorable) implements ToWorker {}
+
+    /** Asks the cell thread to stop when it next prints, shows or asks something. */
+    record StopWhenSpeaking() implements ToWorker {}
+
+    /** Asks to close the connection that the cell thread waits for; the debugger has named it. */
+    record CloseAwaited() implements ToWorker {}
+
     /** Asks the cell thread to stop by {@link Thread#interrupt}. */
     record Interrupt() implements ToWorker {}
 
@@ -84,6 +93,9 @@ public sealed interface Frame {
 
     /** A question for the person at the front end. */
     record Asked(int question, String prompt, Stage.Echo echo) implements ToKernel {}
+
+    /** The cell that runs asks to have the cells of the lost session run again. */
+    record RestoreAsked() implements ToKernel {}
 
     /** The two output streams of the worker. */
     enum Channel {

@@ -32,6 +32,10 @@ final class FrameReader {
             case Tag.ANSWER -> new Frame.Answer(in.readInt(), fields.readText());
             case Tag.REFUSE -> new Frame.Refuse(in.readInt(), fields.readText());
             case Tag.LEAVE -> new Frame.Leave();
+            case Tag.CELL_STARTED -> new Frame.CellStarted(in.readInt());
+            case Tag.STOP_WHEN_SPEAKING -> new Frame.StopWhenSpeaking();
+            case Tag.CLOSE_AWAITED -> new Frame.CloseAwaited();
+            case Tag.RESTORE_ASKED -> new Frame.RestoreAsked();
             case Tag.READY -> new Frame.Ready(fields.readText(), in.readLong());
             case Tag.DONE ->
                 new Frame.Done(

@@ -49,6 +49,15 @@ final class FrameWriter {
             fields.writeText(refuse.reason());
         } else if (frame instanceof Frame.Leave) {
             out.writeByte(Tag.LEAVE);
+        } else if (frame instanceof Frame.CellStarted started) {
+            out.writeByte(Tag.CELL_STARTED);
+            out.writeInt(started.restorable());
+        } else if (frame instanceof Frame.StopWhenSpeaking) {
+            out.writeByte(Tag.STOP_WHEN_SPEAKING);
+        } else if (frame instanceof Frame.CloseAwaited) {
+            out.writeByte(Tag.CLOSE_AWAITED);
+        } else if (frame instanceof Frame.RestoreAsked) {
+            out.writeByte(Tag.RESTORE_ASKED);
         } else if (frame instanceof Frame.Ready ready) {
             out.writeByte(Tag.READY);
             fields.writeText(ready.token());

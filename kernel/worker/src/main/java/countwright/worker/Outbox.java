@@ -107,6 +107,7 @@ final class Outbox {
      * would be, and with it the text. A stop ends it.
      */
     private void waitForRoom() {
+        CellThread.stopIfAsked();
         boolean interrupted = false;
         try {
             synchronized (lock) {
@@ -147,16 +148,21 @@ final class Outbox {
             }
         } catch (OutOfMemoryError full) {
             Runtime.getRuntime().halt(WorkerMain.OUT_OF_MEMORY);
-        } catch (IOException | InterruptedException | RuntimeException | Error kernelGone) {
+        } catch (IOException | RuntimeException | Error kernelGone) {
             // Without a way to speak this process is of no use to anyone.
             Runtime.getRuntime().halt(WorkerMain.LOST_KERNEL);
         }
     }
 
-    private List<Frame> takeAll() throws InterruptedException {
+    private List<Frame> takeAll() {
         synchronized (lock) {
             while (frames.isEmpty() && output.size() == 0) {
-                lock.wait();
+                try {
+                    lock.wait();
+                } catch (InterruptedException byUserCode) {
+                    // A cell may interrupt every thread it finds; this one has no reason to end.
+                    continue;
+                }
             }
             closeOutput();
             List<Frame> taken = new ArrayList<>(frames);

@@ -16,6 +16,8 @@ final class StageChannel implements Stage {
     private final AtomicInteger questions = new AtomicInteger();
     private final Map<Integer, BlockingQueue<Frame.ToWorker>> waiting = new ConcurrentHashMap<>();
 
+    private volatile int restorable;
+
     StageChannel(Outbox outbox) {
         this.outbox = outbox;
     }
@@ -58,6 +60,21 @@ final class StageChannel implements Stage {
         } finally {
             waiting.remove(question);
         }
+    }
+
+    @Override
+    public void restoreSession() {
+        outbox.putWhenRoom(new Frame.RestoreAsked());
+    }
+
+    @Override
+    public int restorableCells() {
+        return restorable;
+    }
+
+    /** Takes note of how many cells of a lost session could be run again. */
+    void restorable(int cells) {
+        restorable = cells;
     }
 
     /** Passes on a reply; one that nobody waits for any more is dropped. */

@@ -3,56 +3,32 @@ package countwright.worker;
 import countwright.show.Stage;
 import java.io.IOException;
 import java.io.InputStream;
-import java.io.OutputStream;
 import java.io.PrintStream;
 import java.nio.charset.StandardCharsets;
 
-/** Makes System.out, System.err and System.in those of the notebook. */
+/** System.out, System.err and System.in as those of the notebook. */
 final class StandardStreams {
 
-    private StandardStreams() {}
+    private final PrintStream out;
+    private final PrintStream err;
+    private final InputStream in;
 
-    static void redirect(Outbox outbox, Stage stage) {
-        System.setOut(printing(outbox, Frame.Channel.OUT));
-        System.setErr(printing(outbox, Frame.Channel.ERR));
-        System.setIn(new AskingInput(stage));
+    StandardStreams(Outbox outbox, Stage stage) {
+        this.out = new NotebookPrint(outbox, Frame.Channel.OUT);
+        this.err = new NotebookPrint(outbox, Frame.Channel.ERR);
+        this.in = new AskingInput(stage);
     }
 
-    private static PrintStream printing(Outbox outbox, Frame.Channel channel) {
-        return new KeptOpen(new OutboxOutput(outbox, channel));
-    }
-
-    /** Closing a writer around System.out is a common slip, which must not silence all later cells. */
-    private static final class KeptOpen extends PrintStream {
-
-        KeptOpen(OutputStream out) {
-            super(out, false, StandardCharsets.UTF_8);
+    /** Puts them in place, or back there where a cell has put others. */
+    void putInPlace() {
+        if (System.out != out) {
+            System.setOut(out);
         }
-
-        @Override
-        public void close() {
-            flush();
+        if (System.err != err) {
+            System.setErr(err);
         }
-    }
-
-    private static final class OutboxOutput extends OutputStream {
-
-        private final Outbox outbox;
-        private final Frame.Channel channel;
-
-        OutboxOutput(Outbox outbox, Frame.Channel channel) {
-            this.outbox = outbox;
-            this.channel = channel;
-        }
-
-        @Override
-        public void write(int value) {
-            write(new byte[] {(byte) value}, 0, 1);
-        }
-
-        @Override
-        public void write(byte[] bytes, int start, int length) {
-            outbox.putOutput(channel, bytes, start, length);
+        if (System.in != in) {
+            System.setIn(in);
         }
     }
 

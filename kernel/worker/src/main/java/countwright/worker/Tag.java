@@ -19,6 +19,10 @@ final class Tag {
     static final int UPDATED = 21;
     static final int CLEARED = 22;
     static final int ASKED = 23;
+    static final int CELL_STARTED = 40;
+    static final int CLOSE_AWAITED = 41;
+    static final int RESTORE_ASKED = 42;
+    static final int STOP_WHEN_SPEAKING = 43;
     static final int THROWN = 1;
     static final int UNRESOLVED = 2;
     static final int STOPPED = 3;

@@ -20,7 +20,7 @@ public final class WorkerMain {
     public static final int OUT_OF_MEMORY = 87;
 
     /** Exit status when the kernel has gone. */
-    static final int LOST_KERNEL = 86;
+    public static final int LOST_KERNEL = 86;
 
     /** Long enough for a first cell to be under way: loading native parts must not compete with it. */
     private static final long WARM_UP_DELAY_MILLIS = 700;
@@ -52,8 +52,10 @@ public final class WorkerMain {
         CellThread cells = new CellThread(outbox);
         outbox.start();
         outbox.put(new Frame.Ready(token, ProcessHandle.current().pid()));
-        StandardStreams.redirect(outbox, stage);
+        StandardStreams streams = new StandardStreams(outbox, stage);
+        streams.putInPlace();
         Show.onto(stage);
+        Thread.setDefaultUncaughtExceptionHandler(WorkerMain::reportEnd);
         cells.start();
         Runtime.getRuntime().addShutdownHook(new Thread(() -> sayLastWords(outbox), "last words"));
         startWarmUp();
@@ -64,6 +66,15 @@ public final class WorkerMain {
                     cells.accept(request);
                 } else if (frame instanceof Frame.Interrupt) {
                     cells.interrupt();
+                } else if (frame instanceof Frame.CellStarted started) {
+                    // What a cell redirects is its own affair, and must not silence the next.
+                    streams.putInPlace();
+                    Show.onto(stage);
+                    stage.restorable(started.restorable());
+                } else if (frame instanceof Frame.StopWhenSpeaking) {
+                    CellThread.stopWhenSpeaking();
+                } else if (frame instanceof Frame.CloseAwaited) {
+                    cells.closeAwaited();
                 } else if (frame instanceof Frame.Answer answer) {
                     stage.reply(answer.question(), answer);
                 } else if (frame instanceof Frame.Refuse refuse) {
@@ -76,6 +87,14 @@ public final class WorkerMain {
             return;
         } catch (OutOfMemoryError full) {
             Runtime.getRuntime().halt(OUT_OF_MEMORY);
+        }
+    }
+
+    /** As the JVM does, but a thread that was stopped with its cell needs no report. */
+    private static void reportEnd(Thread thread, Throwable thrown) {
+        if (!(thrown instanceof CellStop)) {
+            System.err.print("Exception in thread \"" + thread.getName() + "\" ");
+            thrown.printStackTrace();
         }
     }
 

@@ -62,7 +62,11 @@ class FrameStreamTest {
                 new Frame.Shown(MimeBundle.text(""), Optional.empty()),
                 new Frame.Updated(picture, "id"),
                 new Frame.Cleared(Stage.Clearing.BEFORE_NEXT),
-                new Frame.Asked(9, "name? ", Stage.Echo.HIDDEN));
+                new Frame.Asked(9, "name? ", Stage.Echo.HIDDEN),
+                new Frame.CellStarted(3),
+                new Frame.CloseAwaited(),
+                new Frame.StopWhenSpeaking(),
+                new Frame.RestoreAsked());
     }
 
     @ParameterizedTest
