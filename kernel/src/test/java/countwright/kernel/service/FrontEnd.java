@@ -41,6 +41,13 @@ final class FrontEnd implements AutoCloseable {
         return request;
     }
 
+    /** Sends a request to a subshell. */
+    Message sendTo(String subshell, String type, String content) {
+        Message request = sockets.request(subshell, type, json(content));
+        sockets.send(Channel.SHELL, request);
+        return request;
+    }
+
     Message execute(String code) {
         return execute(code, "{}");
     }

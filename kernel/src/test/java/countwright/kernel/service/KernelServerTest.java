@@ -64,6 +64,13 @@ class KernelServerTest {
                 "history_request | {'hist_access_type':'nonsense'}",
                 "comm_info_request | {}",
                 "interrupt_request | {}",
+                "connect_request | {}",
+                "usage_request | {}",
+                "debug_request | {'type':'request','seq':1,'command':'initialize'}",
+                "debug_request | {'seq':'one'}",
+                "list_subshell_request | {}",
+                "delete_subshell_request | {'subshell_id':'nowhere'}",
+                "delete_subshell_request | {}",
             })
     void anyRequest_onEitherChannel_hasOneReplyAndItsOutputBetweenBusyAndIdle(String type, String content)
             throws Exception {
@@ -95,7 +102,7 @@ class KernelServerTest {
         assertThat(info.path("implementation_version").stringValue()).matches("\\d+\\.\\d+\\.\\d+.*");
         assertThat(info.at("/language_info/version").stringValue())
                 .isEqualTo(Runtime.version().toString());
-        assertThat(info.path("supported_features").isEmpty()).isTrue();
+        assertThat(info.path("supported_features").toString()).isEqualTo("[\"kernel subshells\"]");
         assertThat(info.path("help_links").isArray()).isTrue();
     }
 
@@ -385,6 +392,26 @@ class KernelServerTest {
     }
 
     @Test
+    void connect_namesAllFivePorts() throws Exception {
+        var reply =
+                front.reply(front.send(Channel.SHELL, "connect_request", "{}")).content();
+        for (Channel channel : Channel.values()) {
+            assertThat(reply.path(channel.portField()).intValue())
+                    .isEqualTo(connection.ports().get(channel));
+        }
+    }
+
+    @Test
+    void debug_isRefusedInBothForms() throws Exception {
+        var reply = front.reply(front.send(
+                        Channel.CONTROL, "debug_request", "{'type':'request','seq':4,'command':'initialize'}"))
+                .content();
+        assertThat(reply.path("status").stringValue()).isEqualTo("error");
+        assertThat(reply.path("success").booleanValue(true)).isFalse();
+        assertThat(reply.path("request_seq").intValue()).isEqualTo(4);
+    }
+
+    @Test
     void commOpen_unknownTarget_isClosed() throws Exception {
         Message open = front.send(Channel.SHELL, "comm_open", "{'comm_id':'c1','target_name':'t','data':{}}");
         front.awaitIdle(open);
@@ -394,7 +421,7 @@ class KernelServerTest {
 
     @Test
     void unknownType_isIgnoredAndTheNextRequestIsAnswered() throws Exception {
-        Message unknown = front.send(Channel.CONTROL, "debug_request", "{}");
+        Message unknown = front.send(Channel.CONTROL, "unheard_of_request", "{}");
         front.reply(front.send(Channel.CONTROL, "kernel_info_request", "{}"));
         assertThat(front.about(unknown, Channel.CONTROL)).isEmpty();
         assertThat(front.about(unknown, Channel.IOPUB)).isEmpty();
