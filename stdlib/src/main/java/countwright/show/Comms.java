@@ -42,7 +42,12 @@ public final class Comms {
         Comm comm = new Comm(UUID.randomUUID().toString(), target, copy);
         setUp.accept(comm);
         OPEN.put(comm.id(), comm);
-        Show.stage().send(new CommMessage(CommMessage.Kind.OPEN, comm.id(), target, copy));
+        try {
+            Show.stage().send(new CommMessage(CommMessage.Kind.OPEN, comm.id(), target, copy));
+        } catch (IllegalStateException nobodyThere) {
+            forget(comm);
+            throw nobodyThere;
+        }
         return comm;
     }
 

@@ -256,6 +256,8 @@ public final class Worker implements AutoCloseable {
         command.add("-agentlib:jdwp=transport=dt_socket,server=n,suspend=n,address=" + debugger.address());
         command.add("-Djava.awt.headless=true");
         command.add("-Dfile.encoding=UTF-8");
+        // On JDK 22 to 24 System.console() would be there and read nothing; with this it is null, as on all others.
+        command.add("-Djdk.console=java.base");
         command.add("-Xshare:auto");
         // Exceptions thrown often would lose their traces, and with them the line in the cell.
         command.add("-XX:-OmitStackTraceInFastThrow");

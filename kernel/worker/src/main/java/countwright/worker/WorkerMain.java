@@ -55,6 +55,8 @@ public final class WorkerMain {
         StandardStreams.redirect(outbox, stage);
         Show.onto(stage);
         cells.start();
+        CommThread comms = new CommThread(outbox);
+        comms.start();
         Runtime.getRuntime().addShutdownHook(new Thread(() -> sayLastWords(outbox), "last words"));
         startWarmUp();
         try {
@@ -62,6 +64,10 @@ public final class WorkerMain {
                 Frame frame = stream.read();
                 if (frame instanceof Frame.Request request) {
                     cells.accept(request);
+                } else if (frame instanceof Frame.CommReceived received) {
+                    comms.accept(received);
+                } else if (frame instanceof Frame.InterruptHandler) {
+                    comms.interruptHandler();
                 } else if (frame instanceof Frame.Interrupt) {
                     cells.interrupt();
                 } else if (frame instanceof Frame.Answer answer) {
