@@ -226,7 +226,8 @@ final class CellRun {
         return snippet.kind() == Snippet.Kind.EXPRESSION ? value : Optional.empty();
     }
 
-    private static CellOutcome.Failure interrupted(CellText cell) {
+    /** Returns the outcome of a cell that an interrupt has stopped. */
+    static CellOutcome.Failure interrupted(CellText cell) {
         String message = "Interrupted: " + cell.name() + " was stopped before its end. Variables are kept.";
         return new CellOutcome.Failure("Interrupted", message, List.of(message));
     }

@@ -34,6 +34,7 @@ public final class KernelServer implements AutoCloseable {
     private final EngineGate engine;
     private final InputDesk inputDesk;
     private final Subshells shells;
+    private final CommDesk comms;
     private final ExecutorService usage = Background.inOrder("countwright-usage");
     private final CompletableFuture<Ending> ending = new CompletableFuture<>();
     private final AtomicBoolean closed = new AtomicBoolean();
@@ -54,19 +55,19 @@ public final class KernelServer implements AutoCloseable {
         Outbox outbox = new Outbox(sockets);
         this.inputDesk = new InputDesk(outbox);
         History history = new History();
-        SafeAnswer execute = new SafeAnswer(new ExecuteHandler(engine, outbox, inputDesk, history));
+        this.comms = new CommDesk(engine, outbox);
+        SafeAnswer execute = new SafeAnswer(new ExecuteHandler(engine, outbox, inputDesk, comms, history));
         ReentrantLock turn = new ReentrantLock(true);
         this.shells = new Subshells(() -> new Shell(new CellLane(sockets, outbox, execute, turn)));
         QuestionHandlers about = new QuestionHandlers(engine);
-        CommHandlers comms = new CommHandlers(outbox);
         Dispatcher dispatcher = new Dispatcher(outbox, inputDesk, shells)
                 .atOnce("kernel_info_request", new KernelInfo())
                 .atOnce("connect_request", new ConnectHandler(connection))
                 .atOnce("history_request", history)
                 .atOnce("comm_info_request", comms.info())
-                .atOnce("comm_open", comms.open())
-                .atOnce("comm_msg", comms.ignore())
-                .atOnce("comm_close", comms.ignore())
+                .handingOver("comm_open", comms::open)
+                .handingOver("comm_msg", comms::message)
+                .handingOver("comm_close", comms::close)
                 .atOnce("interrupt_request", request -> interrupt())
                 .atOnce("shutdown_request", request -> shutdown(request, outbox), this::end)
                 .atOnce("debug_request", new DebugHandler())
@@ -122,6 +123,7 @@ public final class KernelServer implements AutoCloseable {
         } catch (InterruptedException e) {
             Thread.currentThread().interrupt();
         } finally {
+            comms.close();
             usage.shutdownNow();
             sockets.close();
         }

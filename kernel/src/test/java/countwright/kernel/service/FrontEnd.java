@@ -77,6 +77,18 @@ final class FrontEnd implements AutoCloseable {
                         && item.message().isCausedBy(cause.header()));
     }
 
+    /** Waits for a message about a comm, whatever its cause. */
+    void awaitPublished(String type, String commId) throws InterruptedException {
+        await(
+                type + " of " + commId,
+                item -> item.message().type().equals(type)
+                        && item.message()
+                                .content()
+                                .path("comm_id")
+                                .stringValue("")
+                                .equals(commId));
+    }
+
     /** Waits for the reply and for idle, so that everything about the request has been heard. */
     Message reply(Message request) throws InterruptedException {
         awaitIdle(request);

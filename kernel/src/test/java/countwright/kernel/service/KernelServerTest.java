@@ -255,7 +255,7 @@ class KernelServerTest {
         front.await(Channel.IOPUB, "stream", running);
         Message interrupt = front.send(Channel.CONTROL, "interrupt_request", "{}");
         assertThat(front.reply(interrupt).content()).isEqualTo(FrontEnd.json("{'status':'ok'}"));
-        assertThat(front.reply(running).content().path("ename").stringValue()).isEqualTo("InterruptedException");
+        assertThat(front.reply(running).content().path("ename").stringValue()).isEqualTo("Interrupted");
     }
 
     @ParameterizedTest
@@ -420,6 +420,64 @@ class KernelServerTest {
     }
 
     @Test
+    void comm_openedByTheFrontEnd_isListedAnsweredAndClosed() throws Exception {
+        Message open = front.send(Channel.SHELL, "comm_open", "{'comm_id':'c1','target_name':'echo','data':{}}");
+        front.awaitIdle(open);
+        assertThat(comms("{}")).isEqualTo("{'c1':{'target_name':'echo'}}");
+        assertThat(comms("{'target_name':'other'}")).isEqualTo("{}");
+
+        String data = "{'n':[1,2.5,null,{'k':'v'}],'big':9007199254740993,'flag':true}";
+        Message message = front.send(Channel.SHELL, "comm_msg", "{'comm_id':'c1','data':" + data + "}");
+        front.awaitIdle(message);
+        assertThat(front.publishedTypes(message)).containsExactly("status", "stream", "comm_msg", "status");
+        assertThat(front.await(Channel.IOPUB, "comm_msg", message).content())
+                .isEqualTo(FrontEnd.json("{'comm_id':'c1','data':" + data + "}"));
+
+        front.awaitIdle(front.send(Channel.SHELL, "comm_close", "{'comm_id':'c1','data':{}}"));
+        assertThat(comms("{}")).isEqualTo("{}");
+        Message late = front.send(Channel.SHELL, "comm_msg", "{'comm_id':'c1','data':{}}");
+        front.awaitIdle(late);
+        assertThat(front.publishedTypes(late)).containsExactly("status", "status");
+    }
+
+    @Test
+    void comm_openedByACell_isPublishedUnderIt_andClosedWhenTheWorkerIsLost() throws Exception {
+        front.awaitIdle(front.send(Channel.SHELL, "comm_open", "{'comm_id':'c1','target_name':'echo','data':{}}"));
+        Message cell = front.execute("comm c2");
+        assertThat(front.await(Channel.IOPUB, "comm_open", cell).content())
+                .isEqualTo(FrontEnd.json("{'comm_id':'c2','target_name':'lamp','data':{'n':1}}"));
+        front.reply(cell);
+
+        engine.lossActions.forEach(Runnable::run);
+
+        front.awaitPublished("comm_close", "c1");
+        front.awaitPublished("comm_close", "c2");
+        assertThat(comms("{}")).isEqualTo("{}");
+    }
+
+    @Test
+    void comm_malformed_isIgnoredBetweenBusyAndIdle() throws Exception {
+        Message open = front.send(Channel.SHELL, "comm_open", "{'comm_id':7,'target_name':'echo','data':[]}");
+        front.awaitIdle(open);
+        assertThat(front.publishedTypes(open)).containsExactly("status", "status");
+    }
+
+    @Test
+    void payload_isTheLastOfEachSource() throws Exception {
+        assertThat(front.reply(front.execute("page all"))
+                        .content()
+                        .path("payload")
+                        .toString())
+                .isEqualTo("[{\"source\":\"page\",\"data\":{\"text/plain\":\"all\",\"text/html\":\"<b>all</b>\"},"
+                        + "\"start\":0},{\"source\":\"set_next_input\",\"text\":\"2 + 2\",\"replace\":false}]");
+        assertThat(front.reply(front.execute("page fail"))
+                        .content()
+                        .path("payload")
+                        .toString())
+                .isEqualTo("[]");
+    }
+
+    @Test
     void unknownType_isIgnoredAndTheNextRequestIsAnswered() throws Exception {
         Message unknown = front.send(Channel.CONTROL, "unheard_of_request", "{}");
         front.reply(front.send(Channel.CONTROL, "kernel_info_request", "{}"));
@@ -447,6 +505,11 @@ class KernelServerTest {
     /** A request later on the same socket is answered only after the earlier ones were put in line. */
     private void awaitAllIsReceived() throws InterruptedException {
         front.reply(front.send(Channel.SHELL, "kernel_info_request", "{}"));
+    }
+
+    private String comms(String content) throws InterruptedException {
+        var reply = front.reply(front.send(Channel.SHELL, "comm_info_request", content));
+        return reply.content().path("comms").toString().replace('"', '\'');
     }
 
     private String history(String content) throws InterruptedException {
