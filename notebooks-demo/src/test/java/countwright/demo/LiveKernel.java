@@ -8,6 +8,7 @@ import countwright.kernel.wire.ConnectionFile;
 import countwright.kernel.wire.Message;
 import java.io.IOException;
 import java.nio.file.Path;
+import java.time.Duration;
 import java.util.ArrayList;
 import java.util.List;
 import java.util.Map;
@@ -112,6 +113,21 @@ final class LiveKernel implements AutoCloseable {
         await(Channel.CONTROL, request, message -> message.type().equals("interrupt_reply"));
     }
 
+    /** Asks the kernel to end, waits for the answer and for the end, and returns how long that took from the asking. */
+    Duration shutDown(Channel channel) throws InterruptedException {
+        long asked = System.nanoTime();
+        Message request = send(channel, "shutdown_request", empty().put("restart", false));
+        process.waitFor(LIMIT_SECONDS, TimeUnit.SECONDS);
+        Duration taken = Duration.ofNanos(System.nanoTime() - asked);
+        await(channel, request, message -> message.type().equals("shutdown_reply"), () -> {});
+        return taken;
+    }
+
+    /** Returns the processes that the kernel has started. */
+    List<ProcessHandle> workers() {
+        return process.descendants().toList();
+    }
+
     private static String error(JsonNode content) {
         return content.path("traceback")
                 .valueStream()
@@ -137,13 +153,22 @@ final class LiveKernel implements AutoCloseable {
     }
 
     private void await(Channel channel, Message cause, Predicate<Message> wanted) throws InterruptedException {
+        await(
+                channel,
+                cause,
+                wanted,
+                () -> assertThat(process.isAlive()).as("the kernel lives").isTrue());
+    }
+
+    private void await(Channel channel, Message cause, Predicate<Message> wanted, Runnable meanwhile)
+            throws InterruptedException {
         long deadline = System.nanoTime() + TimeUnit.SECONDS.toNanos(LIMIT_SECONDS);
         synchronized (heard) {
             while (heard.stream()
                     .noneMatch(item -> item.channel() == channel
                             && item.message().isCausedBy(cause.header())
                             && wanted.test(item.message()))) {
-                assertThat(process.isAlive()).as("the kernel lives").isTrue();
+                meanwhile.run();
                 long left = TimeUnit.NANOSECONDS.toMillis(deadline - System.nanoTime());
                 assertThat(left).as("time left for " + cause.type()).isPositive();
                 heard.wait(Math.min(left, 500));
@@ -155,7 +180,7 @@ final class LiveKernel implements AutoCloseable {
         return JsonNodeFactory.instance.objectNode();
     }
 
-    /** Asks the kernel to end, waits until it has, and fails if it does not. */
+    /** Asks the kernel to end unless it has, waits until it has, and fails if it does not. */
     @Override
     public void close() {
         List<ProcessHandle> workers = process.descendants().toList();

@@ -4,6 +4,7 @@ import countwright.kernel.cell.CellEngine;
 import countwright.kernel.wire.ConnectionFile;
 import countwright.kernel.wire.KernelSockets;
 import countwright.kernel.wire.WireLimits;
+import java.nio.file.Path;
 import java.time.Duration;
 import java.util.Optional;
 import java.util.concurrent.CompletableFuture;
@@ -29,12 +30,14 @@ public final class KernelServer implements AutoCloseable {
     private static final Duration WORKER_PATIENCE = Duration.ofMillis(300);
 
     private static final Duration CELL_PATIENCE = Duration.ofMillis(200);
+    private static final Duration HISTORY_PATIENCE = Duration.ofMillis(100);
 
     private final KernelSockets sockets;
     private final EngineGate engine;
     private final InputDesk inputDesk;
     private final Subshells shells;
     private final CommDesk comms;
+    private final History history;
     private final ExecutorService usage = Background.inOrder("countwright-usage");
     private final CompletableFuture<Ending> ending = new CompletableFuture<>();
     private final AtomicBoolean closed = new AtomicBoolean();
@@ -49,12 +52,13 @@ public final class KernelServer implements AutoCloseable {
         CLOSED
     }
 
-    private KernelServer(ConnectionFile connection, Supplier<? extends CellEngine> engineStart) {
+    private KernelServer(
+            ConnectionFile connection, Optional<Path> historyFile, Supplier<? extends CellEngine> engineStart) {
         this.sockets = KernelSockets.bind(connection, WireLimits.STANDARD);
         this.engine = new EngineGate(engineStart);
         Outbox outbox = new Outbox(sockets);
         this.inputDesk = new InputDesk(outbox);
-        History history = new History();
+        this.history = new History(historyFile);
         this.comms = new CommDesk(engine, outbox);
         SafeAnswer execute = new SafeAnswer(new ExecuteHandler(engine, outbox, inputDesk, comms, history));
         ReentrantLock turn = new ReentrantLock(true);
@@ -63,7 +67,7 @@ public final class KernelServer implements AutoCloseable {
         Dispatcher dispatcher = new Dispatcher(outbox, inputDesk, shells)
                 .atOnce("kernel_info_request", new KernelInfo())
                 .atOnce("connect_request", new ConnectHandler(connection))
-                .atOnce("history_request", history)
+                .through(history.thread(), "history_request", new HistoryHandler(history))
                 .atOnce("comm_info_request", comms.info())
                 .handingOver("comm_open", comms::open)
                 .handingOver("comm_msg", comms::message)
@@ -84,13 +88,25 @@ public final class KernelServer implements AutoCloseable {
     }
 
     /**
-     * Starts to listen.
+     * Starts to listen; the history of cells ends with this kernel.
      *
      * @param engineStart opens the engine; called once, on a thread of its own. What it throws is what cells then fail with
      * @throws IllegalStateException if a port of the connection is taken
      */
     public static KernelServer start(ConnectionFile connection, Supplier<? extends CellEngine> engineStart) {
-        return new KernelServer(connection, engineStart);
+        return new KernelServer(connection, Optional.empty(), engineStart);
+    }
+
+    /**
+     * Starts to listen.
+     *
+     * @param historyFile where cells are kept for later kernels, if they are
+     * @param engineStart opens the engine; called once, on a thread of its own. What it throws is what cells then fail with
+     * @throws IllegalStateException if a port of the connection is taken
+     */
+    public static KernelServer start(
+            ConnectionFile connection, Optional<Path> historyFile, Supplier<? extends CellEngine> engineStart) {
+        return new KernelServer(connection, historyFile, engineStart);
     }
 
     /**
@@ -107,6 +123,11 @@ public final class KernelServer implements AutoCloseable {
         }
     }
 
+    /** Returns what completes as soon as the end is asked for, before anything has been closed. */
+    public CompletableFuture<Ending> ending() {
+        return ending.copy();
+    }
+
     /** Ends the engine, aborts what waits, sends what is queued and closes the sockets; takes a second at most. */
     @Override
     public void close() {
@@ -120,6 +141,7 @@ public final class KernelServer implements AutoCloseable {
             engine.interrupt();
             engine.close(WORKER_PATIENCE);
             shells.awaitEnd(CELL_PATIENCE);
+            history.close(HISTORY_PATIENCE);
         } catch (InterruptedException e) {
             Thread.currentThread().interrupt();
         } finally {

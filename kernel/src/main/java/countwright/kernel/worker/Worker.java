@@ -156,6 +156,9 @@ public final class Worker implements AutoCloseable {
     public void close(Duration patience) {
         leaving = true;
         interrupter.close();
+        // By another thread, since a worker that does not read can hold up the sending.
+        CompletableFuture.delayedExecutor(patience.toMillis(), TimeUnit.MILLISECONDS)
+                .execute(process::destroyForcibly);
         send(new Frame.Leave());
         try {
             if (!process.waitFor(patience.toMillis(), TimeUnit.MILLISECONDS)) {
