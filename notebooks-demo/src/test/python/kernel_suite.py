@@ -22,7 +22,7 @@ class CountwrightSuite(jupyter_kernel_test.KernelTests):
     code_hello_world = 'System.out.println("hello, world");'
     code_stderr = 'System.err.println("door 7 is stuck");'
     completion_samples = [
-        {"text": "Table.rea", "matches": {"read"}},
+        {"text": "Table.rea", "matches": {"read("}},
         {"text": "1 + Integer.MAX_V", "matches": {"MAX_VALUE"}},
     ]
     complete_code_samples = ["1", "int x = 1;", "for (int i = 0; i < 3; i++) {}", "record Depot(String name) {}"]
