@@ -16,7 +16,6 @@ import org.junit.jupiter.api.Timeout;
 import org.junit.jupiter.params.ParameterizedTest;
 import org.junit.jupiter.params.provider.CsvSource;
 import org.junit.jupiter.params.provider.EnumSource;
-import org.junit.jupiter.params.provider.ValueSource;
 
 @Timeout(30)
 @SuppressWarnings("NullAway.Init")
@@ -259,70 +258,6 @@ class KernelServerTest {
     }
 
     @ParameterizedTest
-    @ValueSource(booleans = {true, false})
-    void input_answer_reachesTheCell(boolean namingTheQuestion) throws Exception {
-        Message cell = front.execute("ask Your name?", "{'allow_stdin':true}");
-        Message question = front.await(Channel.STDIN, "input_request", cell);
-        assertThat(question.content()).isEqualTo(FrontEnd.json("{'prompt':'Your name?','password':true}"));
-        if (namingTheQuestion) {
-            front.answer(question, "Ünal 😀");
-        } else {
-            front.answerWithoutParent("Ünal 😀");
-        }
-        front.reply(cell);
-        assertThat(front.await(Channel.IOPUB, "execute_result", cell)
-                        .content()
-                        .at("/data/text~1plain")
-                        .stringValue())
-                .isEqualTo("got Ünal 😀");
-    }
-
-    @Test
-    void input_notAllowed_isRefusedWithoutAsking() throws Exception {
-        Message cell = front.execute("ask Your name?", "{'allow_stdin':false}");
-        assertThat(front.reply(cell).content().path("evalue").stringValue()).contains("allow_stdin = false");
-        assertThat(front.about(cell, Channel.STDIN)).isEmpty();
-    }
-
-    @Test
-    void input_interrupted_isCancelledAndALateAnswerIsDropped() throws Exception {
-        Message cell = front.execute("ask first", "{'allow_stdin':true}");
-        Message question = front.await(Channel.STDIN, "input_request", cell);
-        front.reply(front.send(Channel.CONTROL, "interrupt_request", "{}"));
-        assertThat(front.reply(cell).content().path("evalue").stringValue()).contains("interrupted");
-
-        Message next = front.execute("ask second", "{'allow_stdin':true}");
-        Message nextQuestion = front.await(Channel.STDIN, "input_request", next);
-        front.answer(question, "late");
-        front.answer(nextQuestion, "in time");
-        front.reply(next);
-        assertThat(front.await(Channel.IOPUB, "execute_result", next)
-                        .content()
-                        .at("/data/text~1plain")
-                        .stringValue())
-                .isEqualTo("got in time");
-    }
-
-    @Test
-    void input_answerFromAnotherFrontEnd_isIgnored() throws Exception {
-        Message cell = front.execute("ask name", "{'allow_stdin':true}");
-        Message question = front.await(Channel.STDIN, "input_request", cell);
-        try (FrontEnd other = new FrontEnd(connection)) {
-            other.answer(question, "from a stranger");
-            // What the stranger sent is on its way before its next request is answered, but on another socket:
-            // the assertion below is about whose answer counts, whichever comes first.
-            other.reply(other.send(Channel.SHELL, "kernel_info_request", "{}"));
-            front.answer(question, "from the owner");
-            front.reply(cell);
-        }
-        assertThat(front.await(Channel.IOPUB, "execute_result", cell)
-                        .content()
-                        .at("/data/text~1plain")
-                        .stringValue())
-                .isEqualTo("got from the owner");
-    }
-
-    @ParameterizedTest
     @EnumSource(
             value = Channel.class,
             names = {"SHELL", "CONTROL"})
@@ -412,57 +347,6 @@ class KernelServerTest {
     }
 
     @Test
-    void commOpen_unknownTarget_isClosed() throws Exception {
-        Message open = front.send(Channel.SHELL, "comm_open", "{'comm_id':'c1','target_name':'t','data':{}}");
-        front.awaitIdle(open);
-        assertThat(front.await(Channel.IOPUB, "comm_close", open).content())
-                .isEqualTo(FrontEnd.json("{'comm_id':'c1','data':{}}"));
-    }
-
-    @Test
-    void comm_openedByTheFrontEnd_isListedAnsweredAndClosed() throws Exception {
-        Message open = front.send(Channel.SHELL, "comm_open", "{'comm_id':'c1','target_name':'echo','data':{}}");
-        front.awaitIdle(open);
-        assertThat(comms("{}")).isEqualTo("{'c1':{'target_name':'echo'}}");
-        assertThat(comms("{'target_name':'other'}")).isEqualTo("{}");
-
-        String data = "{'n':[1,2.5,null,{'k':'v'}],'big':9007199254740993,'flag':true}";
-        Message message = front.send(Channel.SHELL, "comm_msg", "{'comm_id':'c1','data':" + data + "}");
-        front.awaitIdle(message);
-        assertThat(front.publishedTypes(message)).containsExactly("status", "stream", "comm_msg", "status");
-        assertThat(front.await(Channel.IOPUB, "comm_msg", message).content())
-                .isEqualTo(FrontEnd.json("{'comm_id':'c1','data':" + data + "}"));
-
-        front.awaitIdle(front.send(Channel.SHELL, "comm_close", "{'comm_id':'c1','data':{}}"));
-        assertThat(comms("{}")).isEqualTo("{}");
-        Message late = front.send(Channel.SHELL, "comm_msg", "{'comm_id':'c1','data':{}}");
-        front.awaitIdle(late);
-        assertThat(front.publishedTypes(late)).containsExactly("status", "status");
-    }
-
-    @Test
-    void comm_openedByACell_isPublishedUnderIt_andClosedWhenTheWorkerIsLost() throws Exception {
-        front.awaitIdle(front.send(Channel.SHELL, "comm_open", "{'comm_id':'c1','target_name':'echo','data':{}}"));
-        Message cell = front.execute("comm c2");
-        assertThat(front.await(Channel.IOPUB, "comm_open", cell).content())
-                .isEqualTo(FrontEnd.json("{'comm_id':'c2','target_name':'lamp','data':{'n':1}}"));
-        front.reply(cell);
-
-        engine.lossActions.forEach(Runnable::run);
-
-        front.awaitPublished("comm_close", "c1");
-        front.awaitPublished("comm_close", "c2");
-        assertThat(comms("{}")).isEqualTo("{}");
-    }
-
-    @Test
-    void comm_malformed_isIgnoredBetweenBusyAndIdle() throws Exception {
-        Message open = front.send(Channel.SHELL, "comm_open", "{'comm_id':7,'target_name':'echo','data':[]}");
-        front.awaitIdle(open);
-        assertThat(front.publishedTypes(open)).containsExactly("status", "status");
-    }
-
-    @Test
     void payload_isTheLastOfEachSource() throws Exception {
         assertThat(front.reply(front.execute("page all"))
                         .content()
@@ -505,11 +389,6 @@ class KernelServerTest {
     /** A request later on the same socket is answered only after the earlier ones were put in line. */
     private void awaitAllIsReceived() throws InterruptedException {
         front.reply(front.send(Channel.SHELL, "kernel_info_request", "{}"));
-    }
-
-    private String comms(String content) throws InterruptedException {
-        var reply = front.reply(front.send(Channel.SHELL, "comm_info_request", content));
-        return reply.content().path("comms").toString().replace('"', '\'');
     }
 
     private String history(String content) throws InterruptedException {

@@ -9,6 +9,7 @@ import countwright.kernel.wire.Message;
 import countwright.kernel.worker.WorkerSettings;
 import java.io.File;
 import java.nio.file.Path;
+import java.util.ArrayList;
 import java.util.Arrays;
 import java.util.List;
 import java.util.Optional;
@@ -90,7 +91,9 @@ class ProtocolWalkTest {
                 """, "{'user_expressions':{'good':'1 + 1','bad':'nowhere'}}");
         var reply = front.reply(cell).content();
 
-        assertThat(front.publishedTypes(cell))
+        List<Message> published = withoutSplitStreams(front.about(cell, Channel.IOPUB));
+        assertThat(published)
+                .extracting(Message::type)
                 .containsExactly(
                         "status",
                         "execute_input",
@@ -102,7 +105,6 @@ class ProtocolWalkTest {
                         "clear_output",
                         "execute_result",
                         "status");
-        List<Message> published = front.about(cell, Channel.IOPUB);
         assertThat(published.get(4).content().at("/transient/display_id"))
                 .isEqualTo(published.get(5).content().at("/transient/display_id"));
         assertThat(reply.path("status").stringValue()).isEqualTo("ok");
@@ -296,6 +298,22 @@ class ProtocolWalkTest {
         Set<String> seen =
                 front.all().stream().map(item -> item.message().type()).collect(Collectors.toCollection(TreeSet::new));
         assertThat(seen).containsExactlyInAnyOrderElementsOf(messageTypes());
+    }
+
+    /** A text may go in several messages, as it happens; of those that follow each other the first is kept. */
+    private static List<Message> withoutSplitStreams(List<Message> messages) {
+        List<Message> kept = new ArrayList<>();
+        for (Message message : messages) {
+            boolean continues = !kept.isEmpty()
+                    && message.type().equals("stream")
+                    && message.content()
+                            .path("name")
+                            .equals(kept.get(kept.size() - 1).content().path("name"));
+            if (!continues) {
+                kept.add(message);
+            }
+        }
+        return kept;
     }
 
     /** The files whose schema says on which channel a message goes; the others describe parts of messages. */
