@@ -8,6 +8,7 @@ import countwright.kernel.wire.ConnectionFile;
 import countwright.kernel.wire.Message;
 import java.io.IOException;
 import java.nio.file.Path;
+import java.time.Duration;
 import java.util.ArrayList;
 import java.util.List;
 import java.util.Map;
@@ -176,6 +177,21 @@ final class LiveKernel implements AutoCloseable {
         await(Channel.CONTROL, request, message -> message.type().equals("interrupt_reply"));
     }
 
+    /** Asks the kernel to end, waits for the answer and for the end, and returns how long that took from the asking. */
+    Duration shutDown(Channel channel) throws InterruptedException {
+        long asked = System.nanoTime();
+        Message request = send(channel, "shutdown_request", empty().put("restart", false));
+        process.waitFor(LIMIT_SECONDS, TimeUnit.SECONDS);
+        Duration taken = Duration.ofNanos(System.nanoTime() - asked);
+        await(channel, request, message -> message.type().equals("shutdown_reply"), () -> {});
+        return taken;
+    }
+
+    /** Returns the processes that the kernel has started. */
+    List<ProcessHandle> workers() {
+        return process.descendants().toList();
+    }
+
     private static String error(JsonNode content) {
         return content.path("traceback")
                 .valueStream()
@@ -201,6 +217,15 @@ final class LiveKernel implements AutoCloseable {
     }
 
     private Heard await(Channel channel, Message cause, Predicate<Message> wanted) throws InterruptedException {
+        return await(
+                channel,
+                cause,
+                wanted,
+                () -> assertThat(process.isAlive()).as("the kernel lives").isTrue());
+    }
+
+    private Heard await(Channel channel, Message cause, Predicate<Message> wanted, Runnable meanwhile)
+            throws InterruptedException {
         long deadline = System.nanoTime() + TimeUnit.SECONDS.toNanos(LIMIT_SECONDS);
         synchronized (heard) {
             int next = 0;
@@ -213,7 +238,7 @@ final class LiveKernel implements AutoCloseable {
                         return item;
                     }
                 }
-                assertThat(process.isAlive()).as("the kernel lives").isTrue();
+                meanwhile.run();
                 long left = TimeUnit.NANOSECONDS.toMillis(deadline - System.nanoTime());
                 assertThat(left).as("time left for " + cause.type()).isPositive();
                 heard.wait(Math.min(left, 500));
@@ -225,7 +250,7 @@ final class LiveKernel implements AutoCloseable {
         return JsonNodeFactory.instance.objectNode();
     }
 
-    /** Asks the kernel to end, waits until it has, and fails if it does not. */
+    /** Asks the kernel to end unless it has, waits until it has, and fails if it does not. */
     @Override
     public void close() {
         List<ProcessHandle> workers = process.descendants().toList();

@@ -64,6 +64,14 @@ class RealClientTest {
             client.plays(jupyter(registered()), scene);
         }
 
+        /** The program itself fails if a test of the suite is skipped or missing. */
+        @Test
+        void referenceKernelSuite_passesWhole() throws IOException {
+            assertThat(client.runs(jupyter(registered()), "kernel_suite.py"))
+                    .contains("test_recv_iopub_welcome_msg", "test_history", "test_pager")
+                    .doesNotContain("skipped");
+        }
+
         @Test
         void tramDoors_runsInTheReferenceRunner() throws IOException {
             client.plays(

@@ -26,9 +26,8 @@ final class ReferenceClient {
     private static final AtomicBoolean TOLD = new AtomicBoolean();
     private static final String PYTHON_VARIABLE = "COUNTWRIGHT_PYTHON";
     private static final boolean REQUIRED = "required".equals(System.getenv("COUNTWRIGHT_CLIENTS"));
-    private static final String NEEDED = "jupyter_client, nbclient, nbformat, ipykernel";
-    private static final Path SCENES =
-            Path.of("src/test/python/reference_client.py").toAbsolutePath();
+    private static final String NEEDED = "jupyter_client, nbclient, nbformat, ipykernel, jupyter_kernel_test";
+    private static final Path PROGRAMS = Path.of("src/test/python").toAbsolutePath();
     private static final int LIMIT_SECONDS = 300;
     private static final Map<String, String> LACKS = new ConcurrentHashMap<>();
 
@@ -48,7 +47,7 @@ final class ReferenceClient {
         if (!lack.isEmpty()) {
             String reason = "needs a Python with " + NEEDED + ", but " + lack
                     + " Get them with 'python3 -m venv DIR && DIR/bin/pip install " + NEEDED.replace(",", "")
-                    + "' or, on Debian and Ubuntu, 'apt install python3-nbclient python3-ipykernel', and name the Python in "
+                    + "' or, on Debian and Ubuntu, 'apt install python3-nbclient python3-ipykernel python3-jupyter-kernel-test', and name the Python in "
                     + PYTHON_VARIABLE + ".";
             if (REQUIRED) {
                 fail("COUNTWRIGHT_CLIENTS is 'required': this test " + reason);
@@ -64,12 +63,19 @@ final class ReferenceClient {
 
     /** Plays a scene of reference_client.py for front ends that look for kernels in one folder. */
     void plays(Path jupyterFolder, String... sceneAndArguments) throws IOException {
-        List<String> command = new ArrayList<>(List.of(python, SCENES.toString()));
-        command.addAll(Arrays.asList(sceneAndArguments));
+        runs(jupyterFolder, "reference_client.py", sceneAndArguments);
+    }
+
+    /** Runs a Python program of the tests to its end, which must be good, and returns what it said. */
+    String runs(Path jupyterFolder, String program, String... arguments) throws IOException {
+        List<String> command =
+                new ArrayList<>(List.of(python, PROGRAMS.resolve(program).toString()));
+        command.addAll(Arrays.asList(arguments));
         Ending ending = run(
                 command,
                 Map.of("JUPYTER_PATH", jupyterFolder.toString(), "JAVA_HOME", System.getProperty("java.home")));
         assertThat(ending.status()).as(ending.said()).isZero();
+        return ending.said();
     }
 
     /** Runs a command to its end. */

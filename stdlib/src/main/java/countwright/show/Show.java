@@ -1,5 +1,6 @@
 package countwright.show;
 
+import java.util.Collection;
 import org.jspecify.annotations.Nullable;
 
 /**
@@ -34,8 +35,47 @@ public final class Show {
             return;
         }
         for (Object value : values) {
-            stage.display(Renderer.render(value).orElseGet(() -> MimeBundle.text("null")));
+            stage.display(bundleOf(value));
         }
+    }
+
+    /** Shows a value as {@link #show} does, in a place where another can take its place later. */
+    public static Shown showReplaceable(@Nullable Object value) {
+        return Shown.place(stage, bundleOf(value));
+    }
+
+    /**
+     * Shows a value in the front end's pager, a place beside the cells, once the running cell has ended without error.
+     * Of several in one cell the last is shown. Front ends without a pager show it below the cell or not at all.
+     */
+    public static void page(@Nullable Object value) {
+        stage.page(bundleOf(value));
+    }
+
+    /**
+     * Puts code into a new cell below, for the person to look at and run, once the running cell has ended without error.
+     * Of several in one cell the last counts. Many front ends offer this in consoles only.
+     */
+    public static void nextInput(String code) {
+        stage.nextInput(code);
+    }
+
+    /**
+     * Shows how far a long piece of work has come, in one place below the cell.
+     *
+     * @param label what is done, in a word or two
+     * @param total how many steps there are, positive
+     */
+    public static Progress progress(String label, long total) {
+        return Progress.of(label, total, stage);
+    }
+
+    /**
+     * Returns the items as they are, and shows how many have been taken: {@code for (var site : progress("sites",
+     * sites)) ...}
+     */
+    public static <T> Iterable<T> progress(String label, Collection<T> items) {
+        return () -> Progress.over(label, items, stage);
     }
 
     /**
@@ -55,5 +95,14 @@ public final class Show {
     /** Removes what the running cell has shown so far. */
     public static void clear() {
         stage.clear(Stage.Clearing.NOW);
+    }
+
+    /** Removes what the running cell has shown so far, at the moment it shows the next thing, so that nothing flickers. */
+    public static void clearBeforeNext() {
+        stage.clear(Stage.Clearing.BEFORE_NEXT);
+    }
+
+    static MimeBundle bundleOf(@Nullable Object value) {
+        return Renderer.render(value).orElseGet(() -> MimeBundle.text("null"));
     }
 }

@@ -39,6 +39,18 @@ public interface Stage {
     default int restorableCells() {
         return 0;
     }
+    /** Shows a bundle in the front end's pager, beside the cells, once the running cell has ended well. */
+    void page(MimeBundle bundle);
+
+    /** Puts code into the front end's next cell, once the running cell has ended well. */
+    void nextInput(String code);
+
+    /**
+     * Sends a message to the front end's end of a comm.
+     *
+     * @throws IllegalStateException if there is no front end
+     */
+    void send(CommMessage message);
 
     /** When shown things are removed. */
     enum Clearing {

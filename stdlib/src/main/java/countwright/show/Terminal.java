@@ -32,6 +32,21 @@ final class Terminal implements Stage {
         // A terminal keeps its lines.
     }
 
+    @Override
+    public void page(MimeBundle bundle) {
+        display(bundle);
+    }
+
+    @Override
+    public void nextInput(String code) {
+        // A terminal has no cells.
+    }
+
+    @Override
+    public void send(CommMessage message) {
+        throw new IllegalStateException("there is no front end to send to: a comm needs a notebook at its other end.");
+    }
+
     /** From JDK 22 on there is a console even where input is redirected; it then reads the line as any other. */
     @Override
     @SuppressWarnings("SystemConsoleNull")

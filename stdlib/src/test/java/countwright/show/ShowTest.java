@@ -16,7 +16,7 @@ class ShowTest {
     @BeforeEach
     void putStageInPlace() {
         before = Show.stage();
-        Show.onto(new RecordingStage());
+        Show.onto(new RecordingStage(seen));
     }
 
     @AfterEach
@@ -53,32 +53,34 @@ class ShowTest {
         assertThat(seen).containsExactly("clear NOW");
     }
 
-    private final class RecordingStage implements Stage {
+    @Test
+    void replaceable_isShownOnceAndReplacedInItsPlace() {
+        Shown place = Show.showReplaceable("first");
+        place.replaceWith(2);
 
-        @Override
-        public void display(MimeBundle bundle) {
-            seen.add("show " + bundle.plainText());
+        assertThat(seen).containsExactly("place first", "replace 2");
+    }
+
+    @Test
+    void pageAndNextInput_reachTheStage() {
+        Show.page(Grid.titled("long table"));
+        Show.nextInput("1 + 1");
+
+        assertThat(seen).containsExactly("page long table", "next 1 + 1");
+    }
+
+    @Test
+    void progressOverItems_givesAllOfThemAndEndsComplete() {
+        List<String> taken = new ArrayList<>();
+        for (String site : Show.progress("sites", List.of("Harbour", "Orchard"))) {
+            taken.add(site);
+        }
+        for (String none : Show.progress("nothing", List.<String>of())) {
+            taken.add(none);
         }
 
-        @Override
-        public void display(MimeBundle bundle, String displayId) {
-            display(bundle);
-        }
-
-        @Override
-        public void update(MimeBundle bundle, String displayId) {
-            display(bundle);
-        }
-
-        @Override
-        public void clear(Clearing when) {
-            seen.add("clear " + when);
-        }
-
-        @Override
-        public String ask(String prompt, Echo echo) {
-            seen.add("ask " + echo + " " + prompt);
-            return "answer";
-        }
+        assertThat(taken).containsExactly("Harbour", "Orchard");
+        assertThat(seen).first().isEqualTo("place sites: 0 of 2 (0 %)");
+        assertThat(seen).last().asString().startsWith("replace sites: 2 of 2 (100 %)");
     }
 }

@@ -1,5 +1,6 @@
 package countwright.kernel.cell;
 
+import countwright.show.CommMessage;
 import countwright.show.MimeBundle;
 import java.time.Duration;
 import java.util.Map;
@@ -32,7 +33,22 @@ public interface CellEngine extends AutoCloseable {
     /** Describes what stands at the cursor; {@code text/plain} is empty where nothing is found. */
     MimeBundle inspect(String code, int cursor, Detail detail);
 
-    /** Asks the running cell, if any, to stop; returns at once. The cell then ends with an interrupted failure. */
+    /**
+     * Passes a message from the front end's end of a comm to its handler, which runs beside the cells, one message after
+     * the other. Returns once the message is on its way.
+     *
+     * @param listener hears what the handler says
+     * @param handled run once when the handler has ended, or when it is sure that none will run
+     */
+    void receive(CommMessage message, CellListener listener, Runnable handled);
+
+    /** Has an action run whenever the worker is lost, and with it what cells declared and all comms. */
+    void whenWorkerIsLost(Runnable action);
+
+    /**
+     * Asks the running cell to stop, or else the comm handler that runs, if one does; returns at once. The cell then
+     * ends with an interrupted failure.
+     */
     void interrupt();
 
     /** Ends the worker within the given time. */

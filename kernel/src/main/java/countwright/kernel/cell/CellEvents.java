@@ -4,27 +4,42 @@ import countwright.kernel.cell.CellListener.InputRequest;
 import countwright.kernel.worker.Worker;
 import countwright.kernel.worker.WorkerListener;
 import countwright.show.Stage;
+import countwright.worker.Fault;
 import countwright.worker.Frame;
 import java.nio.ByteBuffer;
 import java.nio.CharBuffer;
 import java.nio.charset.CharsetDecoder;
 import java.nio.charset.CodingErrorAction;
 import java.nio.charset.StandardCharsets;
+import java.util.HashMap;
+import java.util.List;
+import java.util.Map;
+import java.util.Optional;
 import java.util.concurrent.CompletableFuture;
 import java.util.concurrent.atomic.AtomicBoolean;
 import org.jspecify.annotations.Nullable;
 
 /**
  * Passes what the worker says to the listener of the cell that runs, or that ran last: a thread the cell left behind may
- * still print.
+ * still print. What the handler of a comm message says goes to the listener of that message.
  */
 final class CellEvents implements WorkerListener {
 
     private final CompletableFuture<Worker> worker = new CompletableFuture<>();
-    private final Utf8Decoder out = new Utf8Decoder();
-    private final Utf8Decoder err = new Utf8Decoder();
     private final AtomicBoolean restoreAsked = new AtomicBoolean();
+    private final CellMap cells;
+    private final Speaker cellSpeaker = new Speaker();
+    private final Map<Long, Handling> handlings = new HashMap<>();
+    private long lastNumber;
+    private boolean lost;
     private volatile @Nullable CellListener listener;
+
+    /** A comm message under way. */
+    private record Handling(Speaker speaker, CellListener listener, Runnable handled) {}
+
+    CellEvents(CellMap cells) {
+        this.cells = cells;
+    }
 
     /** Says which worker questions are answered to. */
     void speaksFor(Worker speaker) {
@@ -42,43 +57,106 @@ final class CellEvents implements WorkerListener {
         return restoreAsked.getAndSet(false);
     }
 
+    /** Says who hears what comes of a comm message; returns its number, or nothing if the worker is lost. */
+    Optional<Long> expect(CellListener handlerListener, Runnable handled) {
+        synchronized (handlings) {
+            if (!lost) {
+                lastNumber++;
+                handlings.put(lastNumber, new Handling(new Speaker(), handlerListener, handled));
+                return Optional.of(lastNumber);
+            }
+        }
+        handled.run();
+        return Optional.empty();
+    }
+
+    /** Says that nothing more will come. */
+    void lose() {
+        List<Handling> left;
+        synchronized (handlings) {
+            lost = true;
+            left = List.copyOf(handlings.values());
+            handlings.clear();
+        }
+        left.forEach(handling -> handling.handled().run());
+    }
+
     @Override
     public void said(Frame.ToKernel frame) {
-        CellListener current = listener;
-        if (current == null) {
-            return;
-        }
         if (frame instanceof Frame.RestoreAsked) {
             restoreAsked.set(true);
-        } else if (frame instanceof Frame.Output output) {
-            byte[] bytes = output.bytes().toArray();
-            if (output.channel() == Frame.Channel.OUT) {
-                say(current, CellListener.Stream.OUT, out.decode(bytes));
-            } else {
-                say(current, CellListener.Stream.ERR, err.decode(bytes));
+        } else if (frame instanceof Frame.Aside aside) {
+            handling(aside.number())
+                    .ifPresent(handling -> handling.speaker().say(aside.event(), handling.listener(), worker));
+        } else if (frame instanceof Frame.Handled handled) {
+            Optional<Handling> ended = handling(handled.number());
+            synchronized (handlings) {
+                handlings.remove(handled.number());
             }
-        } else if (frame instanceof Frame.Shown shown) {
-            current.display(shown.bundle(), shown.displayId());
-        } else if (frame instanceof Frame.Updated updated) {
-            current.update(updated.bundle(), updated.displayId());
-        } else if (frame instanceof Frame.Cleared cleared) {
-            current.clear(cleared.when());
-        } else if (frame instanceof Frame.Asked asked) {
-            current.ask(new Question(asked, worker));
+            ended.ifPresent(handling -> end(handling, handled.fault()));
+        } else if (frame instanceof Frame.Event event) {
+            CellListener current = listener;
+            if (current != null) {
+                cellSpeaker.say(event, current, worker);
+            }
+        }
+    }
+
+    private Optional<Handling> handling(long number) {
+        synchronized (handlings) {
+            return Optional.ofNullable(handlings.get(number));
+        }
+    }
+
+    private void end(Handling handling, Optional<Fault> fault) {
+        try {
+            fault.ifPresent(
+                    failure -> handling.listener().output(CellListener.Stream.ERR, HandlerReport.of(failure, cells)));
+        } finally {
+            handling.handled().run();
         }
     }
 
     @Override
     public void processSaid(String text) {
         CellListener current = listener;
-        if (current != null) {
-            say(current, CellListener.Stream.ERR, text);
+        if (current != null && !text.isEmpty()) {
+            current.output(CellListener.Stream.ERR, text);
         }
     }
 
-    private static void say(CellListener listener, CellListener.Stream stream, String text) {
-        if (!text.isEmpty()) {
-            listener.output(stream, text);
+    /** Something that speaks in frames, characters cut anywhere, to a listener. */
+    private static final class Speaker {
+
+        private final Utf8Decoder out = new Utf8Decoder();
+        private final Utf8Decoder err = new Utf8Decoder();
+
+        void say(Frame.Event event, CellListener current, CompletableFuture<Worker> worker) {
+            if (event instanceof Frame.Output output) {
+                boolean isOut = output.channel() == Frame.Channel.OUT;
+                String text = (isOut ? out : err).decode(output.bytes().toArray());
+                if (!text.isEmpty()) {
+                    current.output(isOut ? CellListener.Stream.OUT : CellListener.Stream.ERR, text);
+                }
+            } else if (event instanceof Frame.Shown shown) {
+                current.display(shown.bundle(), shown.displayId());
+            } else if (event instanceof Frame.Updated updated) {
+                current.update(updated.bundle(), updated.displayId());
+            } else if (event instanceof Frame.Cleared cleared) {
+                current.clear(cleared.when());
+            } else if (event instanceof Frame.Asked asked) {
+                current.ask(new Question(asked, worker));
+            } else if (event instanceof Frame.Paged paged) {
+                current.page(paged.bundle());
+            } else if (event instanceof Frame.NextInput next) {
+                current.nextInput(next.code());
+            } else if (event instanceof Frame.CommSent sent) {
+                current.comm(sent.message());
+            } else if (event instanceof Frame.RestoreAsked) {
+                current.output(
+                        CellListener.Stream.ERR,
+                        "Session.restore() can be called in a cell only, not where a comm message is handled.\n");
+            }
         }
     }
 

@@ -1,5 +1,6 @@
 package countwright.kernel.cell;
 
+import countwright.show.CommMessage;
 import countwright.show.MimeBundle;
 import countwright.show.Stage;
 import java.util.Optional;
@@ -21,6 +22,23 @@ public interface CellListener {
 
     /** A question to the person at the front end, answered through the request; may be answered on another thread. */
     void ask(InputRequest request);
+
+    /** A bundle for the front end's pager. */
+    void page(MimeBundle bundle);
+
+    /** Code for the front end's next cell. */
+    void nextInput(String code);
+
+    /** A message for the front end's end of a comm. */
+    void comm(CommMessage message);
+
+    /**
+     * Asked when the cell begins: whether it is to stop at once, because an interrupt came after it was handed over and
+     * before the engine knew of it.
+     */
+    default boolean isStopRequested() {
+        return false;
+    }
 
     /** The two output streams. */
     enum Stream {

@@ -11,6 +11,8 @@ import jdk.jshell.SourceCodeAnalysis.SnippetWrapper;
 /** Remembers which cell each snippet came from, so that errors can point at the line the user wrote. */
 final class CellMap {
 
+    private static final Pattern SNIPPET_CLASS = Pattern.compile("REPL\\.\\$JShell\\$([0-9]+)");
+
     /** A cell and the line of it, counted from 1, on which the snippet starts. */
     private record Origin(CellText cell, int firstLine) {}
 
@@ -49,6 +51,14 @@ final class CellMap {
     /** Returns the cell that a snippet came from. */
     Optional<CellText> cellOf(Snippet snippet) {
         return Optional.ofNullable(origins.get(snippet.id())).map(Origin::cell);
+    }
+
+    /** Returns the cell that a frame of the worker's own stack belongs to; its class is named after the snippet. */
+    Optional<CellText> cellOf(StackTraceElement workerFrame) {
+        Matcher snippet = SNIPPET_CLASS.matcher(workerFrame.getClassName());
+        return snippet.lookingAt()
+                ? Optional.ofNullable(origins.get(snippet.group(1))).map(Origin::cell)
+                : Optional.empty();
     }
 
     /** Returns where a stack frame is in the user's cells; JShell names the file of such a frame after its snippet. */

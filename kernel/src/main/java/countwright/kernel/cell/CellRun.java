@@ -295,7 +295,8 @@ final class CellRun {
                 || snippet.subKind() == Snippet.SubKind.TEMP_VAR_EXPRESSION_SUBKIND;
     }
 
-    private static CellOutcome.Failure interrupted(CellText cell) {
+    /** Returns the outcome of a cell that an interrupt has stopped. */
+    static CellOutcome.Failure interrupted(CellText cell) {
         String message = "Interrupted: " + cell.name() + " was stopped before its end. Variables are kept.";
         return new CellOutcome.Failure("Interrupted", message, List.of(message));
     }

@@ -92,8 +92,9 @@ final class CodeAssistant {
         String piece = code.substring(start);
         int end = endOfName(piece, cursor - start);
         List<Documentation> found = analysis.documentation(piece, end, detail == CellEngine.Detail.FULL);
-        if (found.isEmpty() && end < piece.length() && piece.charAt(end) == '(') {
-            found = analysis.documentation(piece, end + 1, detail == CellEngine.Detail.FULL);
+        if (found.isEmpty() && end > 0 && Character.isJavaIdentifierPart(piece.charAt(end - 1))) {
+            // The compiler knows a method by its bracket, whether it has been typed or not.
+            found = analysis.documentation(piece.substring(0, end) + "(", end + 1, detail == CellEngine.Detail.FULL);
         }
         return MimeBundle.text(found.stream()
                 .map(each -> each.javadoc() == null || each.javadoc().isBlank()

@@ -1,6 +1,7 @@
 package countwright.kernel.cell;
 
 import countwright.kernel.worker.WorkerSettings;
+import countwright.show.CommMessage;
 import countwright.show.MimeBundle;
 import countwright.show.Stage;
 import java.time.Duration;
@@ -11,6 +12,7 @@ import java.util.Map;
 import java.util.Optional;
 import java.util.concurrent.CompletableFuture;
 import java.util.concurrent.CompletionException;
+import java.util.concurrent.CopyOnWriteArrayList;
 import java.util.concurrent.atomic.AtomicBoolean;
 import java.util.function.Function;
 
@@ -36,6 +38,11 @@ public final class JShellEngine implements CellEngine {
     private Optional<String> lossToReport = Optional.empty();
     private boolean closed;
     private CellListener lastListener = new Unheard();
+
+    /** Completed by an interrupt, so that a cell need not wait for a session that is still starting. */
+    private volatile CompletableFuture<Void> stop = new CompletableFuture<>();
+
+    private final List<Runnable> lossActions = new CopyOnWriteArrayList<>();
 
     private JShellEngine(WorkerSettings settings) {
         this.reserve = new SessionReserve(settings);
@@ -67,8 +74,14 @@ public final class JShellEngine implements CellEngine {
     private CellOutcome run(CellText cell, CellListener listener, Remembering remembering) {
         CompletableFuture<JavaSession> mine;
         synchronized (turns) {
+            stop = new CompletableFuture<>();
             stopRequested.set(false);
             running = true;
+            // Asked only now: an interrupt that comes later finds the cell running.
+            if (listener.isStopRequested()) {
+                stopRequested.set(true);
+                stop.complete(null);
+            }
             mine = session;
             lossToReport.ifPresent(how -> listener.output(
                     CellListener.Stream.ERR,
@@ -79,6 +92,10 @@ public final class JShellEngine implements CellEngine {
         }
         boolean lossTold = false;
         try {
+            CompletableFuture.anyOf(mine, stop).join();
+            if (!mine.isDone()) {
+                return CellRun.interrupted(cell);
+            }
             JavaSession runner = mine.join();
             CellOutcome outcome = runner.run(cell, listener, succeeded, stopRequested::get);
             if (outcome instanceof CellOutcome.Failure failure && failure.name().equals(WorkerExecution.LOST)) {
@@ -119,6 +136,9 @@ public final class JShellEngine implements CellEngine {
     private void endTurn(CompletableFuture<JavaSession> mine, boolean lossTold) {
         synchronized (turns) {
             running = false;
+            if (!mine.isDone()) {
+                return;
+            }
             Optional<String> loss = mine.isCompletedExceptionally()
                     ? Optional.of("it could not be started")
                     : mine.join().loss();
@@ -183,14 +203,34 @@ public final class JShellEngine implements CellEngine {
     }
 
     @Override
-    public void interrupt() {
-        if (!running) {
+    public void receive(CommMessage message, CellListener listener, Runnable handled) {
+        JavaSession current;
+        try {
+            current = session.join();
+        } catch (CompletionException e) {
+            handled.run();
             return;
         }
-        stopRequested.set(true);
+        current.receive(message, listener, handled);
+    }
+
+    @Override
+    public void whenWorkerIsLost(Runnable action) {
+        lossActions.add(action);
+    }
+
+    @Override
+    public void interrupt() {
         CompletableFuture<JavaSession> current = session;
-        if (current.isDone() && !current.isCompletedExceptionally()) {
-            current.join().interrupt();
+        boolean isStarted = current.isDone() && !current.isCompletedExceptionally();
+        if (running) {
+            stopRequested.set(true);
+            stop.complete(null);
+            if (isStarted) {
+                current.join().interrupt();
+            }
+        } else if (isStarted) {
+            current.join().interruptHandler();
         }
     }
 
@@ -240,6 +280,7 @@ public final class JShellEngine implements CellEngine {
             turns.notifyAll();
         }
         watch(fresh);
+        lossActions.forEach(Runnable::run);
         if (!lost.isCompletedExceptionally()) {
             lost.join().close(Duration.ZERO);
         }
@@ -275,6 +316,26 @@ public final class JShellEngine implements CellEngine {
         }
 
         @Override
+        public void page(MimeBundle bundle) {
+            listener.page(bundle);
+        }
+
+        @Override
+        public void nextInput(String code) {
+            listener.nextInput(code);
+        }
+
+        @Override
+        public void comm(CommMessage message) {
+            listener.comm(message);
+        }
+
+        @Override
+        public boolean isStopRequested() {
+            return listener.isStopRequested();
+        }
+
+        @Override
         public void ask(InputRequest request) {
             request.refuse("an expression evaluated for the front end cannot ask for input");
         }
@@ -294,6 +355,15 @@ public final class JShellEngine implements CellEngine {
 
         @Override
         public void clear(Stage.Clearing when) {}
+
+        @Override
+        public void page(MimeBundle bundle) {}
+
+        @Override
+        public void nextInput(String code) {}
+
+        @Override
+        public void comm(CommMessage message) {}
 
         @Override
         public void ask(InputRequest request) {

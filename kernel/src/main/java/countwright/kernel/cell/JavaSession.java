@@ -2,6 +2,7 @@ package countwright.kernel.cell;
 
 import countwright.kernel.worker.Worker;
 import countwright.kernel.worker.WorkerSettings;
+import countwright.show.CommMessage;
 import countwright.show.MimeBundle;
 import countwright.worker.Frame;
 import java.io.IOException;
@@ -27,8 +28,8 @@ final class JavaSession {
 
     private final CompletableFuture<Worker> worker = new CompletableFuture<>();
     private final ReentrantLock compilerLock = new ReentrantLock();
-    private final CellEvents events = new CellEvents();
     private final CellMap cells = new CellMap();
+    private final CellEvents events = new CellEvents(cells);
     private final WorkerExecution execution = new WorkerExecution(worker, compilerLock);
     private final JShell shell;
     private final SnippetLedger ledger;
@@ -45,6 +46,7 @@ final class JavaSession {
         ledger = new SnippetLedger(shell);
         execution.doBeforeUnlocking(ledger::showAll);
         assistant = new CodeAssistant(shell.sourceCodeAnalysis());
+        var unused = worker.thenCompose(Worker::loss).whenComplete((how, failure) -> events.lose());
     }
 
     /** Starts the worker and warms the compiler at the same time; returns when the first cell can run. */
@@ -161,6 +163,21 @@ final class JavaSession {
         } finally {
             events.listenWith(after);
         }
+    }
+
+    /** Passes a comm message to its handler, as {@link CellEngine#receive} says. */
+    void receive(CommMessage message, CellListener listener, Runnable handled) {
+        Optional<Worker> runner = startedWorker();
+        Optional<Long> number = runner.isPresent() ? events.expect(listener, handled) : Optional.empty();
+        number.ifPresent(each -> runner.orElseThrow().send(new Frame.CommReceived(each, message)));
+        if (runner.isEmpty()) {
+            handled.run();
+        }
+    }
+
+    /** Interrupts the comm handler that runs in the worker, if one does. */
+    void interruptHandler() {
+        startedWorker().ifPresent(runner -> runner.send(new Frame.InterruptHandler()));
     }
 
     /** Interrupts what runs in the worker. */

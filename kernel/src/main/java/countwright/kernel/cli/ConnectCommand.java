@@ -2,6 +2,7 @@ package countwright.kernel.cli;
 
 import countwright.kernel.cell.JShellEngine;
 import countwright.kernel.desk.DeskException;
+import countwright.kernel.service.HistoryPlace;
 import countwright.kernel.service.KernelServer;
 import countwright.kernel.wire.ConnectionFile;
 import countwright.kernel.worker.WorkerSettings;
@@ -18,6 +19,8 @@ import picocli.CommandLine.Parameters;
         mixinStandardHelpOptions = true)
 final class ConnectCommand implements Callable<Integer> {
 
+    private static final long LAST_MILLIS = 700;
+
     @Parameters(
             paramLabel = "CONNECTION_FILE",
             description = "The file in which the front end says where to listen and how to sign.")
@@ -33,19 +36,41 @@ final class ConnectCommand implements Callable<Integer> {
         KernelServer server;
         try {
             server = KernelServer.start(
-                    ConnectionFile.read(connectionFile), () -> JShellEngine.start(WorkerSettings.ofInstallation()));
+                    ConnectionFile.read(connectionFile),
+                    HistoryPlace.ofThisUser(),
+                    () -> JShellEngine.start(WorkerSettings.ofInstallation()));
         } catch (IOException | IllegalArgumentException | IllegalStateException e) {
             throw new DeskException(String.valueOf(e.getMessage()), e);
         }
         // A front end that ends the kernel by a signal must not leave its worker behind.
         Runtime.getRuntime().addShutdownHook(new Thread(server::close, "countwright-end"));
         endWithFrontEnd(server);
+        var unused = server.ending().thenRun(ConnectCommand::endSoon);
         try {
             server.awaitShutdown();
         } catch (InterruptedException e) {
             Thread.currentThread().interrupt();
         }
         return Main.DONE;
+    }
+
+    /**
+     * Front ends wait a second before they use force, which would leave the worker behind. The orderly end takes less;
+     * whatever holds it up, such as a front end that does not read, is not waited for.
+     */
+    private static void endSoon() {
+        Thread last = new Thread(
+                () -> {
+                    try {
+                        Thread.sleep(LAST_MILLIS);
+                    } catch (InterruptedException e) {
+                        Thread.currentThread().interrupt();
+                    }
+                    Runtime.getRuntime().halt(Main.DONE);
+                },
+                "countwright-last");
+        last.setDaemon(true);
+        last.start();
     }
 
     /** A front end that dies without a word must not leave its kernels running; it names itself in the environment. */

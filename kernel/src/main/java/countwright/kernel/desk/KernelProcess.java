@@ -49,6 +49,8 @@ final class KernelProcess implements AutoCloseable {
         // The protocol's own way to let a kernel notice that the front end has gone without a word.
         builder.environment()
                 .put("JPY_PARENT_PID", Long.toString(ProcessHandle.current().pid()));
+        // A run from the command line is nothing its user has typed.
+        builder.environment().put("COUNTWRIGHT_HISTORY", "off");
         builder.environment().putAll(environment);
         KernelProcess started;
         try {

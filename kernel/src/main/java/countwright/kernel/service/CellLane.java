@@ -5,19 +5,23 @@ import countwright.kernel.wire.KernelSockets;
 import java.lang.System.Logger;
 import java.lang.System.Logger.Level;
 import java.time.Duration;
+import java.util.ArrayDeque;
 import java.util.ArrayList;
+import java.util.Deque;
 import java.util.List;
 import java.util.Optional;
-import java.util.concurrent.BlockingQueue;
 import java.util.concurrent.CountDownLatch;
-import java.util.concurrent.LinkedBlockingQueue;
 import java.util.concurrent.TimeUnit;
+import java.util.concurrent.locks.ReentrantLock;
 import tools.jackson.databind.node.ObjectNode;
 
 /**
- * Runs cells on one thread, strictly in the order in which they were requested. After a cell that fails, the cells that
- * were already waiting are aborted, unless the failed request said stop_on_error false: they were sent in the belief
- * that it would succeed.
+ * Runs the cells of one shell on one thread, strictly in the order in which they were requested. After a cell that
+ * fails, the cells of this lane that were already waiting are aborted, unless the failed request said stop_on_error
+ * false: they were sent in the belief that it would succeed.
+ *
+ * <p>There is one compiler and one thread for user code, so the lanes of all shells share a turn: a cell begins when no
+ * other runs, whatever its shell. A cell that waits for its turn can still be aborted.
  */
 final class CellLane {
 
@@ -26,17 +30,24 @@ final class CellLane {
     private final KernelSockets sockets;
     private final Outbox outbox;
     private final SafeAnswer execute;
-
-    /** What waits; an empty element only wakes the thread, to see that the lane is closed. */
-    private final BlockingQueue<Optional<Request>> waiting = new LinkedBlockingQueue<>();
-
+    private final ReentrantLock turn;
     private final Thread thread;
-    private volatile boolean closed;
 
-    CellLane(KernelSockets sockets, Outbox outbox, SafeAnswer execute) {
+    /** What waits; its monitor guards it and the flag below. */
+    private final Deque<Request> waiting = new ArrayDeque<>();
+
+    private boolean closed;
+
+    /**
+     * Makes a lane.
+     *
+     * @param turn held while a cell runs; fair, and shared by all lanes
+     */
+    CellLane(KernelSockets sockets, Outbox outbox, SafeAnswer execute, ReentrantLock turn) {
         this.sockets = sockets;
         this.outbox = outbox;
         this.execute = execute;
+        this.turn = turn;
         this.thread = new Thread(this::run, "countwright-cells");
         thread.setDaemon(true);
     }
@@ -45,30 +56,65 @@ final class CellLane {
         thread.start();
     }
 
+    /** Puts a cell in line; in a lane that is closed it is aborted at once. */
     void add(Request request) {
-        waiting.add(Optional.of(request));
+        synchronized (waiting) {
+            if (!closed) {
+                waiting.addLast(request);
+                waiting.notifyAll();
+                return;
+            }
+        }
+        abort(request);
     }
 
-    /** Aborts what waits and ends once the running cell has ended, waiting for that no longer than given. */
-    void close(Duration patience) throws InterruptedException {
-        closed = true;
+    /** Aborts what waits; the cell that runs, if any, runs to its end. */
+    void close() {
+        synchronized (waiting) {
+            closed = true;
+            waiting.notifyAll();
+        }
         takeWaiting().forEach(this::abort);
-        waiting.add(Optional.empty());
-        thread.join(patience.toMillis());
+    }
+
+    /** Waits, after {@link #close()}, until the running cell has ended, but no longer than given. */
+    void awaitEnd(Duration patience) throws InterruptedException {
+        thread.join(Math.max(1, patience.toMillis()));
         thread.interrupt();
     }
 
     private void run() {
         try {
-            while (!closed) {
-                Optional<Request> next = waiting.take();
-                if (next.isPresent()) {
-                    runSafely(next.get());
+            while (awaitRequest()) {
+                turn.lockInterruptibly();
+                try {
+                    // Taken only now, so that a cell that has not begun can be aborted.
+                    Optional<Request> next = takeFirst();
+                    if (next.isPresent()) {
+                        runSafely(next.get());
+                    }
+                } finally {
+                    turn.unlock();
                 }
             }
         } catch (InterruptedException e) {
-            // Only close() interrupts.
+            // Only the end of the kernel interrupts.
             Thread.currentThread().interrupt();
+        }
+    }
+
+    private boolean awaitRequest() throws InterruptedException {
+        synchronized (waiting) {
+            while (waiting.isEmpty() && !closed) {
+                waiting.wait();
+            }
+            return !closed;
+        }
+    }
+
+    private Optional<Request> takeFirst() {
+        synchronized (waiting) {
+            return Optional.ofNullable(waiting.pollFirst());
         }
     }
 
@@ -105,7 +151,7 @@ final class CellLane {
         }
     }
 
-    /** Takes what waits, including what has reached the socket but not yet this queue. */
+    /** Takes what waits, including what has reached the socket but not yet this lane. */
     private List<Request> takeAllSent() throws InterruptedException {
         CountDownLatch delivered = new CountDownLatch(1);
         sockets.whenAllIsDelivered(Channel.SHELL, delivered::countDown);
@@ -114,9 +160,11 @@ final class CellLane {
     }
 
     private List<Request> takeWaiting() {
-        List<Optional<Request>> taken = new ArrayList<>();
-        waiting.drainTo(taken);
-        return taken.stream().flatMap(Optional::stream).toList();
+        synchronized (waiting) {
+            List<Request> taken = new ArrayList<>(waiting);
+            waiting.clear();
+            return taken;
+        }
     }
 
     private void abort(Request request) {

@@ -5,6 +5,7 @@ import java.util.Locale;
 import java.util.Map;
 import java.util.OptionalInt;
 import tools.jackson.databind.JsonNode;
+import tools.jackson.databind.node.JsonNodeFactory;
 import tools.jackson.databind.node.ObjectNode;
 
 /** The content of a request, read field by field; a missing or null field gives its default, a wrong one is refused. */
@@ -69,6 +70,18 @@ final class Content {
             texts.put(entry.getKey(), entry.getValue().stringValue());
         });
         return texts;
+    }
+
+    /** Returns an object; an empty one if it is absent. */
+    ObjectNode object(String field) {
+        JsonNode value = fields.path(field);
+        if (isAbsent(field)) {
+            return JsonNodeFactory.instance.objectNode();
+        }
+        if (value instanceof ObjectNode object) {
+            return object;
+        }
+        throw wrong(field, "an object", value);
     }
 
     BadRequestException wrong(String field, String wanted, JsonNode found) {

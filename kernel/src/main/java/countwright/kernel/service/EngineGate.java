@@ -6,6 +6,7 @@ import java.util.Optional;
 import java.util.concurrent.CancellationException;
 import java.util.concurrent.CompletableFuture;
 import java.util.concurrent.ExecutionException;
+import java.util.function.Consumer;
 import java.util.function.Supplier;
 
 /** The engine, which starts behind the sockets: whoever needs it waits here until it is up. */
@@ -32,6 +33,11 @@ final class EngineGate {
     /** Waits for the engine. */
     CellEngine await() throws InterruptedException, NoEngineException {
         return await(engine.copy());
+    }
+
+    /** Has an action run once the engine is up. */
+    void whenStarted(Consumer<CellEngine> action) {
+        var unused = engine.thenAccept(action);
     }
 
     /** Begins the turn of a cell: from now on an interrupt is meant for it. Called by the thread that runs cells. */
@@ -79,7 +85,7 @@ final class EngineGate {
     }
 
     private static NoEngineException interruptedBefore(Throwable cause) {
-        return new NoEngineException("InterruptedException", "The cell was interrupted before it began.", cause);
+        return new NoEngineException("Interrupted", "The cell was interrupted before it began.", cause);
     }
 
     /** One cell's use of the engine. */
@@ -99,6 +105,11 @@ final class EngineGate {
                 throw interruptedBefore(new CancellationException());
             }
             return engine;
+        }
+
+        /** Returns whether an interrupt was meant for this turn. */
+        boolean isInterrupted() {
+            return interrupted;
         }
 
         private void interrupt() {

@@ -25,15 +25,17 @@ final class ExecuteHandler implements Handler {
     private final EngineGate engine;
     private final Outbox outbox;
     private final InputDesk inputDesk;
+    private final CommDesk comms;
     private final History history;
 
-    /** Touched by the one thread that runs cells. */
+    /** Touched by the thread whose turn it is to run a cell. */
     private int executionCount;
 
-    ExecuteHandler(EngineGate engine, Outbox outbox, InputDesk inputDesk, History history) {
+    ExecuteHandler(EngineGate engine, Outbox outbox, InputDesk inputDesk, CommDesk comms, History history) {
         this.engine = engine;
         this.outbox = outbox;
         this.inputDesk = inputDesk;
+        this.comms = comms;
         this.history = history;
     }
 
@@ -44,8 +46,8 @@ final class ExecuteHandler implements Handler {
         boolean silent = content.flag("silent", false);
         boolean counts = !silent && content.flag("store_history", true) && !code.isBlank();
         Map<String, String> expressions = content.texts("user_expressions");
-        CellBroadcast broadcast = new CellBroadcast(request, outbox, inputDesk);
         EngineGate.Turn turn = engine.beginTurn();
+        CellBroadcast broadcast = new CellBroadcast(request, outbox, inputDesk, comms, turn::isInterrupted);
         if (counts) {
             executionCount++;
         }
@@ -72,6 +74,7 @@ final class ExecuteHandler implements Handler {
         }
         ObjectNode reply = finished(Replies.ok());
         reply.set("user_expressions", evaluated(expressions, turn));
+        reply.set("payload", broadcast.payload());
         return Optional.of(reply);
     }
 

@@ -1,127 +1,165 @@
 package countwright.kernel.service;
 
+import java.io.IOException;
+import java.lang.System.Logger;
+import java.lang.System.Logger.Level;
+import java.nio.file.Path;
+import java.time.Duration;
 import java.util.ArrayDeque;
 import java.util.ArrayList;
-import java.util.Collections;
+import java.util.Comparator;
 import java.util.Deque;
-import java.util.HashSet;
 import java.util.List;
 import java.util.Optional;
 import java.util.OptionalInt;
-import java.util.Set;
-import java.util.regex.Pattern;
-import tools.jackson.databind.node.ArrayNode;
-import tools.jackson.databind.node.ObjectNode;
+import java.util.concurrent.ExecutorService;
+import java.util.concurrent.RejectedExecutionException;
+import java.util.concurrent.TimeUnit;
 
 /**
- * The cells run in this session and their text results, kept in memory; the oldest go first once there are many. Answers
- * {@code history_request}. Used by any thread.
+ * The cells that were run, of this session and, if there is a file, of those before and beside it. All of it happens on
+ * one thread of its own: a slow or broken disk holds up no cell, and a cell is in the history before the next request for
+ * it is answered. What cannot be written is still there for this session; that is logged once.
+ *
+ * <p>Nothing is read or written before the first cell has run or the first request has come.
  */
-final class History implements Handler {
+final class History {
 
+    private static final Logger LOG = System.getLogger(History.class.getName());
+
+    /** The oldest cells of this session go first once there are so many. */
     static final int CAPACITY = 10_000;
 
     /** Longer results are cut: ten thousand of the longest would be gigabytes. */
     private static final int LONGEST_OUTPUT = 10_000;
 
-    /** The only session there is: an earlier one left nothing behind. */
-    private static final int SESSION = 1;
+    /** A longer cell is not written to the file, where it would push out hundreds of others. */
+    private static final int LONGEST_INPUT = 1_000_000;
 
-    private final Deque<Entry> entries = new ArrayDeque<>();
+    private final ExecutorService thread = Background.inOrder("countwright-history");
+    private final Optional<HistoryFile> file;
 
-    private record Entry(int line, String input, Optional<String> output) {}
+    // Touched on that thread only.
+    private final Deque<HistoryEntry> current = new ArrayDeque<>();
+    private OptionalInt session = OptionalInt.empty();
+    private boolean isWritable = true;
+    private boolean isReadable = true;
 
-    synchronized void add(int line, String input, Optional<String> output) {
-        if (entries.size() == CAPACITY) {
-            entries.removeFirst();
+    /** Makes a history that is kept in a file, or else in memory. */
+    History(Optional<Path> path) {
+        this.file = path.map(HistoryFile::new);
+    }
+
+    /** Returns the thread on which requests for the history are to be answered. */
+    ExecutorService thread() {
+        return thread;
+    }
+
+    /** Adds a cell; returns at once. */
+    void add(int line, String input, Optional<String> output) {
+        try {
+            thread.execute(() -> addNow(line, input, output.map(History::cut)));
+        } catch (RejectedExecutionException e) {
+            LOG.log(Level.DEBUG, "A cell ended after the kernel; it is not in the history.");
         }
-        entries.addLast(new Entry(line, input, output.map(History::cut)));
+    }
+
+    /** Writes what was added and takes nothing more; waits no longer than given. */
+    void close(Duration patience) throws InterruptedException {
+        thread.shutdown();
+        thread.awaitTermination(patience.toMillis(), TimeUnit.MILLISECONDS);
+    }
+
+    /** Returns all cells, oldest first; this session comes last, whatever runs beside it. */
+    List<HistoryEntry> all() {
+        List<HistoryEntry> all = new ArrayList<>(past());
+        all.addAll(current);
+        return all;
+    }
+
+    /**
+     * Returns the cells of one session.
+     *
+     * @param number 0 for this session, a positive number for the session of that number, -1 for the last before this one
+     *     in which cells were run, -2 for the one before that, and so on
+     */
+    List<HistoryEntry> ofSession(int number) {
+        if (number == 0 || OptionalInt.of(number).equals(session)) {
+            return List.copyOf(current);
+        }
+        List<HistoryEntry> past = past();
+        int wanted = number > 0 ? number : before(past, -(long) number);
+        return past.stream().filter(entry -> entry.session() == wanted).toList();
+    }
+
+    /** Returns the number of the session so many before this one, or 0, which no session has. */
+    private int before(List<HistoryEntry> past, long steps) {
+        int[] numbers = past.stream()
+                .mapToInt(HistoryEntry::session)
+                .filter(each -> each < session.orElse(Integer.MAX_VALUE))
+                .distinct()
+                .toArray();
+        return steps <= numbers.length ? numbers[(int) (numbers.length - steps)] : 0;
+    }
+
+    private List<HistoryEntry> past() {
+        if (file.isEmpty()) {
+            return List.of();
+        }
+        try {
+            return file.get().read().stream()
+                    .filter(entry -> session.isEmpty() || entry.session() != session.getAsInt())
+                    .sorted(Comparator.comparingInt(HistoryEntry::session).thenComparingInt(HistoryEntry::line))
+                    .toList();
+        } catch (IOException | RuntimeException e) {
+            LOG.log(isReadable ? Level.WARNING : Level.DEBUG, "The history of earlier sessions cannot be read: " + e);
+            isReadable = false;
+            return List.of();
+        }
+    }
+
+    private void addNow(int line, String input, Optional<String> output) {
+        HistoryEntry entry = new HistoryEntry(thisSession(), line, input, output);
+        if (current.size() == CAPACITY) {
+            current.removeFirst();
+        }
+        current.addLast(entry);
+        if (file.isPresent() && isWritable && input.length() <= LONGEST_INPUT) {
+            try {
+                file.get().append(entry);
+            } catch (IOException | RuntimeException e) {
+                giveUpWriting(e);
+            }
+        }
+    }
+
+    private int thisSession() {
+        if (session.isEmpty()) {
+            session = OptionalInt.of(newSession());
+        }
+        return session.getAsInt();
+    }
+
+    private int newSession() {
+        if (file.isPresent()) {
+            try {
+                return file.get().claimSession();
+            } catch (IOException | RuntimeException e) {
+                giveUpWriting(e);
+            }
+        }
+        return past().stream().mapToInt(HistoryEntry::session).max().orElse(0) + 1;
+    }
+
+    private void giveUpWriting(Exception cause) {
+        isWritable = false;
+        LOG.log(
+                Level.WARNING,
+                "The history cannot be written, so this session's cells will not be found by later ones: " + cause
+                        + ". Set " + HistoryPlace.VARIABLE + " to a file that can be written, or to off.");
     }
 
     private static String cut(String output) {
         return output.length() <= LONGEST_OUTPUT ? output : output.substring(0, LONGEST_OUTPUT) + "…";
-    }
-
-    @Override
-    public Optional<ObjectNode> answer(Request request) {
-        Content content = request.content();
-        String access = content.text("hist_access_type", "tail");
-        List<Entry> found = switch (access) {
-            case "tail" -> last(all(), content.integer("n"));
-            case "range" -> range(content);
-            case "search" -> search(content);
-            default ->
-                throw new BadRequestException(
-                        "history_request needs tail, range or search in content.hist_access_type, but it is '" + access
-                                + "'. The front end should be corrected.");
-        };
-        boolean withOutput = content.flag("output", false);
-        ObjectNode reply = Replies.ok();
-        ArrayNode list = reply.putArray("history");
-        for (Entry entry : found) {
-            ArrayNode item = list.addArray().add(SESSION).add(entry.line());
-            if (withOutput) {
-                ArrayNode pair = item.addArray().add(entry.input());
-                entry.output().ifPresentOrElse(pair::add, pair::addNull);
-            } else {
-                item.add(entry.input());
-            }
-        }
-        return Optional.of(reply);
-    }
-
-    /** Session 0 is the current one; negative ones are past and gone. The stop is exclusive. */
-    private List<Entry> range(Content content) {
-        int session = content.integer("session").orElse(0);
-        if (session != 0 && session != SESSION) {
-            return List.of();
-        }
-        int start = content.integer("start").orElse(0);
-        int stop = content.integer("stop").orElse(Integer.MAX_VALUE);
-        return all().stream()
-                .filter(entry -> entry.line() >= start && entry.line() < stop)
-                .toList();
-    }
-
-    private List<Entry> search(Content content) {
-        Pattern pattern = glob(content.text("pattern", "*"));
-        List<Entry> found = all().stream()
-                .filter(entry -> pattern.matcher(entry.input()).matches())
-                .toList();
-        return last(content.flag("unique", false) ? latestOfEach(found) : found, content.integer("n"));
-    }
-
-    private synchronized List<Entry> all() {
-        return List.copyOf(entries);
-    }
-
-    private static List<Entry> last(List<Entry> found, OptionalInt n) {
-        int count = Math.min(found.size(), Math.max(0, n.orElse(found.size())));
-        return found.subList(found.size() - count, found.size());
-    }
-
-    private static List<Entry> latestOfEach(List<Entry> found) {
-        List<Entry> latest = new ArrayList<>();
-        Set<String> seen = new HashSet<>();
-        for (int i = found.size() - 1; i >= 0; i--) {
-            if (seen.add(found.get(i).input())) {
-                latest.add(found.get(i));
-            }
-        }
-        Collections.reverse(latest);
-        return latest;
-    }
-
-    /** A star stands for any text, a question mark for one character; runs of stars are one, to keep matching fast. */
-    private static Pattern glob(String pattern) {
-        StringBuilder regex = new StringBuilder();
-        pattern.replaceAll("\\*+", "*").codePoints().forEach(c -> {
-            switch (c) {
-                case '*' -> regex.append(".*");
-                case '?' -> regex.append('.');
-                default -> regex.append(Pattern.quote(Character.toString(c)));
-            }
-        });
-        return Pattern.compile(regex.toString(), Pattern.DOTALL);
     }
 }

@@ -33,8 +33,8 @@ final class KernelInfo implements Handler {
                 "Countwright " + version + ", models for counts and rates, on Java " + java
                         + ". A cell is Java; a last expression without a semicolon is shown.");
         content.putArray("help_links");
-        // Subshells and the debugger are named here once they work.
-        content.putArray("supported_features");
+        // There is no debugger for cells, so none is named.
+        content.putArray("supported_features").add("kernel subshells");
         return Optional.of(content);
     }
 

@@ -4,13 +4,14 @@ import countwright.kernel.cell.CellEngine;
 import countwright.kernel.wire.ConnectionFile;
 import countwright.kernel.wire.KernelSockets;
 import countwright.kernel.wire.WireLimits;
+import java.nio.file.Path;
 import java.time.Duration;
 import java.util.Optional;
 import java.util.concurrent.CompletableFuture;
 import java.util.concurrent.ExecutionException;
 import java.util.concurrent.ExecutorService;
-import java.util.concurrent.Executors;
 import java.util.concurrent.atomic.AtomicBoolean;
+import java.util.concurrent.locks.ReentrantLock;
 import java.util.function.Supplier;
 import tools.jackson.databind.node.ObjectNode;
 
@@ -25,13 +26,19 @@ import tools.jackson.databind.node.ObjectNode;
  */
 public final class KernelServer implements AutoCloseable {
 
-    private static final Duration WORKER_PATIENCE = Duration.ofSeconds(2);
+    /** Together with what the sockets take to send their last, less than the second in which a kernel is to be gone. */
+    private static final Duration WORKER_PATIENCE = Duration.ofMillis(300);
+
+    private static final Duration CELL_PATIENCE = Duration.ofMillis(200);
+    private static final Duration HISTORY_PATIENCE = Duration.ofMillis(100);
 
     private final KernelSockets sockets;
     private final EngineGate engine;
     private final InputDesk inputDesk;
-    private final CellLane cells;
-    private final ExecutorService questions;
+    private final Subshells shells;
+    private final CommDesk comms;
+    private final History history;
+    private final ExecutorService usage = Background.inOrder("countwright-usage");
     private final CompletableFuture<Ending> ending = new CompletableFuture<>();
     private final AtomicBoolean closed = new AtomicBoolean();
 
@@ -45,46 +52,61 @@ public final class KernelServer implements AutoCloseable {
         CLOSED
     }
 
-    private KernelServer(KernelSockets sockets, Supplier<? extends CellEngine> engineStart) {
-        this.sockets = sockets;
+    private KernelServer(
+            ConnectionFile connection, Optional<Path> historyFile, Supplier<? extends CellEngine> engineStart) {
+        this.sockets = KernelSockets.bind(connection, WireLimits.STANDARD);
         this.engine = new EngineGate(engineStart);
         Outbox outbox = new Outbox(sockets);
         this.inputDesk = new InputDesk(outbox);
-        History history = new History();
-        this.cells =
-                new CellLane(sockets, outbox, new SafeAnswer(new ExecuteHandler(engine, outbox, inputDesk, history)));
-        this.questions = Executors.newSingleThreadExecutor(task -> {
-            Thread thread = new Thread(task, "countwright-questions");
-            thread.setDaemon(true);
-            return thread;
-        });
+        this.history = new History(historyFile);
+        this.comms = new CommDesk(engine, outbox);
+        SafeAnswer execute = new SafeAnswer(new ExecuteHandler(engine, outbox, inputDesk, comms, history));
+        ReentrantLock turn = new ReentrantLock(true);
+        this.shells = new Subshells(() -> new Shell(new CellLane(sockets, outbox, execute, turn)));
         QuestionHandlers about = new QuestionHandlers(engine);
-        CommHandlers comms = new CommHandlers(outbox);
-        Dispatcher dispatcher = new Dispatcher(outbox, inputDesk, cells)
+        Dispatcher dispatcher = new Dispatcher(outbox, inputDesk, shells)
                 .atOnce("kernel_info_request", new KernelInfo())
-                .atOnce("history_request", history)
+                .atOnce("connect_request", new ConnectHandler(connection))
+                .through(history.thread(), "history_request", new HistoryHandler(history))
                 .atOnce("comm_info_request", comms.info())
-                .atOnce("comm_open", comms.open())
-                .atOnce("comm_msg", comms.ignore())
-                .atOnce("comm_close", comms.ignore())
+                .handingOver("comm_open", comms::open)
+                .handingOver("comm_msg", comms::message)
+                .handingOver("comm_close", comms::close)
                 .atOnce("interrupt_request", request -> interrupt())
                 .atOnce("shutdown_request", request -> shutdown(request, outbox), this::end)
-                .through(questions, "is_complete_request", about.isComplete())
-                .through(questions, "complete_request", about.complete())
-                .through(questions, "inspect_request", about.inspect());
+                .atOnce("debug_request", new DebugHandler())
+                .atOnce("create_subshell_request", shells.create())
+                .atOnce("delete_subshell_request", shells.delete())
+                .atOnce("list_subshell_request", shells.list())
+                .through(usage, "usage_request", new UsageHandler())
+                .asQuestion("is_complete_request", about.isComplete())
+                .asQuestion("complete_request", about.complete())
+                .asQuestion("inspect_request", about.inspect());
         outbox.starting();
-        cells.start();
+        shells.start();
         sockets.start(dispatcher);
     }
 
     /**
-     * Starts to listen.
+     * Starts to listen; the history of cells ends with this kernel.
      *
      * @param engineStart opens the engine; called once, on a thread of its own. What it throws is what cells then fail with
      * @throws IllegalStateException if a port of the connection is taken
      */
     public static KernelServer start(ConnectionFile connection, Supplier<? extends CellEngine> engineStart) {
-        return new KernelServer(KernelSockets.bind(connection, WireLimits.STANDARD), engineStart);
+        return new KernelServer(connection, Optional.empty(), engineStart);
+    }
+
+    /**
+     * Starts to listen.
+     *
+     * @param historyFile where cells are kept for later kernels, if they are
+     * @param engineStart opens the engine; called once, on a thread of its own. What it throws is what cells then fail with
+     * @throws IllegalStateException if a port of the connection is taken
+     */
+    public static KernelServer start(
+            ConnectionFile connection, Optional<Path> historyFile, Supplier<? extends CellEngine> engineStart) {
+        return new KernelServer(connection, historyFile, engineStart);
     }
 
     /**
@@ -101,7 +123,12 @@ public final class KernelServer implements AutoCloseable {
         }
     }
 
-    /** Ends the engine, aborts what waits, sends what is queued and closes the sockets; takes a few seconds at most. */
+    /** Returns what completes as soon as the end is asked for, before anything has been closed. */
+    public CompletableFuture<Ending> ending() {
+        return ending.copy();
+    }
+
+    /** Ends the engine, aborts what waits, sends what is queued and closes the sockets; takes a second at most. */
     @Override
     public void close() {
         if (!closed.compareAndSet(false, true)) {
@@ -109,15 +136,17 @@ public final class KernelServer implements AutoCloseable {
         }
         ending.complete(Ending.CLOSED);
         inputDesk.cancel("The kernel is shutting down.");
-        questions.shutdown();
+        shells.close();
         try {
             engine.interrupt();
             engine.close(WORKER_PATIENCE);
-            cells.close(WORKER_PATIENCE);
+            shells.awaitEnd(CELL_PATIENCE);
+            history.close(HISTORY_PATIENCE);
         } catch (InterruptedException e) {
             Thread.currentThread().interrupt();
         } finally {
-            questions.shutdownNow();
+            comms.close();
+            usage.shutdownNow();
             sockets.close();
         }
     }

@@ -37,6 +37,12 @@ final class Outbox {
         sockets.send(Channel.IOPUB, new Envelope(topic, Message.caused(header(type), cause, content)));
     }
 
+    /** Publishes something that no request has caused. */
+    void publish(String type, ObjectNode content) {
+        Route topic = Route.topic("kernel." + sockets.session() + "." + type);
+        sockets.send(Channel.IOPUB, new Envelope(topic, Message.first(header(type), content)));
+    }
+
     /** Says once, when the process is up, that it is starting; it has no cause but itself. */
     void starting() {
         Header header = header("status");

@@ -82,7 +82,7 @@ final class QuestionHandlers {
                 return Optional.of(Replies.error(e.kind(), e.text()));
             } catch (InterruptedException e) {
                 Thread.currentThread().interrupt();
-                return Optional.of(Replies.error("InterruptedException", "The kernel is shutting down."));
+                return Optional.of(Replies.error("ShuttingDown", "The kernel is shutting down."));
             }
         };
     }

@@ -48,9 +48,13 @@ final class Replies {
 
     /** Puts data and metadata of a bundle. */
     static void putBundle(ObjectNode content, MimeBundle bundle) {
+        putData(content, bundle);
+        content.set("metadata", MAPPER.valueToTree(bundle.metadata()));
+    }
+
+    static void putData(ObjectNode content, MimeBundle bundle) {
         ObjectNode data = content.putObject("data");
         bundle.data().forEach((type, form) -> data.set(type, form(type, form)));
-        content.set("metadata", MAPPER.valueToTree(bundle.metadata()));
     }
 
     /** JSON forms travel as JSON, all others as text. */

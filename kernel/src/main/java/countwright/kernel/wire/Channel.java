@@ -21,7 +21,7 @@ public enum Channel {
     }
 
     /** Returns the field of the connection file that holds this channel's port. */
-    String portField() {
+    public String portField() {
         return this == HEARTBEAT ? "hb_port" : protocolName() + "_port";
     }
 }

@@ -78,6 +78,11 @@ public final class ClientSockets implements AutoCloseable {
         return Message.first(Header.create(type, session, username), content);
     }
 
+    /** Returns a new request of this session to a subshell, to be passed to {@link #send}. */
+    public Message request(String subshell, String type, ObjectNode content) {
+        return Message.first(Header.create(type, session, username).toSubshell(subshell), content);
+    }
+
     /** Returns a new answer to a message of the kernel, such as an {@code input_request}. */
     public Message answer(String type, Message question, ObjectNode content) {
         return Message.caused(Header.create(type, session, username), question.header(), content);

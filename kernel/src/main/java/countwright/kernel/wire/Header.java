@@ -36,6 +36,11 @@ public final class Header {
         return new Header(json);
     }
 
+    /** Returns this header as that of a request to a subshell. */
+    public Header toSubshell(String id) {
+        return new Header(toJson().put("subshell_id", id));
+    }
+
     static Header received(ObjectNode json) throws MalformedMessageException {
         for (String field : new String[] {"msg_id", "msg_type"}) {
             JsonNode value = json.path(field);
@@ -69,6 +74,11 @@ public final class Header {
     /** Returns the name of the sender's user; empty if it gave none. */
     public String username() {
         return text("username");
+    }
+
+    /** Returns the id of the subshell as it was sent, of whatever type; missing or null for the main shell. */
+    public JsonNode subshell() {
+        return json.path("subshell_id");
     }
 
     /** Returns a copy of the whole header as JSON. */

@@ -159,6 +159,9 @@ public final class Worker implements AutoCloseable {
     public void close(Duration patience) {
         leaving = true;
         interrupter.close();
+        // By another thread, since a worker that does not read can hold up the sending.
+        CompletableFuture.delayedExecutor(patience.toMillis(), TimeUnit.MILLISECONDS)
+                .execute(process::destroyForcibly);
         send(new Frame.Leave());
         try {
             if (!process.waitFor(patience.toMillis(), TimeUnit.MILLISECONDS)) {
@@ -262,6 +265,8 @@ public final class Worker implements AutoCloseable {
         }
         command.add("-Djava.awt.headless=true");
         command.add("-Dfile.encoding=UTF-8");
+        // On JDK 22 to 24 System.console() would be there and read nothing; with this it is null, as on all others.
+        command.add("-Djdk.console=java.base");
         command.add("-Xshare:auto");
         // Exceptions thrown often would lose their traces, and with them the line in the cell.
         command.add("-XX:-OmitStackTraceInFastThrow");

@@ -1,5 +1,6 @@
 package countwright.kernel.cell;
 
+import countwright.show.CommMessage;
 import countwright.show.MimeBundle;
 import countwright.show.Stage;
 import java.util.ArrayList;
@@ -15,6 +16,7 @@ final class Heard implements CellListener {
     private final StringBuilder out = new StringBuilder();
     private final StringBuilder err = new StringBuilder();
     private final List<MimeBundle> shown = new ArrayList<>();
+    private final List<CommMessage> comms = new ArrayList<>();
     private final CountDownLatch something = new CountDownLatch(1);
     private final Consumer<InputRequest> onQuestion;
 
@@ -67,5 +69,32 @@ final class Heard implements CellListener {
     @Override
     public void ask(InputRequest request) {
         onQuestion.accept(request);
+    }
+
+    @Override
+    public synchronized void page(MimeBundle bundle) {
+        shown.add(bundle);
+    }
+
+    @Override
+    public void nextInput(String code) {}
+
+    @Override
+    public synchronized void comm(CommMessage message) {
+        comms.add(message);
+        notifyAll();
+    }
+
+    /** Waits for the next comm message and takes it. */
+    synchronized CommMessage takeComm() throws InterruptedException {
+        long deadline = System.nanoTime() + TimeUnit.SECONDS.toNanos(20);
+        while (comms.isEmpty()) {
+            long left = TimeUnit.NANOSECONDS.toMillis(deadline - System.nanoTime());
+            if (left <= 0) {
+                throw new AssertionError("no comm message within 20 s");
+            }
+            wait(left);
+        }
+        return comms.remove(0);
     }
 }

@@ -7,6 +7,7 @@ import countwright.kernel.cell.CellOutcome.Failure;
 import countwright.kernel.cell.CellOutcome.Success;
 import countwright.kernel.cell.Completeness;
 import countwright.kernel.cell.Completions;
+import countwright.show.CommMessage;
 import countwright.show.MimeBundle;
 import countwright.show.Stage;
 import java.time.Duration;
@@ -15,6 +16,7 @@ import java.util.List;
 import java.util.Map;
 import java.util.Optional;
 import java.util.concurrent.BlockingQueue;
+import java.util.concurrent.CopyOnWriteArrayList;
 import java.util.concurrent.CountDownLatch;
 import java.util.concurrent.LinkedBlockingQueue;
 
@@ -25,6 +27,8 @@ final class FakeEngine implements CellEngine {
 
     /** What ends a blocked cell: "go" lets it end well, anything else is a failure of that name. */
     final BlockingQueue<String> release = new LinkedBlockingQueue<>();
+
+    final List<Runnable> lossActions = new CopyOnWriteArrayList<>();
 
     @Override
     public CellOutcome evaluate(String code, int executionCount, CellListener listener) {
@@ -45,6 +49,19 @@ final class FakeEngine implements CellEngine {
                 listener.update(MimeBundle.text("2 %"), "p");
                 listener.clear(Stage.Clearing.BEFORE_NEXT);
                 listener.clear(Stage.Clearing.NOW);
+                yield new Success(Optional.empty());
+            }
+            case "page" -> {
+                listener.page(MimeBundle.text("first"));
+                listener.page(MimeBundle.text(rest).withHtml("<b>" + rest + "</b>"));
+                listener.nextInput("1 + 1");
+                listener.nextInput("2 + 2");
+                yield rest.equals("fail")
+                        ? new Failure("IllegalStateException", rest, List.of(rest))
+                        : new Success(Optional.empty());
+            }
+            case "comm" -> {
+                listener.comm(new CommMessage(CommMessage.Kind.OPEN, rest, "lamp", Map.of("n", 1)));
                 yield new Success(Optional.empty());
             }
             case "block" -> {
@@ -128,9 +145,26 @@ final class FakeEngine implements CellEngine {
         return MimeBundle.text(code.startsWith("unknown") ? "" : code.substring(0, cursor) + " " + detail);
     }
 
+    /** Echoes messages, closes comms of unknown targets and prints what it is told. */
+    @Override
+    public void receive(CommMessage message, CellListener listener, Runnable handled) {
+        if (message.kind() == CommMessage.Kind.OPEN && !message.target().equals("echo")) {
+            listener.comm(new CommMessage(CommMessage.Kind.CLOSE, message.commId(), "", Map.of()));
+        } else if (message.kind() == CommMessage.Kind.MESSAGE) {
+            listener.output(CellListener.Stream.OUT, "handling");
+            listener.comm(new CommMessage(CommMessage.Kind.MESSAGE, message.commId(), "", message.data()));
+        }
+        handled.run();
+    }
+
+    @Override
+    public void whenWorkerIsLost(Runnable action) {
+        lossActions.add(action);
+    }
+
     @Override
     public void interrupt() {
-        release.add("InterruptedException");
+        release.add("Interrupted");
     }
 
     @Override

@@ -7,7 +7,9 @@ import countwright.kernel.wire.ClientSockets;
 import countwright.kernel.wire.ConnectionFile;
 import countwright.kernel.wire.Message;
 import java.util.ArrayList;
+import java.util.HashSet;
 import java.util.List;
+import java.util.Set;
 import java.util.concurrent.TimeUnit;
 import java.util.function.Predicate;
 import tools.jackson.databind.json.JsonMapper;
@@ -17,9 +19,11 @@ import tools.jackson.databind.node.ObjectNode;
 /** A front end that keeps everything it hears and can wait, with a limit, for what it wants to hear. */
 final class FrontEnd implements AutoCloseable {
 
-    private static final long LIMIT_SECONDS = 10;
+    private static final long LIMIT_SECONDS = 60;
 
     private final List<Heard> heard = new ArrayList<>();
+    private final List<Heard> sent = new ArrayList<>();
+    private final Set<String> answered = new HashSet<>();
     private final ClientSockets sockets;
 
     record Heard(Channel channel, Message message) {}
@@ -37,7 +41,14 @@ final class FrontEnd implements AutoCloseable {
     /** Sends a request whose content is given as JSON with single quotes. */
     Message send(Channel channel, String type, String content) {
         Message request = sockets.request(type, json(content));
-        sockets.send(channel, request);
+        send(channel, request);
+        return request;
+    }
+
+    /** Sends a request to a subshell. */
+    Message sendTo(String subshell, String type, String content) {
+        Message request = sockets.request(subshell, type, json(content));
+        send(Channel.SHELL, request);
         return request;
     }
 
@@ -48,18 +59,45 @@ final class FrontEnd implements AutoCloseable {
     Message execute(String code, String options) {
         ObjectNode content = json(options).put("code", code);
         Message request = sockets.request("execute_request", content);
-        sockets.send(Channel.SHELL, request);
+        send(Channel.SHELL, request);
         return request;
     }
 
     void answer(Message question, String value) {
         ObjectNode content = JsonNodeFactory.instance.objectNode().put("value", value);
-        sockets.send(Channel.STDIN, sockets.answer("input_reply", question, content));
+        send(Channel.STDIN, sockets.answer("input_reply", question, content));
     }
 
     void answerWithoutParent(String value) {
         ObjectNode content = JsonNodeFactory.instance.objectNode().put("value", value);
-        sockets.send(Channel.STDIN, sockets.request("input_reply", content));
+        send(Channel.STDIN, sockets.request("input_reply", content));
+    }
+
+    private void send(Channel channel, Message message) {
+        synchronized (heard) {
+            sent.add(new Heard(channel, message));
+        }
+        sockets.send(channel, message);
+    }
+
+    /** Returns all that was sent or heard so far. */
+    List<Heard> all() {
+        synchronized (heard) {
+            List<Heard> all = new ArrayList<>(sent);
+            all.addAll(heard);
+            return all;
+        }
+    }
+
+    /** Waits for the next question of a cell that has not been waited for. */
+    Message awaitQuestion(Message cell) throws InterruptedException {
+        Message question = await(
+                "a question",
+                item -> item.channel() == Channel.STDIN
+                        && item.message().isCausedBy(cell.header())
+                        && !answered.contains(item.message().header().id()));
+        answered.add(question.header().id());
+        return question;
     }
 
     Message await(Channel channel, String type, Message cause) throws InterruptedException {
@@ -68,6 +106,18 @@ final class FrontEnd implements AutoCloseable {
                 item -> item.channel() == channel
                         && item.message().type().equals(type)
                         && item.message().isCausedBy(cause.header()));
+    }
+
+    /** Waits for a message about a comm, whatever its cause. */
+    void awaitPublished(String type, String commId) throws InterruptedException {
+        await(
+                type + " of " + commId,
+                item -> item.message().type().equals(type)
+                        && item.message()
+                                .content()
+                                .path("comm_id")
+                                .stringValue("")
+                                .equals(commId));
     }
 
     /** Waits for the reply and for idle, so that everything about the request has been heard. */

@@ -16,7 +16,6 @@ import org.junit.jupiter.api.Timeout;
 import org.junit.jupiter.params.ParameterizedTest;
 import org.junit.jupiter.params.provider.CsvSource;
 import org.junit.jupiter.params.provider.EnumSource;
-import org.junit.jupiter.params.provider.ValueSource;
 
 @Timeout(30)
 @SuppressWarnings("NullAway.Init")
@@ -64,6 +63,13 @@ class KernelServerTest {
                 "history_request | {'hist_access_type':'nonsense'}",
                 "comm_info_request | {}",
                 "interrupt_request | {}",
+                "connect_request | {}",
+                "usage_request | {}",
+                "debug_request | {'type':'request','seq':1,'command':'initialize'}",
+                "debug_request | {'seq':'one'}",
+                "list_subshell_request | {}",
+                "delete_subshell_request | {'subshell_id':'nowhere'}",
+                "delete_subshell_request | {}",
             })
     void anyRequest_onEitherChannel_hasOneReplyAndItsOutputBetweenBusyAndIdle(String type, String content)
             throws Exception {
@@ -95,7 +101,7 @@ class KernelServerTest {
         assertThat(info.path("implementation_version").stringValue()).matches("\\d+\\.\\d+\\.\\d+.*");
         assertThat(info.at("/language_info/version").stringValue())
                 .isEqualTo(Runtime.version().toString());
-        assertThat(info.path("supported_features").isEmpty()).isTrue();
+        assertThat(info.path("supported_features").toString()).isEqualTo("[\"kernel subshells\"]");
         assertThat(info.path("help_links").isArray()).isTrue();
     }
 
@@ -248,71 +254,7 @@ class KernelServerTest {
         front.await(Channel.IOPUB, "stream", running);
         Message interrupt = front.send(Channel.CONTROL, "interrupt_request", "{}");
         assertThat(front.reply(interrupt).content()).isEqualTo(FrontEnd.json("{'status':'ok'}"));
-        assertThat(front.reply(running).content().path("ename").stringValue()).isEqualTo("InterruptedException");
-    }
-
-    @ParameterizedTest
-    @ValueSource(booleans = {true, false})
-    void input_answer_reachesTheCell(boolean namingTheQuestion) throws Exception {
-        Message cell = front.execute("ask Your name?", "{'allow_stdin':true}");
-        Message question = front.await(Channel.STDIN, "input_request", cell);
-        assertThat(question.content()).isEqualTo(FrontEnd.json("{'prompt':'Your name?','password':true}"));
-        if (namingTheQuestion) {
-            front.answer(question, "Ünal 😀");
-        } else {
-            front.answerWithoutParent("Ünal 😀");
-        }
-        front.reply(cell);
-        assertThat(front.await(Channel.IOPUB, "execute_result", cell)
-                        .content()
-                        .at("/data/text~1plain")
-                        .stringValue())
-                .isEqualTo("got Ünal 😀");
-    }
-
-    @Test
-    void input_notAllowed_isRefusedWithoutAsking() throws Exception {
-        Message cell = front.execute("ask Your name?", "{'allow_stdin':false}");
-        assertThat(front.reply(cell).content().path("evalue").stringValue()).contains("allow_stdin = false");
-        assertThat(front.about(cell, Channel.STDIN)).isEmpty();
-    }
-
-    @Test
-    void input_interrupted_isCancelledAndALateAnswerIsDropped() throws Exception {
-        Message cell = front.execute("ask first", "{'allow_stdin':true}");
-        Message question = front.await(Channel.STDIN, "input_request", cell);
-        front.reply(front.send(Channel.CONTROL, "interrupt_request", "{}"));
-        assertThat(front.reply(cell).content().path("evalue").stringValue()).contains("interrupted");
-
-        Message next = front.execute("ask second", "{'allow_stdin':true}");
-        Message nextQuestion = front.await(Channel.STDIN, "input_request", next);
-        front.answer(question, "late");
-        front.answer(nextQuestion, "in time");
-        front.reply(next);
-        assertThat(front.await(Channel.IOPUB, "execute_result", next)
-                        .content()
-                        .at("/data/text~1plain")
-                        .stringValue())
-                .isEqualTo("got in time");
-    }
-
-    @Test
-    void input_answerFromAnotherFrontEnd_isIgnored() throws Exception {
-        Message cell = front.execute("ask name", "{'allow_stdin':true}");
-        Message question = front.await(Channel.STDIN, "input_request", cell);
-        try (FrontEnd other = new FrontEnd(connection)) {
-            other.answer(question, "from a stranger");
-            // What the stranger sent is on its way before its next request is answered, but on another socket:
-            // the assertion below is about whose answer counts, whichever comes first.
-            other.reply(other.send(Channel.SHELL, "kernel_info_request", "{}"));
-            front.answer(question, "from the owner");
-            front.reply(cell);
-        }
-        assertThat(front.await(Channel.IOPUB, "execute_result", cell)
-                        .content()
-                        .at("/data/text~1plain")
-                        .stringValue())
-                .isEqualTo("got from the owner");
+        assertThat(front.reply(running).content().path("ename").stringValue()).isEqualTo("Interrupted");
     }
 
     @ParameterizedTest
@@ -385,16 +327,43 @@ class KernelServerTest {
     }
 
     @Test
-    void commOpen_unknownTarget_isClosed() throws Exception {
-        Message open = front.send(Channel.SHELL, "comm_open", "{'comm_id':'c1','target_name':'t','data':{}}");
-        front.awaitIdle(open);
-        assertThat(front.await(Channel.IOPUB, "comm_close", open).content())
-                .isEqualTo(FrontEnd.json("{'comm_id':'c1','data':{}}"));
+    void connect_namesAllFivePorts() throws Exception {
+        var reply =
+                front.reply(front.send(Channel.SHELL, "connect_request", "{}")).content();
+        for (Channel channel : Channel.values()) {
+            assertThat(reply.path(channel.portField()).intValue())
+                    .isEqualTo(connection.ports().get(channel));
+        }
+    }
+
+    @Test
+    void debug_isRefusedInBothForms() throws Exception {
+        var reply = front.reply(front.send(
+                        Channel.CONTROL, "debug_request", "{'type':'request','seq':4,'command':'initialize'}"))
+                .content();
+        assertThat(reply.path("status").stringValue()).isEqualTo("error");
+        assertThat(reply.path("success").booleanValue(true)).isFalse();
+        assertThat(reply.path("request_seq").intValue()).isEqualTo(4);
+    }
+
+    @Test
+    void payload_isTheLastOfEachSource() throws Exception {
+        assertThat(front.reply(front.execute("page all"))
+                        .content()
+                        .path("payload")
+                        .toString())
+                .isEqualTo("[{\"source\":\"page\",\"data\":{\"text/plain\":\"all\",\"text/html\":\"<b>all</b>\"},"
+                        + "\"start\":0},{\"source\":\"set_next_input\",\"text\":\"2 + 2\",\"replace\":false}]");
+        assertThat(front.reply(front.execute("page fail"))
+                        .content()
+                        .path("payload")
+                        .toString())
+                .isEqualTo("[]");
     }
 
     @Test
     void unknownType_isIgnoredAndTheNextRequestIsAnswered() throws Exception {
-        Message unknown = front.send(Channel.CONTROL, "debug_request", "{}");
+        Message unknown = front.send(Channel.CONTROL, "unheard_of_request", "{}");
         front.reply(front.send(Channel.CONTROL, "kernel_info_request", "{}"));
         assertThat(front.about(unknown, Channel.CONTROL)).isEmpty();
         assertThat(front.about(unknown, Channel.IOPUB)).isEmpty();

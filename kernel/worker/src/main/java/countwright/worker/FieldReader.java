@@ -1,10 +1,13 @@
 package countwright.worker;
 
+import countwright.show.CommMessage;
 import countwright.show.MimeBundle;
 import java.io.DataInputStream;
 import java.io.IOException;
 import java.nio.charset.StandardCharsets;
+import java.util.ArrayList;
 import java.util.LinkedHashMap;
+import java.util.List;
 import java.util.Map;
 import java.util.Optional;
 
@@ -12,6 +15,9 @@ import java.util.Optional;
 final class FieldReader {
 
     private static final int MAXIMUM_ITEMS = 1 << 20;
+
+    /** A little more than what may be sent. */
+    private static final int DEEPEST = 100;
 
     private final DataInputStream in;
 
@@ -62,11 +68,7 @@ final class FieldReader {
         for (int i = 0; i < forms; i++) {
             String type = readText();
             data.put(type, readText());
-            int values = readCount();
-            Map<String, Object> formMetadata = new LinkedHashMap<>();
-            for (int k = 0; k < values; k++) {
-                formMetadata.put(readText(), readMetadataValue());
-            }
+            Map<String, Object> formMetadata = readObject(0);
             if (!formMetadata.isEmpty()) {
                 metadata.put(type, formMetadata);
             }
@@ -77,14 +79,49 @@ final class FieldReader {
         return MimeBundle.of(data, metadata);
     }
 
-    private Object readMetadataValue() throws IOException {
+    CommMessage readCommMessage() throws IOException {
+        CommMessage.Kind kind = readConstant(CommMessage.Kind.values());
+        String commId = readText();
+        String target = readText();
+        try {
+            return new CommMessage(kind, commId, target, readObject(0));
+        } catch (IllegalArgumentException e) {
+            throw new IOException("damaged stream: " + e.getMessage(), e);
+        }
+    }
+
+    private Map<String, Object> readObject(int depth) throws IOException {
+        int count = readCount();
+        Map<String, Object> values = new LinkedHashMap<>();
+        for (int i = 0; i < count; i++) {
+            values.put(readText(), readValue(depth + 1));
+        }
+        return values;
+    }
+
+    private List<Object> readList(int depth) throws IOException {
+        int count = readCount();
+        List<Object> items = new ArrayList<>();
+        for (int i = 0; i < count; i++) {
+            items.add(readValue(depth + 1));
+        }
+        return items;
+    }
+
+    private Object readValue(int depth) throws IOException {
+        if (depth > DEEPEST) {
+            throw new IOException("damaged stream: values nested more than " + DEEPEST + " deep");
+        }
         int tag = in.readUnsignedByte();
         return switch (tag) {
             case Tag.WHOLE -> in.readLong();
             case Tag.DECIMAL -> in.readDouble();
             case Tag.FLAG -> in.readBoolean();
             case Tag.TEXT -> readText();
-            default -> throw new IOException("damaged stream: unknown metadata tag " + tag);
+            case Tag.LIST -> readList(depth);
+            case Tag.OBJECT -> readObject(depth);
+            case Tag.NOTHING -> Optional.empty();
+            default -> throw new IOException("damaged stream: unknown value tag " + tag);
         };
     }
 }

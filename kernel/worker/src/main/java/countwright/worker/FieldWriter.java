@@ -1,9 +1,11 @@
 package countwright.worker;
 
+import countwright.show.CommMessage;
 import countwright.show.MimeBundle;
 import java.io.DataOutputStream;
 import java.io.IOException;
 import java.nio.charset.StandardCharsets;
+import java.util.List;
 import java.util.Map;
 import java.util.Optional;
 
@@ -48,15 +50,27 @@ final class FieldWriter {
             writeText(form.getKey());
             writeText(form.getValue());
             Map<String, Object> values = bundle.metadata().getOrDefault(form.getKey(), Map.of());
-            out.writeInt(values.size());
-            for (Map.Entry<String, Object> value : values.entrySet()) {
-                writeText(value.getKey());
-                writeMetadataValue(value.getValue());
-            }
+            writeObject(values);
         }
     }
 
-    private void writeMetadataValue(Object value) throws IOException {
+    void writeCommMessage(CommMessage message) throws IOException {
+        writeConstant(message.kind());
+        writeText(message.commId());
+        writeText(message.target());
+        writeObject(message.data());
+    }
+
+    private void writeObject(Map<?, ?> values) throws IOException {
+        out.writeInt(values.size());
+        for (Map.Entry<?, ?> value : values.entrySet()) {
+            writeText(value.getKey().toString());
+            writeValue(value.getValue());
+        }
+    }
+
+    /** Writes a value of JSON, its null as an empty Optional; what is of no such type goes as its text. */
+    private void writeValue(Object value) throws IOException {
         if (value instanceof Integer || value instanceof Long) {
             out.writeByte(Tag.WHOLE);
             out.writeLong(((Number) value).longValue());
@@ -66,6 +80,17 @@ final class FieldWriter {
         } else if (value instanceof Boolean flag) {
             out.writeByte(Tag.FLAG);
             out.writeBoolean(flag);
+        } else if (value instanceof List<?> items) {
+            out.writeByte(Tag.LIST);
+            out.writeInt(items.size());
+            for (Object item : items) {
+                writeValue(item);
+            }
+        } else if (value instanceof Map<?, ?> values) {
+            out.writeByte(Tag.OBJECT);
+            writeObject(values);
+        } else if (value instanceof Optional<?> optional && optional.isEmpty()) {
+            out.writeByte(Tag.NOTHING);
         } else {
             out.writeByte(Tag.TEXT);
             writeText(value.toString());

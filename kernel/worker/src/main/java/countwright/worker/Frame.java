@@ -1,5 +1,6 @@
 package countwright.worker;
 
+import countwright.show.CommMessage;
 import countwright.show.MimeBundle;
 import countwright.show.Stage;
 import java.util.List;
@@ -16,6 +17,9 @@ public sealed interface Frame {
 
     /** A frame the worker sends. */
     sealed interface ToKernel extends Frame {}
+
+    /** Something said or done by user code, to be passed on to the front end. */
+    sealed interface Event extends ToKernel {}
 
     /** A request that the cell thread carries out and answers with {@link Done} or {@link Failed}. */
     sealed interface Request extends ToWorker {}
@@ -67,6 +71,12 @@ public sealed interface Frame {
     /** Says that a question will not be answered, and why. */
     record Refuse(int question, String reason) implements ToWorker {}
 
+    /** Gives a message from the front end's end of a comm; {@code number} names it in what comes of it. */
+    record CommReceived(long number, CommMessage message) implements ToWorker {}
+
+    /** Asks the handler of a comm message to stop by {@link Thread#interrupt}. */
+    record InterruptHandler() implements ToWorker {}
+
     /** Ends the worker. */
     record Leave() implements ToWorker {}
 
@@ -80,22 +90,37 @@ public sealed interface Frame {
     record Failed(Fault fault) implements Reply {}
 
     /** Bytes of UTF-8 text written to an output stream; a character may be split between two frames. */
-    record Output(Channel channel, Bytes bytes) implements ToKernel {}
+    record Output(Channel channel, Bytes bytes) implements Event {}
 
     /** A bundle to show. */
-    record Shown(MimeBundle bundle, Optional<String> displayId) implements ToKernel {}
+    record Shown(MimeBundle bundle, Optional<String> displayId) implements Event {}
 
     /** A bundle that replaces an earlier one. */
-    record Updated(MimeBundle bundle, String displayId) implements ToKernel {}
+    record Updated(MimeBundle bundle, String displayId) implements Event {}
 
     /** What was shown so far is to be removed. */
-    record Cleared(Stage.Clearing when) implements ToKernel {}
+    record Cleared(Stage.Clearing when) implements Event {}
 
     /** A question for the person at the front end. */
-    record Asked(int question, String prompt, Stage.Echo echo) implements ToKernel {}
+    record Asked(int question, String prompt, Stage.Echo echo) implements Event {}
+
+    /** A bundle for the front end's pager. */
+    record Paged(MimeBundle bundle) implements Event {}
+
+    /** Code for the front end's next cell. */
+    record NextInput(String code) implements Event {}
+
+    /** A message for the front end's end of a comm. */
+    record CommSent(CommMessage message) implements Event {}
+
+    /** An event caused not by a cell but by the handler of the comm message of that number. */
+    record Aside(long number, Event event) implements ToKernel {}
+
+    /** The handler of a comm message has ended, with a fault if it failed. */
+    record Handled(long number, Optional<Fault> fault) implements ToKernel {}
 
     /** The cell that runs asks to have the cells of the lost session run again. */
-    record RestoreAsked() implements ToKernel {}
+    record RestoreAsked() implements Event {}
 
     /** The two output streams of the worker. */
     enum Channel {

@@ -20,6 +20,18 @@ final class FrameReader {
 
     Frame read() throws IOException {
         int tag = in.readUnsignedByte();
+        return tag == Tag.ASIDE ? new Frame.Aside(in.readLong(), readEvent()) : read(tag);
+    }
+
+    /** An aside holds no other, or damage could nest them without end. */
+    private Frame.Event readEvent() throws IOException {
+        if (read(in.readUnsignedByte()) instanceof Frame.Event event) {
+            return event;
+        }
+        throw new IOException("damaged stream: an aside that is not an event");
+    }
+
+    private Frame read(int tag) throws IOException {
         return switch (tag) {
             case Tag.LOAD -> new Frame.Load(readClasses());
             case Tag.INVOKE ->
@@ -48,6 +60,13 @@ final class FrameReader {
             case Tag.CLEARED -> new Frame.Cleared(fields.readConstant(Stage.Clearing.values()));
             case Tag.ASKED ->
                 new Frame.Asked(in.readInt(), fields.readText(), fields.readConstant(Stage.Echo.values()));
+            case Tag.PAGED -> new Frame.Paged(fields.readBundle());
+            case Tag.NEXT_INPUT -> new Frame.NextInput(fields.readText());
+            case Tag.COMM_SENT -> new Frame.CommSent(fields.readCommMessage());
+            case Tag.COMM_RECEIVED -> new Frame.CommReceived(in.readLong(), fields.readCommMessage());
+            case Tag.INTERRUPT_HANDLER -> new Frame.InterruptHandler();
+            case Tag.HANDLED ->
+                new Frame.Handled(in.readLong(), in.readBoolean() ? Optional.of(readFault()) : Optional.empty());
             default -> throw new IOException("damaged stream: unknown frame tag " + tag);
         };
     }

@@ -92,6 +92,32 @@ final class FrameWriter {
             out.writeInt(asked.question());
             fields.writeText(asked.prompt());
             fields.writeConstant(asked.echo());
+        } else if (frame instanceof Frame.Paged paged) {
+            out.writeByte(Tag.PAGED);
+            fields.writeBundle(paged.bundle());
+        } else if (frame instanceof Frame.NextInput next) {
+            out.writeByte(Tag.NEXT_INPUT);
+            fields.writeText(next.code());
+        } else if (frame instanceof Frame.CommSent sent) {
+            out.writeByte(Tag.COMM_SENT);
+            fields.writeCommMessage(sent.message());
+        } else if (frame instanceof Frame.CommReceived received) {
+            out.writeByte(Tag.COMM_RECEIVED);
+            out.writeLong(received.number());
+            fields.writeCommMessage(received.message());
+        } else if (frame instanceof Frame.InterruptHandler) {
+            out.writeByte(Tag.INTERRUPT_HANDLER);
+        } else if (frame instanceof Frame.Aside aside) {
+            out.writeByte(Tag.ASIDE);
+            out.writeLong(aside.number());
+            write(aside.event());
+        } else if (frame instanceof Frame.Handled handled) {
+            out.writeByte(Tag.HANDLED);
+            out.writeLong(handled.number());
+            out.writeBoolean(handled.fault().isPresent());
+            if (handled.fault().isPresent()) {
+                writeFault(handled.fault().get());
+            }
         } else {
             throw new IllegalArgumentException("no encoding for " + frame);
         }

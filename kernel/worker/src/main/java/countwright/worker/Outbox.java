@@ -27,6 +27,7 @@ final class Outbox {
     private final Deque<Frame> frames = new ArrayDeque<>();
     private final ByteArrayOutputStream output = new ByteArrayOutputStream();
     private Frame.@Nullable Channel outputChannel;
+    private long outputMessage = CommThread.NONE;
     private boolean writing;
 
     Outbox(FrameStream stream) {
@@ -53,10 +54,10 @@ final class Outbox {
         }
     }
 
-    /** Queues a frame that user code caused, waiting while too much is under way. */
-    void putWhenRoom(Frame frame) {
+    /** Queues an event that user code caused, waiting while too much is under way. */
+    void putWhenRoom(Frame.Event event) {
         waitForRoom();
-        put(frame);
+        put(told(CommThread.messageBeingHandled(), event));
     }
 
     /** Queues output, waiting while too much is under way; a long one goes in pieces, since a frame has a limit. */
@@ -77,9 +78,11 @@ final class Outbox {
                     // Only then can the writer be waiting for something to write; a flood should not wake it each time.
                     lock.notifyAll();
                 }
-                if (outputChannel != channel) {
+                long message = CommThread.messageBeingHandled();
+                if (outputChannel != channel || outputMessage != message) {
                     closeOutput();
                     outputChannel = channel;
+                    outputMessage = message;
                 }
                 output.write(bytes, start, length);
             }
@@ -128,10 +131,14 @@ final class Outbox {
 
     private void closeOutput() {
         if (output.size() > 0 && outputChannel != null) {
-            frames.add(new Frame.Output(outputChannel, Bytes.keeping(output.toByteArray())));
+            frames.add(told(outputMessage, new Frame.Output(outputChannel, Bytes.keeping(output.toByteArray()))));
             output.reset();
         }
         outputChannel = null;
+    }
+
+    private static Frame told(long message, Frame.Event event) {
+        return message == CommThread.NONE ? event : new Frame.Aside(message, event);
     }
 
     private void writeForever() {

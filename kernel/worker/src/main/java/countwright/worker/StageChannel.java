@@ -1,5 +1,6 @@
 package countwright.worker;
 
+import countwright.show.CommMessage;
 import countwright.show.MimeBundle;
 import countwright.show.Stage;
 import java.util.Map;
@@ -40,6 +41,21 @@ final class StageChannel implements Stage {
     @Override
     public void clear(Clearing when) {
         outbox.putWhenRoom(new Frame.Cleared(when));
+    }
+
+    @Override
+    public void page(MimeBundle bundle) {
+        outbox.putWhenRoom(new Frame.Paged(CellThread.checkSize(bundle)));
+    }
+
+    @Override
+    public void nextInput(String code) {
+        outbox.putWhenRoom(new Frame.NextInput(code));
+    }
+
+    @Override
+    public void send(CommMessage message) {
+        outbox.putWhenRoom(new Frame.CommSent(message));
     }
 
     @Override

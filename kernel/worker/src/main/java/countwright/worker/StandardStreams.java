@@ -1,7 +1,6 @@
 package countwright.worker;
 
 import countwright.show.Stage;
-import java.io.IOException;
 import java.io.InputStream;
 import java.io.PrintStream;
 import java.nio.charset.StandardCharsets;
@@ -44,13 +43,13 @@ final class StandardStreams {
         }
 
         @Override
-        public synchronized int read() throws IOException {
+        public synchronized int read() {
             fill();
             return line[next++] & 0xff;
         }
 
         @Override
-        public synchronized int read(byte[] target, int start, int length) throws IOException {
+        public synchronized int read(byte[] target, int start, int length) {
             if (length == 0) {
                 return 0;
             }
@@ -66,16 +65,15 @@ final class StandardStreams {
             return line.length - next;
         }
 
-        private void fill() throws IOException {
+        private void fill() {
             if (next < line.length) {
                 return;
             }
-            try {
-                line = (stage.ask("", Stage.Echo.VISIBLE) + "\n").getBytes(StandardCharsets.UTF_8);
-                next = 0;
-            } catch (IllegalStateException e) {
-                throw new IOException(e.getMessage(), e);
-            }
+            // Refused, this throws an unchecked exception that says why. Scanner swallows checked ones and then only
+            // says
+            // that there is no line.
+            line = (stage.ask("", Stage.Echo.VISIBLE) + "\n").getBytes(StandardCharsets.UTF_8);
+            next = 0;
         }
     }
 }

@@ -57,6 +57,8 @@ public final class WorkerMain {
         Show.onto(stage);
         Thread.setDefaultUncaughtExceptionHandler(WorkerMain::reportEnd);
         cells.start();
+        CommThread comms = new CommThread(outbox);
+        comms.start();
         Runtime.getRuntime().addShutdownHook(new Thread(() -> sayLastWords(outbox), "last words"));
         startWarmUp();
         try {
@@ -64,6 +66,10 @@ public final class WorkerMain {
                 Frame frame = stream.read();
                 if (frame instanceof Frame.Request request) {
                     cells.accept(request);
+                } else if (frame instanceof Frame.CommReceived received) {
+                    comms.accept(received);
+                } else if (frame instanceof Frame.InterruptHandler) {
+                    comms.interruptHandler();
                 } else if (frame instanceof Frame.Interrupt) {
                     cells.interrupt();
                 } else if (frame instanceof Frame.CellStarted started) {

@@ -3,6 +3,7 @@ package countwright.worker;
 import static org.assertj.core.api.Assertions.assertThat;
 import static org.assertj.core.api.Assertions.assertThatThrownBy;
 
+import countwright.show.CommMessage;
 import countwright.show.MimeBundle;
 import countwright.show.Stage;
 import java.io.ByteArrayInputStream;
@@ -13,6 +14,7 @@ import java.io.InputStream;
 import java.io.OutputStream;
 import java.nio.charset.StandardCharsets;
 import java.util.List;
+import java.util.Map;
 import java.util.Optional;
 import java.util.Random;
 import org.junit.jupiter.api.Test;
@@ -27,8 +29,13 @@ class FrameStreamTest {
     static List<Frame> frames() {
         MimeBundle picture = MimeBundle.text("two é 🚋")
                 .withPng(new byte[] {1, 2, 3}, 720, 440, "a chart")
-                .with("application/x-test", "{}", java.util.Map.of("ratio", 1.5, "expanded", true));
+                .with("application/x-test", "{}", Map.of("ratio", 1.5, "expanded", true));
         Fault.Thrown cause = new Fault.Thrown("java.io.IOException", Optional.empty(), List.of(), Optional.empty());
+        CommMessage comm = new CommMessage(
+                CommMessage.Kind.OPEN,
+                "id",
+                "lamp",
+                Map.of("all", List.of(1L, 2.5, "x", true, Optional.empty(), Map.of("k", "v"))));
         return List.of(
                 new Frame.Load(List.of(new CompiledClass("REPL.$JShell$1", Bytes.of(new byte[] {-54, -2})))),
                 new Frame.Load(List.of()),
@@ -66,7 +73,15 @@ class FrameStreamTest {
                 new Frame.CellStarted(3),
                 new Frame.CloseAwaited(),
                 new Frame.StopWhenSpeaking(),
-                new Frame.RestoreAsked());
+                new Frame.RestoreAsked(),
+                new Frame.Paged(picture),
+                new Frame.NextInput("1 + 1"),
+                new Frame.CommReceived(7, comm),
+                new Frame.CommSent(comm),
+                new Frame.InterruptHandler(),
+                new Frame.Aside(7, new Frame.CommSent(comm)),
+                new Frame.Handled(7, Optional.empty()),
+                new Frame.Handled(8, Optional.of(new Fault.Internal("broken"))));
     }
 
     @ParameterizedTest
