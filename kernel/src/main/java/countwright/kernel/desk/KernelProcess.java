@@ -9,7 +9,9 @@ import java.util.ArrayDeque;
 import java.util.ArrayList;
 import java.util.Deque;
 import java.util.List;
+import java.util.Map;
 import java.util.concurrent.TimeUnit;
+import java.util.stream.Stream;
 
 /** A kernel started as a child of this process, which does not outlive it. */
 final class KernelProcess implements AutoCloseable {
@@ -35,12 +37,19 @@ final class KernelProcess implements AutoCloseable {
      * @throws DeskException if it cannot be started
      */
     static KernelProcess start(KernelCommand command, Path connectionFile, Path folder) {
+        return start(command, connectionFile, folder, Map.of());
+    }
+
+    /** Starts a kernel with more in its environment. */
+    static KernelProcess start(
+            KernelCommand command, Path connectionFile, Path folder, Map<String, String> environment) {
         ProcessBuilder builder = new ProcessBuilder(command.with(connectionFile))
                 .directory(folder.toFile())
                 .redirectErrorStream(true);
         // The protocol's own way to let a kernel notice that the front end has gone without a word.
         builder.environment()
                 .put("JPY_PARENT_PID", Long.toString(ProcessHandle.current().pid()));
+        builder.environment().putAll(environment);
         KernelProcess started;
         try {
             started = new KernelProcess(builder.start());
@@ -52,6 +61,15 @@ final class KernelProcess implements AutoCloseable {
         started.reader.start();
         Runtime.getRuntime().addShutdownHook(started.atExit);
         return started;
+    }
+
+    long processId() {
+        return process.pid();
+    }
+
+    /** Returns what it has started itself. */
+    Stream<ProcessHandle> children() {
+        return process.children();
     }
 
     boolean isAlive() {
