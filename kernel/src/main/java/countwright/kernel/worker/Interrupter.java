@@ -33,9 +33,10 @@ final class Interrupter implements AutoCloseable {
     /** Before this time a second interrupt is taken for impatience, not for a wish to lose the variables. */
     private static final Duration PATIENCE = Duration.ofMillis(1_500);
 
-    private static final String CANNOT_STOP =
-            "The cell does not react to the interrupt: it may be in native code, or wait for a lock that is never freed.\n"
-                    + "Wait for it, or interrupt again to end its worker; the variables are lost then.\n";
+    private static final String CANNOT_STOP = """
+            The cell does not react to the interrupt: it may be in native code, or wait for a lock that is never freed.
+            Wait for it, or interrupt again to end its worker; the variables are lost then.
+            """;
 
     private final Worker worker;
     private final Debugger debugger;

@@ -168,7 +168,6 @@ final class Outbox {
                     lock.wait();
                 } catch (InterruptedException byUserCode) {
                     // A cell may interrupt every thread it finds; this one has no reason to end.
-                    continue;
                 }
             }
             closeOutput();
