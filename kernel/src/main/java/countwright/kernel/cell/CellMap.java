@@ -6,6 +6,7 @@ import java.util.concurrent.ConcurrentHashMap;
 import java.util.regex.Matcher;
 import java.util.regex.Pattern;
 import jdk.jshell.Snippet;
+import jdk.jshell.SourceCodeAnalysis.SnippetWrapper;
 
 /** Remembers which cell each snippet came from, so that errors can point at the line the user wrote. */
 final class CellMap {
@@ -18,10 +19,33 @@ final class CellMap {
     /** A line of a cell. */
     record Location(CellText cell, int line) {}
 
+    /** A cell and what is to be added to a line of a compiled source to get the line of the cell. */
+    private record Remainder(CellText cell, int shift) {}
+
+    private static final Pattern COMPILED = Pattern.compile("REPL\\.\\$JShell\\$\\w+");
+
     private final Map<String, Origin> origins = new ConcurrentHashMap<>();
+    private final Map<String, Remainder> remainders = new ConcurrentHashMap<>();
 
     void remember(Snippet snippet, CellText cell, int start) {
         origins.put(snippet.id(), new Origin(cell, cell.placeOf(start).line()));
+    }
+
+    /**
+     * Forgets a snippet but for its lines. JShell is about to forget it as a whole; a lambda that it left behind may still
+     * fail later, and its stack frames then bear the lines of the source that was compiled.
+     */
+    void forgetAllButLines(Snippet snippet, SnippetWrapper wrapper) {
+        Origin origin = origins.remove(snippet.id());
+        if (origin != null) {
+            int firstCompiled = 1;
+            int start = wrapper.sourceToWrappedPosition(0);
+            String compiled = wrapper.wrapped();
+            for (int i = 0; i < Math.min(start, compiled.length()); i++) {
+                firstCompiled += compiled.charAt(i) == '\n' ? 1 : 0;
+            }
+            remainders.put(wrapper.fullClassName(), new Remainder(origin.cell(), origin.firstLine() - firstCompiled));
+        }
     }
 
     /** Returns the cell that a snippet came from. */
@@ -32,21 +56,32 @@ final class CellMap {
     /** Returns the cell that a frame of the worker's own stack belongs to; its class is named after the snippet. */
     Optional<CellText> cellOf(StackTraceElement workerFrame) {
         Matcher snippet = SNIPPET_CLASS.matcher(workerFrame.getClassName());
-        return snippet.lookingAt()
-                ? Optional.ofNullable(origins.get(snippet.group(1))).map(Origin::cell)
-                : Optional.empty();
+        if (!snippet.lookingAt()) {
+            return Optional.empty();
+        }
+        return Optional.ofNullable(origins.get(snippet.group(1)))
+                .map(Origin::cell)
+                .or(() -> locateForgotten(workerFrame).map(Location::cell));
     }
 
     /** Returns where a stack frame is in the user's cells; JShell names the file of such a frame after its snippet. */
     Optional<Location> locate(StackTraceElement frame) {
         String file = frame.getFileName();
         if (file == null || !file.startsWith("#")) {
-            return Optional.empty();
+            return locateForgotten(frame);
         }
         Origin origin = origins.get(file.substring(1));
         if (origin == null) {
             return Optional.empty();
         }
         return Optional.of(new Location(origin.cell(), origin.firstLine() + Math.max(0, frame.getLineNumber() - 1)));
+    }
+
+    private Optional<Location> locateForgotten(StackTraceElement frame) {
+        Matcher compiled = COMPILED.matcher(frame.getClassName());
+        return compiled.lookingAt()
+                ? Optional.ofNullable(remainders.get(compiled.group()))
+                        .map(left -> new Location(left.cell(), Math.max(1, frame.getLineNumber() + left.shift())))
+                : Optional.empty();
     }
 }

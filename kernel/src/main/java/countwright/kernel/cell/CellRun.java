@@ -1,7 +1,6 @@
 package countwright.kernel.cell;
 
 import countwright.kernel.cell.CellSplitter.Piece;
-import countwright.show.MimeBundle;
 import countwright.worker.Frame;
 import java.util.ArrayList;
 import java.util.List;
@@ -13,6 +12,7 @@ import jdk.jshell.JShell;
 import jdk.jshell.JShellException;
 import jdk.jshell.Snippet;
 import jdk.jshell.SnippetEvent;
+import jdk.jshell.VarSnippet;
 
 /**
  * One run of one cell: piece after piece, to the end or to the first that fails. The caller holds the compiler lock.
@@ -23,6 +23,7 @@ import jdk.jshell.SnippetEvent;
 final class CellRun {
 
     private final JShell shell;
+    private final SnippetLedger ledger;
     private final WorkerExecution execution;
     private final CellMap cells;
     private final CellText cell;
@@ -38,12 +39,14 @@ final class CellRun {
 
     CellRun(
             JShell shell,
+            SnippetLedger ledger,
             WorkerExecution execution,
             CellMap cells,
             CellText cell,
             CellListener listener,
             Supplier<Boolean> stopRequested) {
         this.shell = shell;
+        this.ledger = ledger;
         this.execution = execution;
         this.cells = cells;
         this.cell = cell;
@@ -89,13 +92,57 @@ final class CellRun {
             cells.remember(unchanged.get(), cell, piece.start());
             return new CellOutcome.Success(Optional.empty());
         }
-        execution.prepare(want);
-        List<SnippetEvent> events;
         try {
-            events = shell.eval(piece.source());
+            if (want == Frame.Want.BUNDLE) {
+                Optional<CellOutcome> handedOver = ShownValue.statement(
+                                cell.code().substring(piece.start(), piece.end()))
+                        .flatMap(statement -> evaluateIfItCompiles(statement, piece));
+                if (handedOver.isPresent()) {
+                    return handedOver.get();
+                }
+            }
+            return evaluate(piece, want);
         } catch (IllegalStateException e) {
             return lost(execution.loss().orElse("the compiler's session has ended"));
+        } finally {
+            ledger.showAll();
         }
+    }
+
+    private Optional<CellOutcome> evaluateIfItCompiles(String statement, Piece piece) {
+        execution.prepare(Frame.Want.BUNDLE);
+        ledger.hideUnnamed(statement);
+        List<SnippetEvent> events = shell.eval(statement);
+        if (isRejected(events)) {
+            events.forEach(event -> ledger.forget(event.snippet()));
+            ledger.showAll();
+            return Optional.empty();
+        }
+        return Optional.of(outcomeOf(events, piece));
+    }
+
+    private CellOutcome evaluate(Piece piece, Frame.Want want) {
+        execution.prepare(want);
+        boolean hidden = ledger.hideUnnamed(piece.source());
+        List<SnippetEvent> events = shell.eval(piece.source());
+        if (hidden && isRejected(events)) {
+            // Perhaps for lack of what was hidden; if not, the report should know of everything.
+            events.forEach(event -> ledger.forget(event.snippet()));
+            ledger.showAll();
+            events = shell.eval(piece.source());
+        }
+        return outcomeOf(events, piece);
+    }
+
+    /** Tells whether nothing has been declared or run. */
+    private static boolean isRejected(List<SnippetEvent> events) {
+        return events.stream()
+                .allMatch(event -> event.status() == Snippet.Status.REJECTED
+                        || event.status() == Snippet.Status.RECOVERABLE_NOT_DEFINED);
+    }
+
+    private CellOutcome outcomeOf(List<SnippetEvent> events, Piece piece) {
+        execution.loadPending();
         if (execution.loss().isPresent()) {
             return lost(execution.loss().get());
         }
@@ -108,6 +155,7 @@ final class CellRun {
                 outcome = outcomeOf(event, piece);
             }
         }
+        events.forEach(this::letGo);
         return outcome;
     }
 
@@ -150,12 +198,12 @@ final class CellRun {
         return execution
                 .fault()
                 .<CellOutcome>map(CellRun::broken)
-                .orElseGet(() -> new CellOutcome.Success(valueOf(snippet)));
+                .orElseGet(() -> new CellOutcome.Success(isOver(snippet) ? execution.value() : Optional.empty()));
     }
 
     private CellOutcome.Failure rejected(Snippet snippet, Piece piece) {
         CellOutcome.Failure failure = compileReport.of(snippet, piece, cell);
-        shell.drop(snippet);
+        ledger.forget(snippet);
         return failure;
     }
 
@@ -215,15 +263,30 @@ final class CellRun {
         listener.output(CellListener.Stream.ERR, note + "\n");
     }
 
-    /** Takes the value of an expression, and lets go of the name JShell made up for it. */
-    private Optional<MimeBundle> valueOf(Snippet snippet) {
-        Optional<MimeBundle> value = execution.value();
-        if (snippet.subKind() == Snippet.SubKind.TEMP_VAR_EXPRESSION_SUBKIND) {
-            // Each such name would make every later snippet a little slower to compile.
-            shell.drop(snippet);
-            return value;
+    /** Lets go of what no later cell can name: a piece that declares nothing, and the value a variable had before. */
+    private void letGo(SnippetEvent event) {
+        Snippet snippet = event.snippet();
+        if (isOver(snippet) && event.status() == Snippet.Status.VALID) {
+            cells.forgetAllButLines(snippet, shell.sourceCodeAnalysis().wrapper(snippet));
+            if (snippet instanceof VarSnippet variable) {
+                ledger.className(snippet).ifPresent(owner -> execution.release(owner, variable.name()));
+            }
+            ledger.forget(snippet);
+        } else if (snippet instanceof VarSnippet variable && event.status() == Snippet.Status.OVERWRITTEN) {
+            // Declared anew in the very same words, a variable keeps its class.
+            Optional<String> successor =
+                    Optional.ofNullable(event.causeSnippet()).flatMap(ledger::className);
+            ledger.className(snippet)
+                    .filter(owner -> !successor.equals(Optional.of(owner)))
+                    .ifPresent(owner -> execution.release(owner, variable.name()));
         }
-        return snippet.kind() == Snippet.Kind.EXPRESSION ? value : Optional.empty();
+    }
+
+    /** Tells whether a piece that has run declares nothing; only such a piece can have a value to show. */
+    private static boolean isOver(Snippet snippet) {
+        return snippet.kind() == Snippet.Kind.STATEMENT
+                || snippet.kind() == Snippet.Kind.EXPRESSION
+                || snippet.subKind() == Snippet.SubKind.TEMP_VAR_EXPRESSION_SUBKIND;
     }
 
     /** Returns the outcome of a cell that an interrupt has stopped. */

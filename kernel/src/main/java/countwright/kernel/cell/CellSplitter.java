@@ -1,6 +1,8 @@
 package countwright.kernel.cell;
 
+import java.util.ArrayDeque;
 import java.util.ArrayList;
+import java.util.Deque;
 import java.util.List;
 import jdk.jshell.SourceCodeAnalysis;
 import jdk.jshell.SourceCodeAnalysis.CompletionInfo;
@@ -12,11 +14,12 @@ final class CellSplitter {
      * A statement, expression or declaration of a cell.
      *
      * @param start its position in the cell, in UTF-16 units, behind leading blanks and comments: JShell counts lines from there
+     * @param end the position behind it in the cell
      * @param source its text, with a semicolon added where one may be left out
      * @param whole whether it is complete as it stands
      * @param showsValue whether it lacks the closing semicolon that keeps a value from being shown
      */
-    record Piece(int start, String source, boolean whole, boolean showsValue) {}
+    record Piece(int start, int end, String source, boolean whole, boolean showsValue) {}
 
     private CellSplitter() {}
 
@@ -34,7 +37,7 @@ final class CellSplitter {
                     int end = code.length() - info.remaining().length();
                     int lead = leadLength(info.source());
                     boolean showsValue = !endsWithSemicolon(code.substring(start, end));
-                    pieces.add(new Piece(start + lead, info.source().substring(lead), true, showsValue));
+                    pieces.add(new Piece(start + lead, end, info.source().substring(lead), true, showsValue));
                     if (info.remaining().length() >= remaining.length()) {
                         return pieces;
                     }
@@ -42,7 +45,7 @@ final class CellSplitter {
                 }
                 case CONSIDERED_INCOMPLETE, DEFINITELY_INCOMPLETE, UNKNOWN -> {
                     int lead = leadLength(remaining);
-                    pieces.add(new Piece(start + lead, remaining.substring(lead), false, false));
+                    pieces.add(new Piece(start + lead, code.length(), remaining.substring(lead), false, false));
                     return pieces;
                 }
             }
@@ -70,27 +73,51 @@ final class CellSplitter {
     /** Tells whether the last thing that is neither blank nor comment is a semicolon. */
     static boolean endsWithSemicolon(String source) {
         char last = ' ';
-        int i = 0;
-        while (i < source.length()) {
-            char c = source.charAt(i);
-            if (source.startsWith("//", i)) {
-                i = endOf(source, "\n", i + 2);
-            } else if (source.startsWith("/*", i)) {
-                i = endOf(source, "*/", i + 2);
-            } else if (source.startsWith("\"\"\"", i)) {
-                i = endOfQuoted(source, "\"\"\"", i + 3);
-                last = '"';
-            } else if (c == '"' || c == '\'') {
-                i = endOfQuoted(source, String.valueOf(c), i + 1);
-                last = c;
-            } else {
-                if (!Character.isWhitespace(c)) {
-                    last = c;
-                }
-                i++;
+        for (int i = 0; i < source.length(); i = next(source, i)) {
+            if (!isComment(source, i) && !Character.isWhitespace(source.charAt(i))) {
+                last = source.charAt(i);
             }
         }
         return last == ';';
+    }
+
+    /** Tells whether each bracket closes one that was opened before it, and none stays open. */
+    static boolean isBalanced(String source) {
+        Deque<Character> open = new ArrayDeque<>();
+        for (int i = 0; i < source.length(); i = next(source, i)) {
+            char c = source.charAt(i);
+            switch (c) {
+                case '(' -> open.push(')');
+                case '[' -> open.push(']');
+                case '{' -> open.push('}');
+                case ')', ']', '}' -> {
+                    if (open.isEmpty() || open.pop() != c) {
+                        return false;
+                    }
+                }
+                default -> {}
+            }
+        }
+        return open.isEmpty();
+    }
+
+    private static boolean isComment(String source, int i) {
+        return source.startsWith("//", i) || source.startsWith("/*", i);
+    }
+
+    /** Returns the position behind what starts at a position: a comment, a text, or a single character. */
+    private static int next(String source, int i) {
+        char c = source.charAt(i);
+        if (source.startsWith("//", i)) {
+            return endOf(source, "\n", i + 2);
+        }
+        if (source.startsWith("/*", i)) {
+            return endOf(source, "*/", i + 2);
+        }
+        if (source.startsWith("\"\"\"", i)) {
+            return endOfQuoted(source, "\"\"\"", i + 3);
+        }
+        return c == '"' || c == '\'' ? endOfQuoted(source, String.valueOf(c), i + 1) : i + 1;
     }
 
     private static int endOf(String source, String mark, int from) {

@@ -32,6 +32,7 @@ final class JavaSession {
     private final CellEvents events = new CellEvents(cells);
     private final WorkerExecution execution = new WorkerExecution(worker, compilerLock);
     private final JShell shell;
+    private final SnippetLedger ledger;
     private final CodeAssistant assistant;
 
     private JavaSession(WorkerSettings settings) {
@@ -40,6 +41,8 @@ final class JavaSession {
                 // Without this the compiler would see the kernel's own class path.
                 .compilerOptions("--class-path", settings.classPathText())
                 .build();
+        ledger = new SnippetLedger(shell);
+        execution.doBeforeUnlocking(ledger::showAll);
         assistant = new CodeAssistant(shell.sourceCodeAnalysis());
         var unused = worker.thenCompose(Worker::loss).whenComplete((how, failure) -> events.lose());
     }
@@ -85,7 +88,7 @@ final class JavaSession {
             }
             // The first evaluation is ten times slower than the next, in the compiler as in the worker.
             execution.prepare(Frame.Want.BUNDLE);
-            shell.eval("1 + 1").forEach(event -> shell.drop(event.snippet()));
+            shell.eval("1 + 1").forEach(event -> ledger.forget(event.snippet()));
             return true;
         });
     }
@@ -113,7 +116,8 @@ final class JavaSession {
         Optional<Worker> runner = startedWorker();
         runner.ifPresent(Worker::cellStarted);
         try {
-            return holdingCompiler(() -> new CellRun(shell, execution, cells, cell, listener, stopRequested).run());
+            return holdingCompiler(
+                    () -> new CellRun(shell, ledger, execution, cells, cell, listener, stopRequested).run());
         } finally {
             runner.ifPresent(Worker::cellEnded);
         }

@@ -7,7 +7,7 @@ import countwright.worker.Bytes;
 import countwright.worker.CompiledClass;
 import countwright.worker.Fault;
 import countwright.worker.Frame;
-import java.util.Arrays;
+import java.util.ArrayList;
 import java.util.List;
 import java.util.Optional;
 import java.util.concurrent.CompletableFuture;
@@ -29,10 +29,12 @@ final class WorkerExecution implements ExecutionControl {
 
     private final CompletableFuture<Worker> worker;
     private final ReentrantLock compilerLock;
+    private final List<CompiledClass> pending = new ArrayList<>();
     private Frame.Want want = Frame.Want.NOTHING;
     private Optional<MimeBundle> value = Optional.empty();
     private boolean stopped;
     private Supplier<Boolean> stopRequested = () -> false;
+    private Runnable beforeUnlocking = () -> {};
     private Optional<String> fault = Optional.empty();
     private volatile Optional<String> loss = Optional.empty();
 
@@ -44,6 +46,21 @@ final class WorkerExecution implements ExecutionControl {
     /** Says what to ask before user code starts: an interrupt may arrive while its code is still being compiled. */
     void askBeforeRunning(Supplier<Boolean> stopRequest) {
         stopRequested = stopRequest;
+    }
+
+    /** Says what to do before the compiler lock is let go while user code runs. */
+    void doBeforeUnlocking(Runnable action) {
+        beforeUnlocking = action;
+    }
+
+    /** Clears a variable that can no longer be named, so that its value can be collected. */
+    void release(String className, String variableName) {
+        try {
+            var unused = request(new Frame.Release(className, variableName));
+        } catch (EngineTerminationException gone) {
+            // So is the value.
+            return;
+        }
     }
 
     /** Prepares for the next snippet: whether its value is wanted, and forgetting how the last one went. */
@@ -74,25 +91,33 @@ final class WorkerExecution implements ExecutionControl {
         return loss;
     }
 
+    /** Kept until the snippet runs, or is done without running: one round trip less for each. */
     @Override
-    public void load(ClassBytecodes[] classes)
-            throws ClassInstallException, NotImplementedException, EngineTerminationException {
-        Frame.Reply reply = request(new Frame.Load(Arrays.stream(classes)
-                .map(each -> new CompiledClass(each.name(), Bytes.of(each.bytecodes())))
-                .toList()));
-        if (reply instanceof Frame.Failed failed) {
-            if (failed.fault() instanceof Fault.NotInstalled notInstalled) {
-                boolean[] installed = new boolean[classes.length];
-                List<Boolean> told = notInstalled.installed();
-                for (int i = 0; i < Math.min(installed.length, told.size()); i++) {
-                    installed[i] = told.get(i);
-                }
-                fault = Optional.of(notInstalled.message());
-                throw new ClassInstallException(notInstalled.message(), installed);
-            }
-            fault = Optional.of(describe(failed.fault()));
-            throw new ClassInstallException(describe(failed.fault()), new boolean[classes.length]);
+    public void load(ClassBytecodes[] classes) {
+        for (ClassBytecodes each : classes) {
+            pending.add(new CompiledClass(each.name(), Bytes.of(each.bytecodes())));
         }
+    }
+
+    /** Sends the classes of snippets that have not been run. */
+    void loadPending() {
+        if (pending.isEmpty()) {
+            return;
+        }
+        try {
+            if (request(new Frame.Load(takePending())) instanceof Frame.Failed failed) {
+                fault = Optional.of(describe(failed.fault()));
+            }
+        } catch (EngineTerminationException gone) {
+            // The loss is remembered, and the cell asks for it.
+            return;
+        }
+    }
+
+    private List<CompiledClass> takePending() {
+        List<CompiledClass> taken = List.copyOf(pending);
+        pending.clear();
+        return taken;
     }
 
     /** Not offered: JShell then defines the class under a new name, which keeps running code undisturbed. */
@@ -108,8 +133,9 @@ final class WorkerExecution implements ExecutionControl {
             stopped = true;
             throw new StoppedException();
         }
-        Frame.Invoke invoke = new Frame.Invoke(className, methodName, want);
+        Frame.Invoke invoke = new Frame.Invoke(takePending(), className, methodName, want);
         Frame.Reply reply;
+        beforeUnlocking.run();
         int holds = compilerLock.getHoldCount();
         for (int i = 0; i < holds; i++) {
             compilerLock.unlock();
@@ -185,6 +211,9 @@ final class WorkerExecution implements ExecutionControl {
     }
 
     private static String describe(Fault failure) {
+        if (failure instanceof Fault.NotInstalled notInstalled) {
+            return notInstalled.message();
+        }
         return failure instanceof Fault.Internal internal ? internal.message() : failure.toString();
     }
 

@@ -1,5 +1,7 @@
 package countwright.kernel.cli;
 
+import countwright.kernel.desk.ArchiveMaking;
+import countwright.kernel.worker.ClassArchives;
 import java.util.concurrent.Callable;
 import org.jspecify.annotations.Nullable;
 import picocli.CommandLine.Command;
@@ -34,6 +36,8 @@ final class UnregisterCommand implements Callable<Integer> {
             said = "The kernel is not registered in " + kernelSpec.folder() + "; nothing to remove.";
         }
         spec.commandLine().getOut().println(said);
+        // Another registration may still use them, but they cost only time when they are gone.
+        ClassArchives.ofInstallation().map(ArchiveMaking::new).ifPresent(ArchiveMaking::remove);
         return Main.DONE;
     }
 }

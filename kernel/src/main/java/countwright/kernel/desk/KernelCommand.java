@@ -58,6 +58,13 @@ public final class KernelCommand {
         return Optional.ofNullable(System.getProperty(HOME_PROPERTY)).map(Path::of);
     }
 
+    /** Returns this command, which must begin with a java command, with one more JVM option. */
+    KernelCommand withJvmOption(String option) {
+        List<String> words = new ArrayList<>(template);
+        words.add(1, option);
+        return new KernelCommand(words);
+    }
+
     /** Returns a command of these words. */
     static KernelCommand of(List<String> template) {
         return new KernelCommand(template);
@@ -66,6 +73,9 @@ public final class KernelCommand {
     private static KernelCommand ofRunningJava(Optional<Path> home) {
         List<String> command = new ArrayList<>();
         command.add(Path.of(System.getProperty("java.home"), "bin", "java").toString());
+        // As the launcher does; the second for the cell engine, which keeps JShell quick in long sessions.
+        command.add("-XX:+UseSerialGC");
+        command.add("--add-opens=jdk.jshell/jdk.jshell=ALL-UNNAMED");
         home.ifPresent(folder -> command.add("-D" + HOME_PROPERTY + "=" + folder.toAbsolutePath()));
         Optional.ofNullable(System.getProperty(WORKER_PATH_PROPERTY))
                 .ifPresent(path -> command.add("-D" + WORKER_PATH_PROPERTY + "=" + path));

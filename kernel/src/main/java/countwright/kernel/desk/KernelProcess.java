@@ -9,7 +9,9 @@ import java.util.ArrayDeque;
 import java.util.ArrayList;
 import java.util.Deque;
 import java.util.List;
+import java.util.Map;
 import java.util.concurrent.TimeUnit;
+import java.util.stream.Stream;
 
 /** A kernel started as a child of this process, which does not outlive it. */
 final class KernelProcess implements AutoCloseable {
@@ -35,6 +37,12 @@ final class KernelProcess implements AutoCloseable {
      * @throws DeskException if it cannot be started
      */
     static KernelProcess start(KernelCommand command, Path connectionFile, Path folder) {
+        return start(command, connectionFile, folder, Map.of());
+    }
+
+    /** Starts a kernel with more in its environment. */
+    static KernelProcess start(
+            KernelCommand command, Path connectionFile, Path folder, Map<String, String> environment) {
         ProcessBuilder builder = new ProcessBuilder(command.with(connectionFile))
                 .directory(folder.toFile())
                 .redirectErrorStream(true);
@@ -43,6 +51,7 @@ final class KernelProcess implements AutoCloseable {
                 .put("JPY_PARENT_PID", Long.toString(ProcessHandle.current().pid()));
         // A run from the command line is nothing its user has typed.
         builder.environment().put("COUNTWRIGHT_HISTORY", "off");
+        builder.environment().putAll(environment);
         KernelProcess started;
         try {
             started = new KernelProcess(builder.start());
@@ -54,6 +63,15 @@ final class KernelProcess implements AutoCloseable {
         started.reader.start();
         Runtime.getRuntime().addShutdownHook(started.atExit);
         return started;
+    }
+
+    long processId() {
+        return process.pid();
+    }
+
+    /** Returns what it has started itself. */
+    Stream<ProcessHandle> children() {
+        return process.children();
     }
 
     boolean isAlive() {

@@ -65,7 +65,9 @@ public final class Worker implements AutoCloseable {
         Debugger debugger = Debugger.listen();
         try (ServerSocket server = new ServerSocket(0, 1, InetAddress.getLoopbackAddress())) {
             Process process = spawn(settings, debugger);
-            debugger.attachBehind();
+            if (!settings.recordsClasses()) {
+                debugger.attachBehind();
+            }
             // A worker that dies at birth never connects.
             var unused = process.onExit().thenRun(() -> closeQuietly(server));
             ProcessOutput output = new ProcessOutput(process.getInputStream(), listener);
@@ -256,7 +258,9 @@ public final class Worker implements AutoCloseable {
     private static Process spawn(WorkerSettings settings, Debugger debugger) throws IOException {
         List<String> command = new ArrayList<>();
         command.add(ProcessHandle.current().info().command().orElse(javaOfThisJvm()));
-        command.add("-agentlib:jdwp=transport=dt_socket,server=n,suspend=n,address=" + debugger.address());
+        if (!settings.recordsClasses()) {
+            command.add("-agentlib:jdwp=transport=dt_socket,server=n,suspend=n,address=" + debugger.address());
+        }
         command.add("-Djava.awt.headless=true");
         command.add("-Dfile.encoding=UTF-8");
         // On JDK 22 to 24 System.console() would be there and read nothing; with this it is null, as on all others.

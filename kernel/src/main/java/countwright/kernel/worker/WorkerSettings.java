@@ -45,8 +45,13 @@ public record WorkerSettings(List<Path> classPath, List<String> jvmOptions, Map<
      */
     public static WorkerSettings ofInstallation() {
         String options = System.getenv().getOrDefault(OPTIONS_VARIABLE, "").strip();
-        List<String> jvmOptions = options.isEmpty() ? List.of() : Arrays.asList(options.split("\\s+", -1));
-        return new WorkerSettings(installedClassPath(), jvmOptions, fonts(System.getenv()));
+        List<Path> classPath = installedClassPath();
+        List<String> jvmOptions = new ArrayList<>();
+        ClassArchives.ofInstallation().ifPresent(archives -> jvmOptions.addAll(archives.workerOptions(classPath)));
+        if (!options.isEmpty()) {
+            jvmOptions.addAll(Arrays.asList(options.split("\\s+", -1)));
+        }
+        return new WorkerSettings(classPath, jvmOptions, fonts(System.getenv()));
     }
 
     /** Returns these settings with one more JVM option. */
@@ -54,6 +59,11 @@ public record WorkerSettings(List<Path> classPath, List<String> jvmOptions, Map<
         List<String> more = new ArrayList<>(jvmOptions);
         more.add(option);
         return new WorkerSettings(classPath, more, environment);
+    }
+
+    /** Tells whether the worker is to write down its classes, which no JVM does that has a debugger. */
+    boolean recordsClasses() {
+        return jvmOptions.contains(ClassArchives.RECORD);
     }
 
     /** Returns the class path in the form the java command takes. */

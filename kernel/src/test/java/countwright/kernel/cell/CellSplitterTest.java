@@ -29,9 +29,9 @@ class CellSplitterTest {
         String code = "int a = 1; int b = 2;\n// sum\na + b";
         assertThat(split(code))
                 .containsExactly(
-                        new Piece(0, "int a = 1;", true, false),
-                        new Piece(11, "int b = 2;", true, false),
-                        new Piece(29, "a + b", true, true));
+                        new Piece(0, 10, "int a = 1;", true, false),
+                        new Piece(11, 21, "int b = 2;", true, false),
+                        new Piece(29, 34, "a + b", true, true));
     }
 
     @Test
@@ -44,7 +44,8 @@ class CellSplitterTest {
     void openBracket_isNotWhole() {
         assertThat(split("int a = 1;\nfor (int i = 0;"))
                 .containsExactly(
-                        new Piece(0, "int a = 1;", true, false), new Piece(11, "for (int i = 0;", false, false));
+                        new Piece(0, 10, "int a = 1;", true, false),
+                        new Piece(11, 26, "for (int i = 0;", false, false));
     }
 
     @Test

@@ -2,6 +2,7 @@ package countwright.worker;
 
 import countwright.show.MimeBundle;
 import countwright.show.Renderer;
+import java.lang.reflect.Field;
 import java.lang.reflect.InvocationTargetException;
 import java.lang.reflect.Method;
 import java.util.ArrayList;
@@ -12,6 +13,8 @@ import java.util.concurrent.LinkedBlockingQueue;
 import jdk.jshell.execution.DirectExecutionControl;
 import jdk.jshell.spi.ExecutionControl.ClassBytecodes;
 import jdk.jshell.spi.ExecutionControl.ClassInstallException;
+import jdk.jshell.spi.ExecutionControl.EngineTerminationException;
+import jdk.jshell.spi.ExecutionControl.NotImplementedException;
 import org.jspecify.annotations.Nullable;
 
 /**
@@ -124,14 +127,15 @@ public final class CellThread extends Thread {
                 return invoke(invoke);
             }
             if (request instanceof Frame.Load load) {
-                classes.load(load.classes().stream()
-                        .map(compiled -> new ClassBytecodes(
-                                compiled.name(), compiled.bytecode().toArray()))
-                        .toArray(ClassBytecodes[]::new));
+                classes.load(load.classes());
                 return done("");
             }
             if (request instanceof Frame.ReadVariable read) {
                 return done(classes.varValue(read.className(), read.variableName()));
+            }
+            if (request instanceof Frame.Release release) {
+                classes.release(release.className(), release.variableName());
+                return done("");
             }
             Frame.AddToClassPath add = (Frame.AddToClassPath) request;
             classes.addToClasspath(add.path());
@@ -147,7 +151,9 @@ public final class CellThread extends Thread {
         }
     }
 
-    private Frame.Reply invoke(Frame.Invoke request) {
+    private Frame.Reply invoke(Frame.Invoke request)
+            throws ClassInstallException, NotImplementedException, EngineTerminationException {
+        classes.load(request.classes());
         Method method;
         try {
             Class<?> owner = classes.find(request.className());
@@ -158,6 +164,7 @@ public final class CellThread extends Thread {
             return new Frame.Failed(new Fault.Internal(e.toString()));
         }
         refillReserve();
+        CellValue.set(null);
         // Two layers, because a stop may arrive anywhere until the phase is ours again, also in the inner handlers.
         try {
             return invokeStoppably(method, request.want());
@@ -174,7 +181,9 @@ public final class CellThread extends Thread {
     private Frame.Reply invokeStoppably(Method method, Frame.Want want) {
         try {
             phase = USER_CODE;
-            Object value = method.invoke(null);
+            Object returned = method.invoke(null);
+            Object handedOver = CellValue.take();
+            Object value = handedOver == null ? returned : handedOver;
             Optional<MimeBundle> bundle = want == Frame.Want.BUNDLE ? render(value) : Optional.empty();
             phase = OURS;
             return new Frame.Done("", bundle);
@@ -236,6 +245,29 @@ public final class CellThread extends Thread {
 
         Class<?> find(String className) throws ClassNotFoundException {
             return findClass(className);
+        }
+
+        void load(List<CompiledClass> compiled)
+                throws ClassInstallException, NotImplementedException, EngineTerminationException {
+            if (!compiled.isEmpty()) {
+                load(compiled.stream()
+                        .map(each ->
+                                new ClassBytecodes(each.name(), each.bytecode().toArray()))
+                        .toArray(ClassBytecodes[]::new));
+            }
+        }
+
+        void release(String className, String variableName) {
+            try {
+                Field field = findClass(className).getDeclaredField(variableName);
+                if (!field.getType().isPrimitive()) {
+                    field.setAccessible(true);
+                    field.set(null, null);
+                }
+            } catch (ReflectiveOperationException gone) {
+                // Then it holds nothing.
+                return;
+            }
         }
     }
 }

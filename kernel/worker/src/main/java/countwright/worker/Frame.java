@@ -34,11 +34,21 @@ public sealed interface Frame {
         }
     }
 
-    /** Runs a static method without parameters, and says whether its value is wanted as a bundle. */
-    record Invoke(String className, String methodName, Want want) implements Request {}
+    /**
+     * Defines classes, then runs a static method without parameters, and says whether its value is wanted as a bundle. Both
+     * in one, because a cell is mostly both and each round trip costs it time.
+     */
+    record Invoke(List<CompiledClass> classes, String className, String methodName, Want want) implements Request {
+        public Invoke {
+            classes = List.copyOf(classes);
+        }
+    }
 
     /** Reads a static field as text. */
     record ReadVariable(String className, String variableName) implements Request {}
+
+    /** Clears a static field, so that its value can be collected; a field that is not there is no matter. */
+    record Release(String className, String variableName) implements Request {}
 
     /** Adds folders or archives to what user code can see. */
     record AddToClassPath(String path) implements Request {}

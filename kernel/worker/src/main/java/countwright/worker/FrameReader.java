@@ -35,8 +35,10 @@ final class FrameReader {
         return switch (tag) {
             case Tag.LOAD -> new Frame.Load(readClasses());
             case Tag.INVOKE ->
-                new Frame.Invoke(fields.readText(), fields.readText(), fields.readConstant(Frame.Want.values()));
+                new Frame.Invoke(
+                        readClasses(), fields.readText(), fields.readText(), fields.readConstant(Frame.Want.values()));
             case Tag.READ_VARIABLE -> new Frame.ReadVariable(fields.readText(), fields.readText());
+            case Tag.RELEASE -> new Frame.Release(fields.readText(), fields.readText());
             case Tag.ADD_TO_CLASS_PATH -> new Frame.AddToClassPath(fields.readText());
             case Tag.INTERRUPT -> new Frame.Interrupt();
             case Tag.ANSWER -> new Frame.Answer(in.readInt(), fields.readText());

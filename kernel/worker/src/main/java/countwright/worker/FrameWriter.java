@@ -19,13 +19,10 @@ final class FrameWriter {
     void write(Frame frame) throws IOException {
         if (frame instanceof Frame.Load load) {
             out.writeByte(Tag.LOAD);
-            out.writeInt(load.classes().size());
-            for (CompiledClass compiled : load.classes()) {
-                fields.writeText(compiled.name());
-                fields.writeBytes(compiled.bytecode().toArray());
-            }
+            writeClasses(load.classes());
         } else if (frame instanceof Frame.Invoke invoke) {
             out.writeByte(Tag.INVOKE);
+            writeClasses(invoke.classes());
             fields.writeText(invoke.className());
             fields.writeText(invoke.methodName());
             fields.writeConstant(invoke.want());
@@ -33,6 +30,10 @@ final class FrameWriter {
             out.writeByte(Tag.READ_VARIABLE);
             fields.writeText(read.className());
             fields.writeText(read.variableName());
+        } else if (frame instanceof Frame.Release release) {
+            out.writeByte(Tag.RELEASE);
+            fields.writeText(release.className());
+            fields.writeText(release.variableName());
         } else if (frame instanceof Frame.AddToClassPath add) {
             out.writeByte(Tag.ADD_TO_CLASS_PATH);
             fields.writeText(add.path());
@@ -110,6 +111,14 @@ final class FrameWriter {
             }
         } else {
             throw new IllegalArgumentException("no encoding for " + frame);
+        }
+    }
+
+    private void writeClasses(List<CompiledClass> classes) throws IOException {
+        out.writeInt(classes.size());
+        for (CompiledClass compiled : classes) {
+            fields.writeText(compiled.name());
+            fields.writeBytes(compiled.bytecode().toArray());
         }
     }
 

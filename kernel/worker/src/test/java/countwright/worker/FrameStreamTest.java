@@ -39,8 +39,13 @@ class FrameStreamTest {
         return List.of(
                 new Frame.Load(List.of(new CompiledClass("REPL.$JShell$1", Bytes.of(new byte[] {-54, -2})))),
                 new Frame.Load(List.of()),
-                new Frame.Invoke("REPL.$JShell$1", "do_it$", Frame.Want.BUNDLE),
-                new Frame.Invoke("REPL.$JShell$1", "do_it$", Frame.Want.NOTHING),
+                new Frame.Invoke(
+                        List.of(new CompiledClass("REPL.$JShell$1", Bytes.of(new byte[] {-54, -2}))),
+                        "REPL.$JShell$1",
+                        "do_it$",
+                        Frame.Want.BUNDLE),
+                new Frame.Invoke(List.of(), "REPL.$JShell$1", "do_it$", Frame.Want.NOTHING),
+                new Frame.Release("REPL.$JShell$1", "$1"),
                 new Frame.ReadVariable("REPL.$JShell$1", "x"),
                 new Frame.AddToClassPath("/a path/with blanks.jar"),
                 new Frame.Interrupt(),
