@@ -56,9 +56,12 @@ final class CellMap {
     /** Returns the cell that a frame of the worker's own stack belongs to; its class is named after the snippet. */
     Optional<CellText> cellOf(StackTraceElement workerFrame) {
         Matcher snippet = SNIPPET_CLASS.matcher(workerFrame.getClassName());
-        return snippet.lookingAt()
-                ? Optional.ofNullable(origins.get(snippet.group(1))).map(Origin::cell)
-                : Optional.empty();
+        if (!snippet.lookingAt()) {
+            return Optional.empty();
+        }
+        return Optional.ofNullable(origins.get(snippet.group(1)))
+                .map(Origin::cell)
+                .or(() -> locateForgotten(workerFrame).map(Location::cell));
     }
 
     /** Returns where a stack frame is in the user's cells; JShell names the file of such a frame after its snippet. */

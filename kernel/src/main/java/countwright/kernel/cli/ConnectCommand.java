@@ -19,7 +19,7 @@ import picocli.CommandLine.Parameters;
         mixinStandardHelpOptions = true)
 final class ConnectCommand implements Callable<Integer> {
 
-    private static final long LAST_MILLIS = 700;
+    private static final long LAST_MILLIS = 450;
 
     @Parameters(
             paramLabel = "CONNECTION_FILE",

@@ -27,9 +27,9 @@ import tools.jackson.databind.node.ObjectNode;
 public final class KernelServer implements AutoCloseable {
 
     /** Together with what the sockets take to send their last, less than the second in which a kernel is to be gone. */
-    private static final Duration WORKER_PATIENCE = Duration.ofMillis(300);
+    private static final Duration WORKER_PATIENCE = Duration.ofMillis(200);
 
-    private static final Duration CELL_PATIENCE = Duration.ofMillis(200);
+    private static final Duration CELL_PATIENCE = Duration.ofMillis(100);
     private static final Duration HISTORY_PATIENCE = Duration.ofMillis(100);
 
     private final KernelSockets sockets;
@@ -82,7 +82,6 @@ public final class KernelServer implements AutoCloseable {
                 .asQuestion("is_complete_request", about.isComplete())
                 .asQuestion("complete_request", about.complete())
                 .asQuestion("inspect_request", about.inspect());
-        outbox.starting();
         shells.start();
         sockets.start(dispatcher);
     }

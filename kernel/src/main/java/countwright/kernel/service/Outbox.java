@@ -43,13 +43,6 @@ final class Outbox {
         sockets.send(Channel.IOPUB, new Envelope(topic, Message.first(header(type), content)));
     }
 
-    /** Says once, when the process is up, that it is starting; it has no cause but itself. */
-    void starting() {
-        Header header = header("status");
-        ObjectNode content = Replies.object().put("execution_state", "starting");
-        sockets.send(Channel.IOPUB, new Envelope(Route.topic("status"), Message.first(header, content)));
-    }
-
     synchronized void busy(Header cause) {
         status("busy", cause);
     }

@@ -50,9 +50,15 @@ public final class KernelSockets implements AutoCloseable {
     public static KernelSockets bind(ConnectionFile connection, WireLimits limits) {
         KernelSockets sockets = new KernelSockets(connection, limits);
         Map<Channel, ZMQ.Socket> bound = new EnumMap<>(Channel.class);
+        List<byte[]> starting = sockets.starting();
         try {
             for (Channel channel : Channel.values()) {
-                bound.put(channel, sockets.bound(channel, connection));
+                ZMQ.Socket socket = sockets.bound(channel, connection);
+                bound.put(channel, socket);
+                if (channel == Channel.IOPUB) {
+                    // In the same breath: a moment later there may be a subscriber, who is to hear the welcome first.
+                    sayNow(socket, starting);
+                }
             }
         } catch (IllegalStateException e) {
             bound.values().forEach(ZMQ.Socket::close);
@@ -100,6 +106,20 @@ public final class KernelSockets implements AutoCloseable {
     @Override
     public void close() {
         loops.close(context);
+    }
+
+    /** What the protocol has a kernel say once, when it is up; it has no cause but itself. */
+    private List<byte[]> starting() {
+        Message status = Message.first(
+                Header.create("status", session, "kernel"),
+                JsonNodeFactory.instance.objectNode().put("execution_state", "starting"));
+        return codec.encode(new Envelope(Route.topic("status"), status));
+    }
+
+    private static void sayNow(ZMQ.Socket socket, List<byte[]> frames) {
+        for (int i = 0; i < frames.size(); i++) {
+            socket.send(frames.get(i), i + 1 < frames.size() ? ZMQ.SNDMORE : 0);
+        }
     }
 
     private ZMQ.Socket bound(Channel channel, ConnectionFile connection) {

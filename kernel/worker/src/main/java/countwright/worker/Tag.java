@@ -10,9 +10,9 @@ final class Tag {
     static final int ANSWER = 6;
     static final int REFUSE = 7;
     static final int LEAVE = 8;
-    static final int COMM_RECEIVED = 9;
-    static final int INTERRUPT_HANDLER = 10;
-    static final int RELEASE = 11;
+    static final int RELEASE = 9;
+    static final int COMM_RECEIVED = 10;
+    static final int INTERRUPT_HANDLER = 11;
     static final int READY = 16;
     static final int DONE = 17;
     static final int FAILED = 18;
