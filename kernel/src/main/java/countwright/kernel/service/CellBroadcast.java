@@ -9,6 +9,9 @@ import tools.jackson.databind.node.ObjectNode;
 /** Publishes what one cell says, under the request that started it. */
 final class CellBroadcast implements CellListener {
 
+    /** A flood goes in pieces, so that front ends show it as it comes and no message is large. */
+    private static final int LONGEST_TEXT = 256 << 10;
+
     private final Request cell;
     private final Outbox outbox;
     private final InputDesk inputDesk;
@@ -23,12 +26,11 @@ final class CellBroadcast implements CellListener {
 
     @Override
     public void output(Stream stream, String text) {
-        if (!text.isEmpty()) {
-            publish(
-                    "stream",
-                    Replies.object()
-                            .put("name", stream == Stream.OUT ? "stdout" : "stderr")
-                            .put("text", text));
+        String name = stream == Stream.OUT ? "stdout" : "stderr";
+        for (int start = 0; start < text.length(); ) {
+            int end = CodePoints.cut(text, start, LONGEST_TEXT);
+            publish("stream", Replies.object().put("name", name).put("text", text.substring(start, end)));
+            start = end;
         }
     }
 
@@ -79,6 +81,6 @@ final class CellBroadcast implements CellListener {
     }
 
     private void publish(String type, ObjectNode content) {
-        outbox.publish(type, cell.header(), content);
+        outbox.publishWhenRoom(type, cell.header(), content);
     }
 }

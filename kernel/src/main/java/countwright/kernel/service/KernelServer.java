@@ -28,6 +28,7 @@ public final class KernelServer implements AutoCloseable {
     private static final Duration WORKER_PATIENCE = Duration.ofSeconds(2);
 
     private final KernelSockets sockets;
+    private final Outbox outbox;
     private final EngineGate engine;
     private final InputDesk inputDesk;
     private final CellLane cells;
@@ -48,7 +49,7 @@ public final class KernelServer implements AutoCloseable {
     private KernelServer(KernelSockets sockets, Supplier<? extends CellEngine> engineStart) {
         this.sockets = sockets;
         this.engine = new EngineGate(engineStart);
-        Outbox outbox = new Outbox(sockets);
+        this.outbox = new Outbox(sockets);
         this.inputDesk = new InputDesk(outbox);
         History history = new History();
         this.cells =
@@ -108,6 +109,7 @@ public final class KernelServer implements AutoCloseable {
             return;
         }
         ending.complete(Ending.CLOSED);
+        outbox.hurry();
         inputDesk.cancel("The kernel is shutting down.");
         questions.shutdown();
         try {
@@ -123,6 +125,7 @@ public final class KernelServer implements AutoCloseable {
     }
 
     private Optional<ObjectNode> interrupt() {
+        outbox.hurry();
         // The engine first: a cell that asked should end as interrupted, not with the refused question.
         engine.interrupt();
         inputDesk.cancel("The cell was interrupted before the question was answered.");
