@@ -4,6 +4,8 @@ import countwright.kernel.cell.CellEngine;
 import countwright.kernel.wire.ConnectionFile;
 import countwright.kernel.wire.KernelSockets;
 import countwright.kernel.wire.WireLimits;
+import java.lang.System.Logger;
+import java.lang.System.Logger.Level;
 import java.time.Duration;
 import java.util.Optional;
 import java.util.concurrent.CompletableFuture;
@@ -25,6 +27,7 @@ import tools.jackson.databind.node.ObjectNode;
  */
 public final class KernelServer implements AutoCloseable {
 
+    private static final Logger LOG = System.getLogger(KernelServer.class.getName());
     private static final Duration WORKER_PATIENCE = Duration.ofSeconds(2);
 
     private final KernelSockets sockets;
@@ -134,20 +137,17 @@ public final class KernelServer implements AutoCloseable {
 
     /** The reply is also published, so that other front ends learn of the end. */
     private static Optional<ObjectNode> shutdown(Request request, Outbox outbox) {
-        var reply = Replies.ok().put("restart", isRestart(request));
+        var reply = Replies.ok().put("restart", request.content().flag("restart", false));
         outbox.publish("shutdown_reply", request.header(), reply);
         return Optional.of(reply);
     }
 
+    /** A request that was refused as wrong ends nothing. */
     private void end(Request request) {
-        ending.complete(isRestart(request) ? Ending.RESTART : Ending.STOP);
-    }
-
-    private static boolean isRestart(Request request) {
         try {
-            return request.content().flag("restart", false);
+            ending.complete(request.content().flag("restart", false) ? Ending.RESTART : Ending.STOP);
         } catch (BadRequestException e) {
-            return false;
+            LOG.log(Level.DEBUG, "A shutdown_request was refused.");
         }
     }
 }

@@ -55,6 +55,7 @@ public final class KernelSockets implements AutoCloseable {
                 sockets.listeners.put(channel, listener);
                 sockets.loops.put(channel, sockets.newLoop(channel, listener));
             } catch (IOException e) {
+                sockets.loops.values().forEach(PeerLoop::close);
                 sockets.listeners.values().forEach(Listener::close);
                 throw new IllegalStateException(
                         "The kernel cannot listen on " + connection.address(channel) + " (" + channel.protocolName()

@@ -42,7 +42,7 @@ final class PeerLoop implements Peer.Host {
     private static final long ALL_UNPROVEN_BYTES = 32 << 20;
 
     /** A peer this far behind that takes nothing any more is let go; at the higher mark in any case. */
-    static final long BEHIND_BYTES = 8 << 20;
+    static final long BEHIND_BYTES = 4 << 20;
 
     private static final long FAR_BEHIND_BYTES = 64 << 20;
 

@@ -42,6 +42,24 @@ class ConnectionFileTest {
     }
 
     @Test
+    void read_fileThatOthersCanRead_warnsWithoutTheKey() throws IOException {
+        Path file = folder.resolve("open.json");
+        ConnectionFile created = ConnectionFile.create("countwright");
+        created.write(file);
+        try (LogCapture log = new LogCapture()) {
+            ConnectionFile.read(file);
+            assertThat(log.lines()).isEmpty();
+            Files.setPosixFilePermissions(file, PosixFilePermissions.fromString("rw-r--r--"));
+            ConnectionFile.read(file);
+            assertThat(log.lines())
+                    .singleElement()
+                    .asString()
+                    .startsWith("WARNING Other users can read or change the connection file " + file)
+                    .doesNotContain(created.key());
+        }
+    }
+
+    @Test
     void parse_validText_readsAllFields() {
         ConnectionFile file = ConnectionFile.parse(VALID, "f.json");
         assertThat(file.address(Channel.HEARTBEAT)).isEqualTo("tcp://127.0.0.1:1005");
