@@ -11,7 +11,7 @@ import java.util.concurrent.TimeUnit;
 final class OutputRoom {
 
     private static final long USUAL_BYTES = PeerLoop.BEHIND_BYTES;
-    private static final long HURRY_BYTES = 3 * USUAL_BYTES;
+    private static final long HURRY_BYTES = 10 * USUAL_BYTES;
     private static final long HURRY_NANOS = TimeUnit.SECONDS.toNanos(2);
 
     private long underWay;

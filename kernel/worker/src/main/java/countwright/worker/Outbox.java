@@ -18,9 +18,9 @@ import org.jspecify.annotations.Nullable;
  */
 final class Outbox {
 
-    private static final int MOST_PENDING = 4 << 20;
+    private static final int MOST_PENDING = 1 << 20;
     private static final int MOST_FRAMES = 200;
-    private static final int LARGEST_PIECE = 1 << 20;
+    private static final int LARGEST_PIECE = 512 << 10;
 
     /** Output that follows output is gathered for so long, or until it is so much, unless something else stands behind it. */
     private static final long GATHER_NANOS = 25_000_000;
