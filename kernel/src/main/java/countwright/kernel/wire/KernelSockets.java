@@ -149,7 +149,7 @@ public final class KernelSockets implements AutoCloseable {
         loop(channel).whenAllIsRead(action);
     }
 
-    /** Sends what is still queued, waiting a second at most for slow front ends, and closes all sockets. */
+    /** Sends what is still queued, waiting half a second at most for slow front ends, and closes all sockets. */
     @Override
     public void close() {
         room.open();

@@ -31,7 +31,7 @@ final class PeerLoop implements Peer.Host {
     private static final int MOST_PEERS = 1000;
     private static final long HANDSHAKE_NANOS = TimeUnit.SECONDS.toNanos(10);
     private static final long STALL_NANOS = TimeUnit.SECONDS.toNanos(5);
-    private static final long LINGER_NANOS = TimeUnit.SECONDS.toNanos(1);
+    private static final long LINGER_NANOS = TimeUnit.MILLISECONDS.toNanos(500);
     private static final long UPKEEP_MILLIS = 250;
     private static final int READ_BYTES = 64 << 10;
     private static final int WRITE_BYTES = 256 << 10;
@@ -92,7 +92,7 @@ final class PeerLoop implements Peer.Host {
         wake();
     }
 
-    /** Does what is queued and writes it out, for a second at most, then closes everything. Returns at once. */
+    /** Does what is queued and writes it out, for half a second at most, then closes everything. Returns at once. */
     void close() {
         closing = true;
         if (thread.getState() == Thread.State.NEW) {

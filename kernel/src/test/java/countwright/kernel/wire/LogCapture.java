@@ -8,7 +8,7 @@ import java.util.logging.LogRecord;
 import java.util.logging.Logger;
 
 /** Keeps what this package writes to the log while a test runs. */
-final class LogCapture extends Handler {
+final class LogCapture extends Handler implements AutoCloseable {
 
     private final List<String> lines = new CopyOnWriteArrayList<>();
     private final Logger logger = Logger.getLogger("countwright.kernel.wire");

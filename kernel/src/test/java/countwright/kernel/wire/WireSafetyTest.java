@@ -80,8 +80,7 @@ class WireSafetyTest {
 
             assertThat(nextType()).isEqualTo("next");
         }
-        assertThat(log.lines())
-                .contains("WARNING Ignored a message on shell: it is one of this kernel's own.");
+        assertThat(log.lines()).contains("WARNING Ignored a message on shell: it is one of this kernel's own.");
     }
 
     @Test
@@ -122,7 +121,10 @@ class WireSafetyTest {
             Message secret = Message.first(Header.create("execute_request", "s", "u"), content("code", "secret"));
             send(shell, codec.encode(new Envelope(Route.none(), secret)));
             assertThat(nextType()).isEqualTo("execute_request");
-            send(shell, codec.signedFrames(Route.none(), List.of(bytes("{\"secret\""), bytes("{}"), bytes("{}"), bytes("{}"))));
+            send(
+                    shell,
+                    codec.signedFrames(
+                            Route.none(), List.of(bytes("{\"secret\""), bytes("{}"), bytes("{}"), bytes("{}"))));
             awaitLog("its header is not acceptable JSON");
         }
         assertThat(log.lines()).noneMatch(line -> line.contains("secret"));
@@ -172,8 +174,8 @@ class WireSafetyTest {
 
     @Test
     void addressThatOthersReach_isWarnedOf() {
-        ConnectionFile open = ConnectionFile.parse(
-                ConnectionFile.create("x").toJson().replace("127.0.0.1", "0.0.0.0"), "f.json");
+        ConnectionFile open =
+                ConnectionFile.parse(ConnectionFile.create("x").toJson().replace("127.0.0.1", "0.0.0.0"), "f.json");
         KernelSockets.bind(open, WireLimits.STANDARD).close();
         assertThat(log.lines())
                 .singleElement()
@@ -239,7 +241,9 @@ class WireSafetyTest {
     private void awaitLog(String part) throws InterruptedException {
         long end = System.nanoTime() + TimeUnit.SECONDS.toNanos(10);
         while (log.lines().stream().noneMatch(line -> line.contains(part))) {
-            assertThat(System.nanoTime()).as("time to see '" + part + "' in the log").isLessThan(end);
+            assertThat(System.nanoTime())
+                    .as("time to see '" + part + "' in the log")
+                    .isLessThan(end);
             Thread.sleep(5);
         }
     }
