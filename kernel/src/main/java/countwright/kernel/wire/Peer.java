@@ -176,7 +176,7 @@ final class Peer {
     /** Says whether it wants messages of a topic. */
     boolean wants(byte[] topic) {
         for (byte[] prefix : subscriptions) {
-            if (prefix.length <= topic.length && Arrays.equals(prefix, Arrays.copyOf(topic, prefix.length))) {
+            if (prefix.length <= topic.length && Arrays.equals(prefix, 0, prefix.length, topic, 0, prefix.length)) {
                 return true;
             }
         }

@@ -28,7 +28,7 @@ import java.util.concurrent.atomic.AtomicBoolean;
 final class PeerLoop implements Peer.Host {
 
     private static final Logger LOG = System.getLogger(PeerLoop.class.getName());
-    private static final int MOST_PEERS = 1000;
+    private static final int MOST_PEERS = 400;
     private static final long HANDSHAKE_NANOS = TimeUnit.SECONDS.toNanos(10);
     private static final long STALL_NANOS = TimeUnit.SECONDS.toNanos(5);
     private static final long LINGER_NANOS = TimeUnit.MILLISECONDS.toNanos(500);

@@ -35,7 +35,7 @@ class UnixSocketsTest {
     void connection() {
         Map<Channel, Integer> numbers = new EnumMap<>(Channel.class);
         for (Channel channel : Channel.values()) {
-            numbers.put(channel, channel.ordinal() + 1);
+            numbers.put(channel, numbers.size() + 1);
         }
         connection = new ConnectionFile(Transport.IPC, folder.resolve("kernel").toString(), numbers, "k", "");
     }
