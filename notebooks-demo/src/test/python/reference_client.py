@@ -6,7 +6,9 @@ A scene that goes wrong ends with status 1 and says what was expected and what w
 kernelspec.
 """
 
+import os
 import sys
+import tempfile
 import time
 from contextlib import contextmanager
 from queue import Empty
@@ -96,6 +98,29 @@ def kernel_info():
     language = info["language_info"]
     check(language["name"] == "java" and language["file_extension"] == ".java", "Java", language)
     check(language["mimetype"] and language["version"] and info["banner"], "all fields filled", info)
+
+
+def ipc():
+    """Over Unix domain sockets, which are for this user only and gone at the end."""
+    with tempfile.TemporaryDirectory() as folder:
+        manager = KernelManager(kernel_name=NAME, transport="ipc", ip=os.path.join(folder, "k"))
+        manager.start_kernel()
+        try:
+            kernel = Session(manager)
+            modes = [oct(os.stat(os.path.join(folder, name)).st_mode) for name in os.listdir(folder)]
+            check(modes == ["0o140600"] * 5, "five sockets for their owner only", modes)
+            check(kernel.value("6 * 7") == "42", "42", "another value")
+            check(kernel.client.is_alive(), "a heartbeat", "none")
+            sent = kernel.client.execute("while (true) { }")
+            kernel.published_for(sent, until=lambda message: message["msg_type"] == "execute_input")
+            manager.interrupt_kernel()
+            check(kernel.reply_to(sent)["status"] == "error", "the loop to be interrupted", "no error")
+            kernel.client.stop_channels()
+            manager.shutdown_kernel()
+        finally:
+            if manager.has_kernel:
+                manager.shutdown_kernel(now=True)
+        check(os.listdir(folder) == [], "no socket to be left", os.listdir(folder))
 
 
 def rich_display():
@@ -211,7 +236,8 @@ def notebook(path, out):
 
 
 def main():
-    scenes = (seen, not_seen, kernel_info, rich_display, stdin, questions, interrupt, shutdown, restart, notebook)
+    scenes = (seen, not_seen, kernel_info, ipc, rich_display, stdin, questions, interrupt, shutdown, restart,
+              notebook)
     scene = {each.__name__: each for each in scenes}[sys.argv[1]]
     try:
         scene(*sys.argv[2:])

@@ -1,12 +1,14 @@
 package countwright.demo;
 
 import static org.assertj.core.api.Assertions.assertThat;
+import static org.assertj.core.api.Assertions.fail;
 
 import countwright.kernel.wire.Channel;
 import countwright.kernel.wire.ClientSockets;
 import countwright.kernel.wire.ConnectionFile;
 import countwright.kernel.wire.Message;
 import java.io.IOException;
+import java.nio.file.Files;
 import java.nio.file.Path;
 import java.time.Duration;
 import java.util.ArrayList;
@@ -27,6 +29,8 @@ final class LiveKernel implements AutoCloseable {
 
     private final List<Heard> heard = new ArrayList<>();
     private final Process process;
+    private final Path log;
+    private final ConnectionFile connection;
     private final ClientSockets sockets;
 
     private record Heard(Channel channel, Message message, long nanoTime) {}
@@ -40,8 +44,10 @@ final class LiveKernel implements AutoCloseable {
      */
     record Outcome(String printed, String value, String error) {}
 
-    private LiveKernel(Process process, ConnectionFile connection) {
+    private LiveKernel(Process process, Path log, ConnectionFile connection) {
         this.process = process;
+        this.log = log;
+        this.connection = connection;
         this.sockets = ClientSockets.connect(connection, "tester", (channel, envelope) -> {
             synchronized (heard) {
                 heard.add(new Heard(channel, envelope.message(), System.nanoTime()));
@@ -55,7 +61,8 @@ final class LiveKernel implements AutoCloseable {
         ConnectionFile connection = ConnectionFile.create("countwright");
         Path file = temporary.resolve("connection.json");
         connection.write(file);
-        LiveKernel kernel = new LiveKernel(process(workingFolder, temporary, file, environment), connection);
+        LiveKernel kernel = new LiveKernel(
+                process(workingFolder, temporary, file, environment), temporary.resolve("kernel.log"), connection);
         kernel.await(Channel.SHELL, kernel.send(Channel.SHELL, "kernel_info_request", empty()), message -> true);
         kernel.sockets.subscribed().get(LIMIT_SECONDS, TimeUnit.SECONDS);
         return kernel;
@@ -70,6 +77,35 @@ final class LiveKernel implements AutoCloseable {
                 .redirectOutput(temporary.resolve("kernel.log").toFile());
         builder.environment().putAll(environment);
         return builder.start();
+    }
+
+    ConnectionFile connection() {
+        return connection;
+    }
+
+    ProcessHandle process() {
+        return process.toHandle();
+    }
+
+    /** Forgets what has been heard so far, to keep long tests quick. */
+    void forget() {
+        synchronized (heard) {
+            heard.clear();
+        }
+    }
+
+    /** Sends a request and waits for its reply on the same channel. */
+    Message ask(Channel channel, String type, ObjectNode content) throws InterruptedException {
+        Message request = send(channel, type, content);
+        String replyType = type.replace("_request", "_reply");
+        await(channel, request, message -> message.type().equals(replyType));
+        synchronized (heard) {
+            return heard.stream()
+                    .filter(item -> item.channel() == channel && item.message().isCausedBy(request.header()))
+                    .map(Heard::message)
+                    .findFirst()
+                    .orElseThrow();
+        }
     }
 
     /** Runs a cell to its end. */
@@ -146,6 +182,39 @@ final class LiveKernel implements AutoCloseable {
         await(Channel.IOPUB, cell, message -> message.type().equals("stream"));
     }
 
+    /** Waits until a cell has printed so many characters. */
+    void awaitPrinted(Message cell, long characters) throws InterruptedException {
+        long deadline = System.nanoTime() + TimeUnit.SECONDS.toNanos(LIMIT_SECONDS);
+        synchronized (heard) {
+            while (texts(cell, "stream", content -> content.path("text").asString(""))
+                            .length()
+                    < characters) {
+                assertThat(System.nanoTime()).as("time, for the cell to print").isLessThan(deadline);
+                heard.wait(100);
+            }
+        }
+    }
+
+    /** Waits until nothing has been heard of a running cell for a while. */
+    void awaitSilence(Message cell, Duration silence) throws InterruptedException {
+        awaitOutput(cell);
+        int before = -1;
+        synchronized (heard) {
+            while (heard.size() != before) {
+                before = heard.size();
+                long end = System.nanoTime() + silence.toNanos();
+                for (long left = silence.toMillis(); left > 0; left = (end - System.nanoTime()) / 1_000_000) {
+                    heard.wait(left);
+                }
+            }
+        }
+    }
+
+    /** Waits for the reply to a cell, which may come before all of its output. */
+    void awaitReply(Message cell) throws InterruptedException {
+        await(Channel.SHELL, cell, message -> message.type().equals("execute_reply"));
+    }
+
     /** Waits for the end of a cell. */
     Outcome end(Message cell) throws InterruptedException {
         await(Channel.SHELL, cell, message -> message.type().equals("execute_reply"));
@@ -187,11 +256,6 @@ final class LiveKernel implements AutoCloseable {
         return taken;
     }
 
-    /** Returns the processes that the kernel has started. */
-    List<ProcessHandle> workers() {
-        return process.descendants().toList();
-    }
-
     private static String error(JsonNode content) {
         return content.path("traceback")
                 .valueStream()
@@ -217,11 +281,11 @@ final class LiveKernel implements AutoCloseable {
     }
 
     private Heard await(Channel channel, Message cause, Predicate<Message> wanted) throws InterruptedException {
-        return await(
-                channel,
-                cause,
-                wanted,
-                () -> assertThat(process.isAlive()).as("the kernel lives").isTrue());
+        return await(channel, cause, wanted, () -> {
+            if (!process.isAlive()) {
+                fail("The kernel ended with " + process.exitValue() + "; the end of its log: " + endOfLog());
+            }
+        });
     }
 
     private Heard await(Channel channel, Message cause, Predicate<Message> wanted, Runnable meanwhile)
@@ -243,6 +307,15 @@ final class LiveKernel implements AutoCloseable {
                 assertThat(left).as("time left for " + cause.type()).isPositive();
                 heard.wait(Math.min(left, 500));
             }
+        }
+    }
+
+    private String endOfLog() {
+        try {
+            String all = Files.readString(log);
+            return all.substring(Math.max(0, all.length() - 3000));
+        } catch (IOException e) {
+            return "(not readable: " + e + ")";
         }
     }
 

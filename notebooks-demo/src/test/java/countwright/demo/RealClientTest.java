@@ -59,7 +59,16 @@ class RealClientTest {
 
         @ParameterizedTest
         @ValueSource(
-                strings = {"kernel_info", "rich_display", "stdin", "questions", "interrupt", "shutdown", "restart"})
+                strings = {
+                    "kernel_info",
+                    "ipc",
+                    "rich_display",
+                    "stdin",
+                    "questions",
+                    "interrupt",
+                    "shutdown",
+                    "restart"
+                })
         void scene_isPlayedToItsEnd(String scene) throws IOException {
             client.plays(jupyter(registered()), scene);
         }

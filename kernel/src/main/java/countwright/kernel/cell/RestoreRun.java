@@ -1,6 +1,7 @@
 package countwright.kernel.cell;
 
 import countwright.kernel.cell.CellOutcome.Failure;
+import countwright.show.CommMessage;
 import countwright.show.MimeBundle;
 import countwright.show.Stage;
 import java.util.ArrayList;
@@ -93,7 +94,7 @@ final class RestoreRun {
         listener.output(CellListener.Stream.OUT, line + "\n");
     }
 
-    /** Passes on questions only: what a cell showed stands in the notebook already. */
+    /** Passes on questions and comms only: what a cell showed stands in the notebook already. */
     private record Muted(CellListener listener) implements CellListener {
 
         @Override
@@ -107,6 +108,17 @@ final class RestoreRun {
 
         @Override
         public void clear(Stage.Clearing when) {}
+
+        @Override
+        public void page(MimeBundle bundle) {}
+
+        @Override
+        public void nextInput(String code) {}
+
+        @Override
+        public void comm(CommMessage message) {
+            listener.comm(message);
+        }
 
         @Override
         public void ask(InputRequest request) {

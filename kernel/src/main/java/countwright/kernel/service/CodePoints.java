@@ -15,4 +15,11 @@ final class CodePoints {
     static int fromUtf16(String code, int units) {
         return code.codePointCount(0, Math.min(Math.max(units, 0), code.length()));
     }
+
+    /** Returns where to cut a text so that the piece is at most so long, at least two, and no character is cut apart. */
+    static int cut(String text, int start, int longest) {
+        int end = Math.min(text.length(), start + longest);
+        boolean apart = end < text.length() && Character.isSurrogatePair(text.charAt(end - 1), text.charAt(end));
+        return apart ? end - 1 : end;
+    }
 }

@@ -4,6 +4,8 @@ import countwright.kernel.cell.CellEngine;
 import countwright.kernel.wire.ConnectionFile;
 import countwright.kernel.wire.KernelSockets;
 import countwright.kernel.wire.WireLimits;
+import java.lang.System.Logger;
+import java.lang.System.Logger.Level;
 import java.nio.file.Path;
 import java.time.Duration;
 import java.util.Optional;
@@ -26,6 +28,8 @@ import tools.jackson.databind.node.ObjectNode;
  */
 public final class KernelServer implements AutoCloseable {
 
+    private static final Logger LOG = System.getLogger(KernelServer.class.getName());
+
     /** Together with what the sockets take to send their last, less than the second in which a kernel is to be gone. */
     private static final Duration WORKER_PATIENCE = Duration.ofMillis(200);
 
@@ -33,6 +37,7 @@ public final class KernelServer implements AutoCloseable {
     private static final Duration HISTORY_PATIENCE = Duration.ofMillis(100);
 
     private final KernelSockets sockets;
+    private final Outbox outbox;
     private final EngineGate engine;
     private final InputDesk inputDesk;
     private final Subshells shells;
@@ -56,7 +61,7 @@ public final class KernelServer implements AutoCloseable {
             ConnectionFile connection, Optional<Path> historyFile, Supplier<? extends CellEngine> engineStart) {
         this.sockets = KernelSockets.bind(connection, WireLimits.STANDARD);
         this.engine = new EngineGate(engineStart);
-        Outbox outbox = new Outbox(sockets);
+        this.outbox = new Outbox(sockets);
         this.inputDesk = new InputDesk(outbox);
         this.history = new History(historyFile);
         this.comms = new CommDesk(engine, outbox);
@@ -134,6 +139,7 @@ public final class KernelServer implements AutoCloseable {
             return;
         }
         ending.complete(Ending.CLOSED);
+        outbox.hurry();
         inputDesk.cancel("The kernel is shutting down.");
         shells.close();
         try {
@@ -151,6 +157,7 @@ public final class KernelServer implements AutoCloseable {
     }
 
     private Optional<ObjectNode> interrupt() {
+        outbox.hurry();
         // The engine first: a cell that asked should end as interrupted, not with the refused question.
         engine.interrupt();
         inputDesk.cancel("The cell was interrupted before the question was answered.");
@@ -159,20 +166,17 @@ public final class KernelServer implements AutoCloseable {
 
     /** The reply is also published, so that other front ends learn of the end. */
     private static Optional<ObjectNode> shutdown(Request request, Outbox outbox) {
-        var reply = Replies.ok().put("restart", isRestart(request));
+        var reply = Replies.ok().put("restart", request.content().flag("restart", false));
         outbox.publish("shutdown_reply", request.header(), reply);
         return Optional.of(reply);
     }
 
+    /** A request that was refused as wrong ends nothing. */
     private void end(Request request) {
-        ending.complete(isRestart(request) ? Ending.RESTART : Ending.STOP);
-    }
-
-    private static boolean isRestart(Request request) {
         try {
-            return request.content().flag("restart", false);
+            ending.complete(request.content().flag("restart", false) ? Ending.RESTART : Ending.STOP);
         } catch (BadRequestException e) {
-            return false;
+            LOG.log(Level.DEBUG, "A shutdown_request was refused.");
         }
     }
 }

@@ -33,8 +33,22 @@ final class Outbox {
     }
 
     void publish(String type, Header cause, ObjectNode content) {
+        sockets.send(Channel.IOPUB, published(type, cause, content));
+    }
+
+    /** Publishes what a cell says, waiting while the front ends that read are far behind. */
+    void publishWhenRoom(String type, Header cause, ObjectNode content) {
+        sockets.sendWhenRoom(Channel.IOPUB, published(type, cause, content));
+    }
+
+    /** Lets what waits to be published through, because something urgent stands behind it. */
+    void hurry() {
+        sockets.hurry();
+    }
+
+    private Envelope published(String type, Header cause, ObjectNode content) {
         Route topic = Route.topic("kernel." + sockets.session() + "." + type);
-        sockets.send(Channel.IOPUB, new Envelope(topic, Message.caused(header(type), cause, content)));
+        return new Envelope(topic, Message.caused(header(type), cause, content));
     }
 
     /** Publishes something that no request has caused. */

@@ -7,8 +7,14 @@ import countwright.show.Stage;
 import java.util.Optional;
 import tools.jackson.databind.node.ObjectNode;
 
-/** What running code says, as messages under the request that caused it. */
+/**
+ * What running code says, as messages under the request that caused it. Each waits while the front ends that read are far
+ * behind.
+ */
 final class Publishing {
+
+    /** A flood goes in pieces, so that front ends show it as it comes and no message is large. */
+    private static final int LONGEST_TEXT = 256 << 10;
 
     private final Header cause;
     private final Outbox outbox;
@@ -19,12 +25,11 @@ final class Publishing {
     }
 
     void output(CellListener.Stream stream, String text) {
-        if (!text.isEmpty()) {
-            publish(
-                    "stream",
-                    Replies.object()
-                            .put("name", stream == CellListener.Stream.OUT ? "stdout" : "stderr")
-                            .put("text", text));
+        String name = stream == CellListener.Stream.OUT ? "stdout" : "stderr";
+        for (int start = 0; start < text.length(); ) {
+            int end = CodePoints.cut(text, start, LONGEST_TEXT);
+            publish("stream", Replies.object().put("name", name).put("text", text.substring(start, end)));
+            start = end;
         }
     }
 
@@ -48,6 +53,6 @@ final class Publishing {
     }
 
     void publish(String type, ObjectNode content) {
-        outbox.publish(type, cause, content);
+        outbox.publishWhenRoom(type, cause, content);
     }
 }

@@ -22,7 +22,8 @@ final class SafeAnswer implements Handler {
             return handler.answer(request);
         } catch (BadRequestException e) {
             String reason = Optional.ofNullable(e.getMessage()).orElse("It is not as the protocol says.");
-            LOG.log(Level.WARNING, "A request could not be answered: " + reason);
+            // The reason may quote the request, which the log must not.
+            LOG.log(Level.WARNING, "Refused a " + request.type() + ": its content is not as the protocol says.");
             return failed(request, "BadRequest", reason);
         } catch (RuntimeException | Error e) {
             // Errors too: the compiler runs in this process, and code nested deeply enough overflows its stack.

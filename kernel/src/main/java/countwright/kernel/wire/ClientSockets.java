@@ -49,6 +49,10 @@ public final class ClientSockets implements AutoCloseable {
 
     /** Connects all sockets, subscribes to everything the kernel publishes, and starts to receive. */
     public static ClientSockets connect(ConnectionFile connection, String username, Deliveries deliveries) {
+        if (connection.transport() != Transport.TCP) {
+            throw new IllegalArgumentException("a client of ours connects by tcp only, not by "
+                    + connection.transport().protocolName() + ".");
+        }
         ClientSockets sockets = new ClientSockets(connection, username);
         Map<Channel, ZMQ.Socket> connected = new EnumMap<>(Channel.class);
         for (Channel channel : Channel.values()) {

@@ -2,6 +2,8 @@ package countwright.kernel.wire;
 
 import java.io.IOException;
 import java.io.UncheckedIOException;
+import java.lang.System.Logger;
+import java.lang.System.Logger.Level;
 import java.net.InetAddress;
 import java.net.ServerSocket;
 import java.nio.ByteBuffer;
@@ -12,9 +14,13 @@ import java.nio.file.NoSuchFileException;
 import java.nio.file.Path;
 import java.nio.file.StandardOpenOption;
 import java.nio.file.attribute.FileAttribute;
+import java.nio.file.attribute.PosixFileAttributeView;
+import java.nio.file.attribute.PosixFilePermission;
 import java.nio.file.attribute.PosixFilePermissions;
 import java.security.SecureRandom;
 import java.util.ArrayList;
+import java.util.Arrays;
+import java.util.Collections;
 import java.util.EnumMap;
 import java.util.EnumSet;
 import java.util.HexFormat;
@@ -31,14 +37,22 @@ import tools.jackson.databind.node.ObjectNode;
 /**
  * Where a kernel listens and the key that signs its messages.
  *
- * @param ip address or host name; IPv6 without brackets
- * @param ports one port, 1 to 65535, for every channel
+ * @param transport TCP or Unix domain sockets
+ * @param ip address or host name, IPv6 without brackets; for Unix domain sockets the path that all five have in common
+ * @param ports one port, 1 to 65535, for every channel; for Unix domain sockets the number after the path and a hyphen
  * @param key the key; empty for unsigned messages
  * @param kernelName the name of the kernelspec; empty if not given
  */
-public record ConnectionFile(String ip, Map<Channel, Integer> ports, String key, String kernelName) {
+public record ConnectionFile(
+        Transport transport, String ip, Map<Channel, Integer> ports, String key, String kernelName) {
 
     private static final String SCHEME = "hmac-sha256";
+    private static final Logger LOG = System.getLogger(ConnectionFile.class.getName());
+    private static final Set<PosixFilePermission> FOR_OTHERS = Set.of(
+            PosixFilePermission.GROUP_READ,
+            PosixFilePermission.GROUP_WRITE,
+            PosixFilePermission.OTHERS_READ,
+            PosixFilePermission.OTHERS_WRITE);
     private static final JsonMapper MAPPER = JsonMapper.shared();
 
     public ConnectionFile {
@@ -57,7 +71,8 @@ public record ConnectionFile(String ip, Map<Channel, Integer> ports, String key,
     public static ConnectionFile create(String kernelName) {
         byte[] secret = new byte[32];
         new SecureRandom().nextBytes(secret);
-        return new ConnectionFile("127.0.0.1", freePorts(), HexFormat.of().formatHex(secret), kernelName);
+        return new ConnectionFile(
+                Transport.TCP, "127.0.0.1", freePorts(), HexFormat.of().formatHex(secret), kernelName);
     }
 
     /**
@@ -70,6 +85,13 @@ public record ConnectionFile(String ip, Map<Channel, Integer> ports, String key,
         String text;
         try {
             text = Files.readString(file);
+            if (isOpenToOthers(file)) {
+                LOG.log(
+                        Level.WARNING,
+                        "Other users can read or change the connection file " + file
+                                + ", and its key lets them run code"
+                                + " in this kernel. Let the front end write it with permissions for its owner only.");
+            }
         } catch (NoSuchFileException e) {
             throw new IOException(
                     "There is no connection file " + file + ". Pass the file that the front end wrote.", e);
@@ -100,11 +122,7 @@ public record ConnectionFile(String ip, Map<Channel, Integer> ports, String key,
             throw new IllegalArgumentException(
                     "The connection file " + where + " is not a JSON object. Let the front end write it again.");
         }
-        String transport = text(fields, "transport", where).orElse("tcp");
-        if (!transport.equals("tcp")) {
-            throw new IllegalArgumentException("The connection file " + where + " asks for transport '" + transport
-                    + "', but only 'tcp' works here. Set the front end's transport to tcp.");
-        }
+        Transport transport = transport(text(fields, "transport", where).orElse("tcp"), where);
         String key = text(fields, "key", where).orElse("");
         String scheme = text(fields, "signature_scheme", where).orElse(SCHEME);
         if (!key.isEmpty() && !scheme.equals(SCHEME)) {
@@ -115,17 +133,33 @@ public record ConnectionFile(String ip, Map<Channel, Integer> ports, String key,
         for (Channel channel : Channel.values()) {
             ports.put(channel, port(fields, channel.portField(), where));
         }
+        Optional<String> ip = text(fields, "ip", where);
+        if (transport == Transport.IPC && ip.filter(path -> !path.isEmpty()).isEmpty()) {
+            throw new IllegalArgumentException("The connection file " + where
+                    + " asks for transport 'ipc' but has no path in 'ip'. Let the front end write it again.");
+        }
         return new ConnectionFile(
-                text(fields, "ip", where).orElse("127.0.0.1"),
+                transport,
+                ip.orElse("127.0.0.1"),
                 ports,
                 key,
                 text(fields, "kernel_name", where).orElse(""));
     }
 
+    private static Transport transport(String name, String where) {
+        return Arrays.stream(Transport.values())
+                .filter(transport -> transport.protocolName().equals(name))
+                .findFirst()
+                .orElseThrow(
+                        () -> new IllegalArgumentException(
+                                "The connection file " + where + " asks for transport '" + name
+                                        + "', but only 'tcp' and 'ipc' work here. Set the front end's transport to one of them."));
+    }
+
     /**
      * Writes this connection to a new file that only its owner can read, since the key lets anyone run code.
      *
-     * @throws IOException if the file exists or cannot be written
+     * @throws IOException if the file exists, cannot be written, or lies where others can read it whatever we do
      */
     public void write(Path file) throws IOException {
         FileAttribute<?>[] attributes =
@@ -136,14 +170,27 @@ public record ConnectionFile(String ip, Map<Channel, Integer> ports, String key,
                         : new FileAttribute<?>[0];
         try (var channel = Files.newByteChannel(
                 file, Set.of(StandardOpenOption.CREATE_NEW, StandardOpenOption.WRITE), attributes)) {
-            channel.write(ByteBuffer.wrap(toJson().getBytes(StandardCharsets.UTF_8)));
+            // Before the key is in it: some file systems give every file the same permissions.
+            if (isOpenToOthers(file)) {
+                throw new IOException("The connection file " + file + " would be open to other users, and its key lets"
+                        + " them run code. Write it into a folder of a file system that knows permissions.");
+            }
+            ByteBuffer text = ByteBuffer.wrap(toJson().getBytes(StandardCharsets.UTF_8));
+            while (text.hasRemaining()) {
+                channel.write(text);
+            }
         }
+    }
+
+    private static boolean isOpenToOthers(Path file) throws IOException {
+        PosixFileAttributeView view = Files.getFileAttributeView(file, PosixFileAttributeView.class);
+        return view != null && !Collections.disjoint(view.readAttributes().permissions(), FOR_OTHERS);
     }
 
     /** Returns the text of the file, key included. */
     public String toJson() {
         ObjectNode fields = JsonNodeFactory.instance.objectNode();
-        fields.put("transport", "tcp");
+        fields.put("transport", transport.protocolName());
         fields.put("ip", ip);
         for (Channel channel : Channel.values()) {
             fields.put(channel.portField(), port(channel));
@@ -160,17 +207,25 @@ public record ConnectionFile(String ip, Map<Channel, Integer> ports, String key,
     }
 
     String address(Channel channel) {
+        if (transport == Transport.IPC) {
+            return "ipc://" + socketFile(channel);
+        }
         return "tcp://" + (isIpv6() ? "[" + ip + "]" : ip) + ":" + port(channel);
     }
 
+    /** Returns the file of a channel's Unix domain socket. */
+    Path socketFile(Channel channel) {
+        return Path.of(ip + "-" + port(channel));
+    }
+
     boolean isIpv6() {
-        return ip.indexOf(':') >= 0;
+        return transport == Transport.TCP && ip.indexOf(':') >= 0;
     }
 
     /** Leaves the key out: this text may end in a log. */
     @Override
     public String toString() {
-        return "connection to " + ip + " on ports " + new EnumMap<>(ports)
+        return "connection to " + transport.protocolName() + " " + ip + " on ports " + new EnumMap<>(ports)
                 + (key.isEmpty() ? ", unsigned" : ", signed");
     }
 

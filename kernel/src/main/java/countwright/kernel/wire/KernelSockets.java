@@ -1,37 +1,37 @@
 package countwright.kernel.wire;
 
+import java.io.IOException;
 import java.lang.System.Logger;
 import java.lang.System.Logger.Level;
-import java.nio.charset.StandardCharsets;
 import java.util.EnumMap;
 import java.util.List;
 import java.util.Map;
+import java.util.Optional;
 import java.util.UUID;
-import org.zeromq.SocketType;
-import org.zeromq.ZMQ;
-import org.zeromq.ZMQException;
 import tools.jackson.databind.node.JsonNodeFactory;
 
 /**
  * The kernel's five sockets. Each has a thread of its own, so a large message on one does not hold up another, and the
- * heartbeat answers whatever else goes on. Everything here may be called by any thread and returns at once.
+ * heartbeat answers whatever else goes on. Everything here may be called by any thread; only {@link #sendWhenRoom} and
+ * {@link #close} take their time.
  *
  * <p>Anything that is not a well-formed, correctly signed, first-time message is ignored, with a line in the log that
  * says why and quotes nothing.
  *
- * <p>iopub is an XPUB socket: each subscription is answered by {@code iopub_welcome}, so that a front end knows when it
- * will miss nothing. Its queue for a front end that reads slowly is long but bounded; one that stops reading loses
- * messages rather than filling the kernel's memory.
+ * <p>Each subscription to iopub is answered by {@code iopub_welcome}, so that a front end knows when it will miss nothing.
+ * A front end that reads loses nothing: output waits for it. One that has stopped reading is disconnected when megabytes
+ * wait for it; it may connect again, and the new welcome tells it that there is a gap.
  */
 public final class KernelSockets implements AutoCloseable {
 
     private static final Logger LOG = System.getLogger(KernelSockets.class.getName());
-    private static final int IOPUB_QUEUE = 100_000;
-    private static final int LINGER_MILLIS = 1000;
-    private static final int LONGEST_TOPIC = 1024;
 
-    private final ZMQ.Context context = ZMQ.context(1);
-    private final SocketLoops loops = new SocketLoops();
+    private final Map<Channel, PeerLoop> loops = new EnumMap<>(Channel.class);
+    private final Map<Channel, Listener> listeners = new EnumMap<>(Channel.class);
+    private final Map<Channel, RequestTraffic> requests = new EnumMap<>(Channel.class);
+    private final OutputRoom room = new OutputRoom();
+    private final Complaints complaints = new Complaints();
+    private final MessageLog messageLog = MessageLog.ofEnvironment();
     private final MessageCodec codec;
     private final WireLimits limits;
     private volatile Deliveries receiver = (channel, envelope) -> {};
@@ -49,37 +49,37 @@ public final class KernelSockets implements AutoCloseable {
      */
     public static KernelSockets bind(ConnectionFile connection, WireLimits limits) {
         KernelSockets sockets = new KernelSockets(connection, limits);
-        Map<Channel, ZMQ.Socket> bound = new EnumMap<>(Channel.class);
-        List<byte[]> starting = sockets.starting();
-        try {
-            for (Channel channel : Channel.values()) {
-                ZMQ.Socket socket = sockets.bound(channel, connection);
-                bound.put(channel, socket);
-                if (channel == Channel.IOPUB) {
-                    // In the same breath: a moment later there may be a subscriber, who is to hear the welcome first.
-                    sayNow(socket, starting);
-                }
+        for (Channel channel : Channel.values()) {
+            try {
+                Listener listener = Listener.open(connection, channel);
+                sockets.listeners.put(channel, listener);
+                sockets.loops.put(channel, sockets.newLoop(channel, listener));
+            } catch (IOException e) {
+                sockets.loops.values().forEach(PeerLoop::close);
+                sockets.listeners.values().forEach(Listener::close);
+                throw new IllegalStateException(
+                        "The kernel cannot listen on " + connection.address(channel) + " (" + channel.protocolName()
+                                + "): " + e.getMessage()
+                                + ". Let the front end start the kernel again with other ports.",
+                        e);
             }
-        } catch (IllegalStateException e) {
-            bound.values().forEach(ZMQ.Socket::close);
-            sockets.context.close();
-            throw e;
         }
         if (connection.key().isEmpty()) {
             LOG.log(Level.WARNING, "The key is empty: anyone who reaches the ports of this kernel can run code in it.");
         }
-        bound.forEach((channel, socket) -> sockets.loops.add(channel, sockets.newLoop(channel, socket)));
-        sockets.loops.on(Channel.HEARTBEAT).start();
-        sockets.loops.on(Channel.IOPUB).start();
+        // Queued before the first subscriber can come, who is to hear the welcome first.
+        sockets.send(Channel.IOPUB, sockets.starting());
+        sockets.loop(Channel.HEARTBEAT).start();
+        sockets.loop(Channel.IOPUB).start();
         return sockets;
     }
 
     /** Starts to deliver what comes in on shell, control and stdin. To be called once. */
     public void start(Deliveries deliveries) {
         receiver = deliveries;
-        loops.on(Channel.STDIN).start();
-        loops.on(Channel.CONTROL).start();
-        loops.on(Channel.SHELL).start();
+        loop(Channel.STDIN).start();
+        loop(Channel.CONTROL).start();
+        loop(Channel.SHELL).start();
     }
 
     /** Returns the session id that this kernel's messages carry. */
@@ -89,100 +89,142 @@ public final class KernelSockets implements AutoCloseable {
 
     /** Sends a message. */
     public void send(Channel channel, Envelope envelope) {
-        loops.on(channel).send(codec.encode(envelope));
+        send(channel, envelope, () -> {});
+    }
+
+    /** Sends a message, on iopub once all front ends that read are near enough to it; elsewhere at once. */
+    public void sendWhenRoom(Channel channel, Envelope envelope) {
+        if (channel == Channel.IOPUB) {
+            room.await();
+        }
+        send(channel, envelope);
+    }
+
+    /** Lets output that waits through for a moment, because something urgent stands behind it. */
+    public void hurry() {
+        room.hurry();
     }
 
     /** Asks a front end a question on stdin; runs the action if no such front end listens there. */
     public void ask(Envelope question, Runnable undeliverable) {
-        loops.on(Channel.STDIN).send(codec.encode(question), undeliverable);
-    }
-
-    /** Runs a short action once every message that has arrived on a channel by now has been delivered. */
-    public void whenAllIsDelivered(Channel channel, Runnable action) {
-        loops.on(channel).whenAllIsRead(action);
-    }
-
-    /** Sends what is still queued, waiting a second at most for slow front ends, and closes all sockets. */
-    @Override
-    public void close() {
-        loops.close(context);
+        send(Channel.STDIN, question, undeliverable);
     }
 
     /** What the protocol has a kernel say once, when it is up; it has no cause but itself. */
-    private List<byte[]> starting() {
+    private Envelope starting() {
         Message status = Message.first(
                 Header.create("status", session, "kernel"),
                 JsonNodeFactory.instance.objectNode().put("execution_state", "starting"));
-        return codec.encode(new Envelope(Route.topic("status"), status));
+        return new Envelope(Route.topic("status"), status);
     }
 
-    private static void sayNow(ZMQ.Socket socket, List<byte[]> frames) {
-        for (int i = 0; i < frames.size(); i++) {
-            socket.send(frames.get(i), i + 1 < frames.size() ? ZMQ.SNDMORE : 0);
-        }
-    }
-
-    private ZMQ.Socket bound(Channel channel, ConnectionFile connection) {
-        ZMQ.Socket socket = context.socket(channel == Channel.IOPUB ? SocketType.XPUB : SocketType.ROUTER);
-        socket.setLinger(LINGER_MILLIS);
-        socket.setMaxMsgSize(limits.frameBytes());
-        socket.setIPv6(connection.isIpv6());
-        if (channel == Channel.IOPUB) {
-            socket.setXpubVerbose(true);
-            socket.setSndHWM(IOPUB_QUEUE);
+    private void send(Channel channel, Envelope envelope, Runnable undeliverable) {
+        messageLog.sent(channel, envelope.message());
+        List<byte[]> frames = codec.encode(envelope);
+        PeerLoop loop = loop(channel);
+        RequestTraffic traffic = requests.get(channel);
+        if (traffic == null) {
+            publish(loop, frames);
         } else {
-            // A front end that reconnects under its old identity takes it over, instead of being refused.
-            socket.setRouterHandover(true);
+            loop.execute(() -> {
+                Optional<Peer> peer = traffic.find(frames.get(0));
+                if (peer.isPresent()) {
+                    loop.send(peer.get(), Zmtp.message(frames.subList(1, frames.size())));
+                } else {
+                    undeliverable.run();
+                }
+            });
         }
-        if (channel == Channel.STDIN) {
-            socket.setRouterMandatory(true);
-        }
-        String address = connection.address(channel);
-        try {
-            if (socket.bind(address)) {
-                return socket;
-            }
-        } catch (ZMQException | IllegalArgumentException e) {
-            LOG.log(Level.DEBUG, "bind failed", e);
-        }
-        socket.close();
-        throw new IllegalStateException("The kernel cannot listen on " + address + " (" + channel.protocolName()
-                + "): the port is taken or the address is not of this machine."
-                + " Let the front end start the kernel again with other ports.");
     }
 
-    private SocketLoop newLoop(Channel channel, ZMQ.Socket socket) {
-        return new SocketLoop(channel.protocolName(), context, socket, limits, frames -> {
-            switch (channel) {
-                case HEARTBEAT -> loops.on(Channel.HEARTBEAT).send(frames);
-                case IOPUB -> welcome(frames.get(0));
-                case SHELL, CONTROL, STDIN -> receive(channel, frames);
+    private void publish(PeerLoop loop, List<byte[]> frames) {
+        List<byte[]> pieces = Zmtp.message(frames);
+        long bytes = pieces.stream().mapToLong(piece -> piece.length).sum();
+        room.add(bytes);
+        loop.execute(() -> {
+            try {
+                for (Peer peer : loop.peers()) {
+                    if (peer.wants(frames.get(0))) {
+                        loop.send(peer, pieces);
+                    }
+                }
+            } finally {
+                room.remove(bytes);
             }
         });
     }
 
-    private void receive(Channel channel, List<byte[]> frames) {
+    /** Runs a short action once every message that has arrived on a channel by now has been delivered. */
+    public void whenAllIsDelivered(Channel channel, Runnable action) {
+        loop(channel).whenAllIsRead(action);
+    }
+
+    /** Sends what is still queued, waiting half a second at most for slow front ends, and closes all sockets. */
+    @Override
+    public void close() {
+        room.open();
+        loops.values().forEach(PeerLoop::close);
+        try {
+            for (PeerLoop loop : loops.values()) {
+                loop.join();
+            }
+        } catch (InterruptedException e) {
+            Thread.currentThread().interrupt();
+        } finally {
+            listeners.values().forEach(Listener::close);
+        }
+    }
+
+    private PeerLoop loop(Channel channel) {
+        return Optional.ofNullable(loops.get(channel)).orElseThrow();
+    }
+
+    private PeerLoop newLoop(Channel channel, Listener listener) throws IOException {
+        Traffic traffic = switch (channel) {
+            case HEARTBEAT -> new EchoTraffic((peer, frames) -> loop(channel).send(peer, Zmtp.message(frames)));
+            case IOPUB -> new PublishTraffic(room, this::welcome);
+            case SHELL, CONTROL, STDIN -> new RequestTraffic(frames -> receive(channel, frames));
+        };
+        if (traffic instanceof RequestTraffic routed) {
+            requests.put(channel, routed);
+        }
+        // Nothing large is ever sent to the kernel on the other two.
+        WireLimits narrowed = traffic instanceof RequestTraffic ? limits : limits.narrowed();
+        return new PeerLoop(channel.protocolName(), listener.channel(), narrowed, traffic, complaints);
+    }
+
+    /** Returns whether the frames were a message that shows that its sender holds the key. */
+    private boolean receive(Channel channel, List<byte[]> frames) {
         Envelope envelope;
         try {
             envelope = codec.decode(frames);
         } catch (MalformedMessageException e) {
-            LOG.log(
-                    Level.WARNING,
-                    () -> "Ignored a message on " + channel.protocolName() + ": " + e.getMessage() + ".");
-            return;
+            complaints.tell("Ignored a message on " + channel.protocolName() + ": " + e.getMessage() + ".");
+            return false;
         }
-        receiver.deliver(channel, envelope);
+        if (envelope.message().header().session().equals(session)) {
+            // Whoever listens on iopub gets messages that bear the signature; sent back, they are no requests.
+            complaints.tell("Ignored a message on " + channel.protocolName() + ": it is one of this kernel's own.");
+            return false;
+        }
+        messageLog.received(channel, envelope.message());
+        try {
+            receiver.deliver(channel, envelope);
+        } catch (RuntimeException | Error e) {
+            // The socket must outlive whatever goes wrong with one message, memory running short for it included.
+            LOG.log(
+                    Level.ERROR,
+                    "A message on " + channel.protocolName() + " could not be handled; the next one will be.",
+                    e);
+        }
+        return true;
     }
 
-    /** A subscription comes as one frame: 1 for on or 0 for off, then the topic. */
-    private void welcome(byte[] subscription) {
-        if (subscription.length == 0 || subscription[0] != 1 || subscription.length > LONGEST_TOPIC) {
-            return;
-        }
-        String topic = new String(subscription, 1, subscription.length - 1, StandardCharsets.UTF_8);
+    private void welcome(Peer peer, String topic) {
         Message welcome = Message.first(
                 Header.create("iopub_welcome", session, "kernel"),
                 JsonNodeFactory.instance.objectNode().put("subscription", topic));
-        send(Channel.IOPUB, new Envelope(Route.topic(topic), welcome));
+        List<byte[]> frames = codec.encode(new Envelope(Route.topic(topic), welcome));
+        loop(Channel.IOPUB).send(peer, Zmtp.message(frames));
     }
 }

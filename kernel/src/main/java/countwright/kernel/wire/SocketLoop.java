@@ -16,7 +16,7 @@ import org.zeromq.ZMQ;
 import org.zeromq.ZMQException;
 
 /**
- * Owns one socket: the only thread that touches it.
+ * Owns one of a front end's sockets: the only thread that touches it.
  *
  * <p>A ZeroMQ socket belongs to one thread, while messages to send come from many. They are put into a queue, and a byte
  * in a pipe wakes the owner, which waits on socket and pipe at once; so nothing is polled for and a message leaves some
@@ -37,12 +37,9 @@ final class SocketLoop {
     private final Consumer<List<byte[]>> receiver;
     private final Pipe pipe;
     private final Thread thread;
-    private final Queue<Outgoing> outgoing = new ConcurrentLinkedQueue<>();
-    private final Queue<Runnable> whenAllIsRead = new ConcurrentLinkedQueue<>();
+    private final Queue<List<byte[]>> outgoing = new ConcurrentLinkedQueue<>();
     private final AtomicBoolean awake = new AtomicBoolean();
     private volatile boolean closing;
-
-    private record Outgoing(List<byte[]> frames, Runnable undeliverable) {}
 
     /** Takes over a socket that is bound or connected; call {@link #start} next. */
     SocketLoop(
@@ -68,18 +65,7 @@ final class SocketLoop {
     }
 
     void send(List<byte[]> frames) {
-        send(frames, () -> {});
-    }
-
-    /** Sends frames; on a router that insists on delivery, a peer that is not there is reported. */
-    void send(List<byte[]> frames, Runnable undeliverable) {
-        outgoing.add(new Outgoing(frames, undeliverable));
-        wake();
-    }
-
-    /** Runs an action on the owner's thread once everything that has arrived by then has been handed on. */
-    void whenAllIsRead(Runnable action) {
-        whenAllIsRead.add(action);
+        outgoing.add(frames);
         wake();
     }
 
@@ -124,7 +110,6 @@ final class SocketLoop {
                 sendQueued();
                 boolean receivedOne = receiveOne();
                 if (!receivedOne) {
-                    runWaiting();
                     poller.poll(-1);
                     if (poller.pollin(wakeups)) {
                         sink.clear();
@@ -153,33 +138,23 @@ final class SocketLoop {
     }
 
     private void sendQueued() {
-        for (Outgoing next = outgoing.poll(); next != null; next = outgoing.poll()) {
-            if (!sendNow(next.frames())) {
-                runSafely(next.undeliverable());
-            }
+        for (List<byte[]> next = outgoing.poll(); next != null; next = outgoing.poll()) {
+            sendNow(next);
         }
     }
 
-    private boolean sendNow(List<byte[]> frames) {
+    private void sendNow(List<byte[]> frames) {
         try {
             for (int i = 0; i < frames.size(); i++) {
                 if (!socket.send(frames.get(i), i + 1 < frames.size() ? ZMQ.SNDMORE : 0)) {
-                    return false;
+                    return;
                 }
             }
-            return true;
         } catch (ZMQException e) {
             if (e.getErrorCode() == ZMQ.Error.ETERM.getCode()) {
                 throw e;
             }
             LOG.log(Level.DEBUG, () -> "A message on " + name + " could not be sent (" + e.getErrorCode() + ").");
-            return false;
-        }
-    }
-
-    private void runWaiting() {
-        for (Runnable next = whenAllIsRead.poll(); next != null; next = whenAllIsRead.poll()) {
-            runSafely(next);
         }
     }
 

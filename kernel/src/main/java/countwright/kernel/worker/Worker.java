@@ -64,6 +64,8 @@ public final class Worker implements AutoCloseable {
     public static Worker start(WorkerSettings settings, WorkerListener listener) throws IOException {
         Debugger debugger = Debugger.listen();
         try (ServerSocket server = new ServerSocket(0, 1, InetAddress.getLoopbackAddress())) {
+            // What is on its way stands before the reply to an interrupt; the system would let megabytes be there.
+            server.setReceiveBufferSize(WorkerMain.STREAM_BUFFER);
             Process process = spawn(settings, debugger);
             if (!settings.recordsClasses()) {
                 debugger.attachBehind();

@@ -42,6 +42,24 @@ class ConnectionFileTest {
     }
 
     @Test
+    void read_fileThatOthersCanRead_warnsWithoutTheKey() throws IOException {
+        Path file = folder.resolve("open.json");
+        ConnectionFile created = ConnectionFile.create("countwright");
+        created.write(file);
+        try (LogCapture log = new LogCapture()) {
+            ConnectionFile.read(file);
+            assertThat(log.lines()).isEmpty();
+            Files.setPosixFilePermissions(file, PosixFilePermissions.fromString("rw-r--r--"));
+            ConnectionFile.read(file);
+            assertThat(log.lines())
+                    .singleElement()
+                    .asString()
+                    .startsWith("WARNING Other users can read or change the connection file " + file)
+                    .doesNotContain(created.key());
+        }
+    }
+
+    @Test
     void parse_validText_readsAllFields() {
         ConnectionFile file = ConnectionFile.parse(VALID, "f.json");
         assertThat(file.address(Channel.HEARTBEAT)).isEqualTo("tcp://127.0.0.1:1005");
@@ -65,7 +83,8 @@ class ConnectionFileTest {
                 "1005 | 0 | 'hb_port' = 0, which is no port from 1 to 65535",
                 "1005 | 65536 | 'hb_port' = 65536",
                 "1005 | \"x\" | 'hb_port' = \"x\"",
-                "\"tcp\" | \"ipc\" | transport 'ipc', but only 'tcp' works here",
+                "\"tcp\" | \"udp\" | transport 'udp', but only 'tcp' and 'ipc' work here",
+                "127.0.0.1\",\"key\":\"k\",\"transport\":\"tcp | \",\"key\":\"k\",\"transport\":\"ipc | has no path in 'ip'",
                 "hmac-sha256 | hmac-md5 | signature_scheme 'hmac-md5', but only 'hmac-sha256'",
                 "\"k\" | 17 | has no text in 'key'",
                 "{ | [ | is not JSON",

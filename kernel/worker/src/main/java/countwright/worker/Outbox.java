@@ -18,9 +18,14 @@ import org.jspecify.annotations.Nullable;
  */
 final class Outbox {
 
-    private static final int MOST_PENDING = 4 << 20;
+    private static final int MOST_PENDING = 1 << 20;
     private static final int MOST_FRAMES = 200;
-    private static final int LARGEST_PIECE = 1 << 20;
+    private static final int LARGEST_PIECE = 512 << 10;
+
+    /** Output that follows output is gathered for so long, or until it is so much, unless something else stands behind it. */
+    private static final long GATHER_NANOS = 25_000_000;
+
+    private static final int GATHERED_BYTES = 256 << 10;
 
     private final Object lock = new Object();
     private final FrameStream stream;
@@ -29,6 +34,8 @@ final class Outbox {
     private Frame.@Nullable Channel outputChannel;
     private long outputMessage = CommThread.NONE;
     private boolean writing;
+    private int draining;
+    private long gatheredUntil = System.nanoTime();
 
     Outbox(FrameStream stream) {
         this.stream = stream;
@@ -74,7 +81,8 @@ final class Outbox {
         int before = CellThread.guard();
         try {
             synchronized (lock) {
-                if (frames.isEmpty() && output.size() == 0) {
+                int size = output.size();
+                if (frames.isEmpty() && (size == 0 || (size < GATHERED_BYTES && size + length >= GATHERED_BYTES))) {
                     // Only then can the writer be waiting for something to write; a flood should not wake it each time.
                     lock.notifyAll();
                 }
@@ -95,12 +103,18 @@ final class Outbox {
     void drain(long millis) throws InterruptedException {
         long deadline = System.nanoTime() + millis * 1_000_000;
         synchronized (lock) {
-            while (writing || !frames.isEmpty() || output.size() > 0) {
-                long left = (deadline - System.nanoTime()) / 1_000_000;
-                if (left <= 0) {
-                    return;
+            draining++;
+            lock.notifyAll();
+            try {
+                while (writing || !frames.isEmpty() || output.size() > 0) {
+                    long left = (deadline - System.nanoTime()) / 1_000_000;
+                    if (left <= 0) {
+                        return;
+                    }
+                    lock.wait(left);
                 }
-                lock.wait(left);
+            } finally {
+                draining--;
             }
         }
     }
@@ -164,18 +178,30 @@ final class Outbox {
     private List<Frame> takeAll() {
         synchronized (lock) {
             while (frames.isEmpty() && output.size() == 0) {
-                try {
-                    lock.wait();
-                } catch (InterruptedException byUserCode) {
-                    // A cell may interrupt every thread it finds; this one has no reason to end.
-                }
+                waitUninterrupted(0);
             }
+            long left = (gatheredUntil - System.nanoTime()) / 1_000_000;
+            while (left > 0 && draining == 0 && frames.isEmpty() && output.size() < GATHERED_BYTES) {
+                waitUninterrupted(left);
+                left = (gatheredUntil - System.nanoTime()) / 1_000_000;
+            }
+            gatheredUntil = System.nanoTime() + GATHER_NANOS;
             closeOutput();
             List<Frame> taken = new ArrayList<>(frames);
             frames.clear();
             writing = true;
             lock.notifyAll();
             return taken;
+        }
+    }
+
+    /** A cell may interrupt every thread it finds; the writer has no reason to end. */
+    @SuppressWarnings("WaitNotInLoop") // Both callers wait in one.
+    private void waitUninterrupted(long millis) {
+        try {
+            lock.wait(millis);
+        } catch (InterruptedException byUserCode) {
+            return;
         }
     }
 }

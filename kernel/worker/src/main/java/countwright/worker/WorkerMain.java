@@ -19,6 +19,9 @@ public final class WorkerMain {
     /** Exit status when memory is so full that this process cannot even talk to the kernel. */
     public static final int OUT_OF_MEMORY = 87;
 
+    /** Bytes of either end's buffer of the stream between worker and kernel. */
+    public static final int STREAM_BUFFER = 256 << 10;
+
     /** Exit status when the kernel has gone. */
     public static final int LOST_KERNEL = 86;
 
@@ -40,6 +43,7 @@ public final class WorkerMain {
         try (Socket socket = new Socket(InetAddress.getLoopbackAddress(), port)) {
             // Without this the two sides wait for each other's delayed acknowledgements, some 190 ms a snippet.
             socket.setTcpNoDelay(true);
+            socket.setSendBufferSize(STREAM_BUFFER);
             serve(new FrameStream(socket.getInputStream(), socket.getOutputStream()), token);
         } finally {
             exit();
