@@ -11,6 +11,7 @@ import java.time.Duration;
 import java.util.Map;
 import java.util.Optional;
 import java.util.concurrent.CompletableFuture;
+import java.util.concurrent.CompletionException;
 import java.util.concurrent.locks.ReentrantLock;
 import java.util.function.Supplier;
 import jdk.jshell.JShell;
@@ -27,10 +28,11 @@ import jdk.jshell.spi.ExecutionEnv;
 final class JavaSession {
 
     private final CompletableFuture<Worker> worker = new CompletableFuture<>();
-    private final ReentrantLock compilerLock = new ReentrantLock();
+    private final ReentrantLock compilerLock = new ReentrantLock(true);
     private final CellMap cells = new CellMap();
     private final CellEvents events = new CellEvents(cells);
     private final WorkerExecution execution = new WorkerExecution(worker, compilerLock);
+    private final CompletableFuture<Void> imports = new CompletableFuture<>();
     private final JShell shell;
     private final SnippetLedger ledger;
     private final CodeAssistant assistant;
@@ -49,20 +51,25 @@ final class JavaSession {
         var unused = worker.thenCompose(Worker::loss).whenComplete((how, failure) -> events.lose());
     }
 
-    /** Starts the worker and warms the compiler at the same time; returns when the first cell can run. */
+    /** Starts the worker, and the compiler at the same time; returns when the worker is there. */
     static JavaSession start(WorkerSettings settings) {
         JavaSession session = new JavaSession(settings);
-        Thread starter = new Thread(() -> session.startWorker(settings), "start worker");
-        starter.setDaemon(true);
-        starter.start();
+        runBehind("start worker", () -> session.startWorker(settings));
+        runBehind("warm compiler", session::warmUp);
         try {
-            session.warmUp();
-        } catch (RuntimeException | Error e) {
-            // Else the worker would stay, and another with every try.
+            var unused = session.worker.join();
+            return session;
+        } catch (CompletionException e) {
             session.close(Duration.ZERO);
-            throw e;
+            throw new IllegalStateException(
+                    String.valueOf(Optional.ofNullable(e.getCause()).orElse(e).getMessage()), e);
         }
-        return session;
+    }
+
+    private static void runBehind(String name, Runnable action) {
+        Thread thread = new Thread(action, name);
+        thread.setDaemon(true);
+        thread.start();
     }
 
     private void startWorker(WorkerSettings settings) {
@@ -79,20 +86,40 @@ final class JavaSession {
         }
     }
 
+    /** Evaluates the imports one by one, so that a cell that names nothing gets its turn in between. */
     private void warmUp() {
-        holdingCompiler(() -> {
+        try {
             for (String declaration : SessionImports.read()) {
-                for (SnippetEvent event : shell.eval(declaration)) {
-                    if (event.status() == Snippet.Status.REJECTED) {
-                        throw new IllegalStateException("a session import does not compile: " + declaration);
+                holdingCompiler(() -> {
+                    for (SnippetEvent event : shell.eval(declaration)) {
+                        if (event.status() == Snippet.Status.REJECTED) {
+                            throw new IllegalStateException("a session import does not compile: " + declaration);
+                        }
                     }
-                }
+                    return true;
+                });
             }
-            // The first evaluation is ten times slower than the next, in the compiler as in the worker.
-            execution.prepare(Frame.Want.BUNDLE);
-            shell.eval("1 + 1").forEach(event -> ledger.forget(event.snippet()));
-            return true;
-        });
+            imports.complete(null);
+            holdingCompiler(() -> {
+                if (!used) {
+                    // The first evaluation is ten times slower than the next, in the compiler as in the worker.
+                    execution.prepare(Frame.Want.BUNDLE);
+                    shell.eval(ShownValue.statement("1 + 1").orElseThrow())
+                            .forEach(event -> ledger.forget(event.snippet()));
+                }
+                return true;
+            });
+        } catch (RuntimeException | Error e) {
+            // With the worker gone the session is replaced anyway; otherwise each cell tells of it.
+            imports.completeExceptionally(e);
+        }
+    }
+
+    /** Waits for the imports where they can matter: a cell without a name in it runs without. */
+    private void awaitImports(String code) {
+        if (code.codePoints().anyMatch(Character::isJavaIdentifierStart)) {
+            imports.join();
+        }
     }
 
     /** Returns how the worker was lost, if it was. */
@@ -130,6 +157,7 @@ final class JavaSession {
     CellOutcome run(CellText cell, CellListener listener, SucceededCells lost, Supplier<Boolean> stopRequested) {
         used = true;
         restored = false;
+        awaitImports(cell.code());
         events.listenWith(listener);
         execution.askBeforeRunning(stopRequested);
         Optional<Worker> runner = startedWorker();
@@ -194,10 +222,12 @@ final class JavaSession {
     }
 
     Completions complete(String code, int cursor) {
+        awaitImports(code);
         return holdingCompiler(() -> assistant.complete(code, cursor));
     }
 
     MimeBundle inspect(String code, int cursor, CellEngine.Detail detail) {
+        awaitImports(code);
         return holdingCompiler(() -> assistant.inspect(code, cursor, detail));
     }
 

@@ -65,7 +65,7 @@ final class SessionReserve implements AutoCloseable {
     }
 
     private synchronized void refill() {
-        if (closed || reserve.isPresent()) {
+        if (closed || reserve.isPresent() || settings.recordsClasses()) {
             return;
         }
         CompletableFuture<JavaSession> starting = start();

@@ -32,7 +32,7 @@ final class ConnectCommand implements Callable<Integer> {
     }
 
     /** Serves until a front end asks for shutdown. This is the one place where the parts of the kernel meet. */
-    private static int serve(Path connectionFile) {
+    static int serve(Path connectionFile) {
         KernelServer server;
         try {
             server = KernelServer.start(

@@ -6,6 +6,7 @@ import java.io.PrintStream;
 import java.io.PrintWriter;
 import java.nio.charset.Charset;
 import java.nio.charset.StandardCharsets;
+import java.nio.file.Path;
 import org.jspecify.annotations.Nullable;
 import picocli.CommandLine;
 import picocli.CommandLine.Command;
@@ -67,10 +68,18 @@ public final class Main implements Runnable {
 
     /** Runs a command and returns its exit code. */
     static int execute(PrintWriter out, PrintWriter err, String... arguments) {
+        if (arguments.length == 2 && arguments[0].equals("connect") && !arguments[1].startsWith("-")) {
+            // A front end waits for this one, and to set up the command line takes as long as to start the kernel.
+            try {
+                return ConnectCommand.serve(Path.of(arguments[1]));
+            } catch (RuntimeException e) {
+                return explain(e, err);
+            }
+        }
         return new CommandLine(new Main())
                 .setOut(out)
                 .setErr(err)
-                .setExecutionExceptionHandler(Main::explain)
+                .setExecutionExceptionHandler((failure, command, parsed) -> explain(failure, command.getErr()))
                 .execute(arguments);
     }
 
@@ -82,12 +91,12 @@ public final class Main implements Runnable {
         throw new ParameterException(spec.commandLine(), "Which command? Name one of those below.");
     }
 
-    private static int explain(Exception failure, CommandLine command, CommandLine.ParseResult parsed) {
+    private static int explain(Exception failure, PrintWriter err) {
         if (failure instanceof DeskException) {
-            command.getErr().println("countwright: " + failure.getMessage());
+            err.println("countwright: " + failure.getMessage());
         } else {
-            command.getErr().println("countwright: this is a fault of the program itself. Please report what follows.");
-            failure.printStackTrace(command.getErr());
+            err.println("countwright: this is a fault of the program itself. Please report what follows.");
+            failure.printStackTrace(err);
         }
         return COULD_NOT_RUN;
     }

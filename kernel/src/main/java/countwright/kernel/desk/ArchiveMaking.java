@@ -11,12 +11,14 @@ import java.time.Duration;
 import java.util.Comparator;
 import java.util.List;
 import java.util.Map;
+import java.util.concurrent.ExecutionException;
 import java.util.concurrent.TimeUnit;
+import java.util.concurrent.TimeoutException;
 import java.util.stream.Stream;
 
 /**
  * Makes the class-data archives: runs a kernel through what most sessions do, then has both JVMs write down the classes they
- * have loaded.
+ * have loaded when they end.
  */
 public final class ArchiveMaking {
 
@@ -76,49 +78,40 @@ public final class ArchiveMaking {
         ConnectionFile connection = ConnectionFile.create("countwright");
         Path file = scratch.resolve("connection.json");
         connection.write(file);
-        Map<String, String> environment = Map.of(WorkerSettings.OPTIONS_VARIABLE, ClassArchives.RECORD);
-        KernelCommand recording = KernelCommand.ofRunningJava().withJvmOption(ClassArchives.RECORD);
-        try (KernelProcess kernel = KernelProcess.start(recording, file, scratch, environment);
-                KernelClient client = new KernelClient(connection, kernel)) {
-            var unused = client.ready(START_LIMIT);
-            for (String cell : CELLS) {
-                client.execute(cell);
+        Path ofKernel = scratch.resolve("kernel.jsa");
+        Path ofWorker = scratch.resolve("worker.jsa");
+        KernelCommand recording = KernelCommand.ofRunningJava().withJvmOption(ClassArchives.RECORD + ofKernel);
+        Map<String, String> environment =
+                Map.of(WorkerSettings.OPTIONS_VARIABLE, ClassArchives.RECORD + ofWorker + " -Xlog:disable");
+        try (KernelProcess kernel = KernelProcess.start(recording, file, scratch, environment)) {
+            List<ProcessHandle> workers;
+            try (KernelClient client = new KernelClient(connection, kernel)) {
+                var unused = client.ready(START_LIMIT);
+                for (String cell : CELLS) {
+                    client.execute(cell);
+                }
+                workers = kernel.children().toList();
+                client.shutDown(DUMP_LIMIT);
             }
-            long worker = kernel.children()
-                    .findFirst()
-                    .orElseThrow(() -> new IOException("the kernel has no worker"))
-                    .pid();
-            Files.createDirectories(archives.folder());
-            dump(worker, scratch.resolve("worker.jsa"), archives.ofWorker());
-            dump(kernel.processId(), scratch.resolve("kernel.jsa"), archives.ofKernel());
-            client.shutDown(Duration.ofSeconds(3));
-        } catch (KernelLostException e) {
-            throw new IOException("the kernel ended: " + e.getMessage(), e);
-        }
-    }
-
-    /** Written elsewhere and moved, so that a kernel that starts meanwhile never sees half an archive. */
-    private static void dump(long processId, Path written, Path place) throws IOException {
-        Path jcmd = Path.of(System.getProperty("java.home"), "bin", "jcmd");
-        Path said = written.resolveSibling(written.getFileName() + ".txt");
-        Process process = new ProcessBuilder(
-                        jcmd.toString(), Long.toString(processId), "VM.cds", "dynamic_dump", written.toString())
-                .redirectErrorStream(true)
-                .redirectOutput(said.toFile())
-                .start();
-        try {
-            if (!process.waitFor(DUMP_LIMIT.toMillis(), TimeUnit.MILLISECONDS)) {
-                process.destroyForcibly();
-                throw new IOException("the JVM did not write its classes within " + HtmlReport.seconds(DUMP_LIMIT));
+            for (ProcessHandle worker : workers) {
+                worker.onExit().get(DUMP_LIMIT.toSeconds(), TimeUnit.SECONDS);
             }
+            if (!Files.isRegularFile(ofKernel) || !Files.isRegularFile(ofWorker)) {
+                throw new IOException("the JVM wrote no archive. " + kernel.lastWords());
+            }
+        } catch (KernelLostException | ExecutionException | TimeoutException e) {
+            throw new IOException("the kernel did not end as it should: " + e.getMessage(), e);
         } catch (InterruptedException e) {
             Thread.currentThread().interrupt();
             throw new IOException("interrupted", e);
         }
-        if (!Files.isRegularFile(written)) {
-            throw new IOException("the JVM wrote no archive; it said: "
-                    + Files.readString(said).strip());
-        }
+        Files.createDirectories(archives.folder());
+        put(ofKernel, archives.ofKernel());
+        put(ofWorker, archives.ofWorker());
+    }
+
+    /** Written elsewhere and moved, so that a kernel that starts meanwhile never sees half an archive. */
+    private static void put(Path written, Path place) throws IOException {
         Path near = place.resolveSibling(place.getFileName() + ".new");
         Files.copy(written, near, StandardCopyOption.REPLACE_EXISTING);
         Files.move(near, place, StandardCopyOption.ATOMIC_MOVE, StandardCopyOption.REPLACE_EXISTING);

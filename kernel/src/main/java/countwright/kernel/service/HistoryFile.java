@@ -1,5 +1,6 @@
 package countwright.kernel.service;
 
+import countwright.kernel.wire.JsonText;
 import java.io.IOException;
 import java.nio.ByteBuffer;
 import java.nio.channels.FileChannel;
@@ -21,7 +22,6 @@ import java.util.Set;
 import java.util.concurrent.TimeUnit;
 import tools.jackson.core.JacksonException;
 import tools.jackson.databind.JsonNode;
-import tools.jackson.databind.json.JsonMapper;
 import tools.jackson.databind.node.ObjectNode;
 
 /**
@@ -36,7 +36,6 @@ final class HistoryFile {
     private static final long LARGEST_BYTES = 8L << 20;
     private static final long LOCK_MILLIS = 2_000;
     private static final long LOCK_RETRY_MILLIS = 10;
-    private static final JsonMapper MAPPER = JsonMapper.shared();
 
     /** The system's lock is for processes; kernels in one process, as in tests, need this one as well. */
     private static final Object IN_THIS_PROCESS = new Object();
@@ -222,13 +221,13 @@ final class HistoryFile {
         json.put("line", entry.line());
         json.put("input", entry.input());
         entry.output().ifPresent(output -> json.put("output", output));
-        return MAPPER.writeValueAsString(json);
+        return JsonText.standard().write(json);
     }
 
     private static Optional<HistoryEntry> decode(String line) {
         JsonNode json;
         try {
-            json = MAPPER.readTree(line);
+            json = JsonText.standard().read(line);
         } catch (JacksonException cutShort) {
             return Optional.empty();
         }

@@ -1,19 +1,17 @@
 package countwright.kernel.service;
 
 import countwright.kernel.cell.CellOutcome;
+import countwright.kernel.wire.JsonText;
 import countwright.show.MimeBundle;
 import java.util.List;
 import tools.jackson.core.JacksonException;
 import tools.jackson.databind.JsonNode;
-import tools.jackson.databind.json.JsonMapper;
 import tools.jackson.databind.node.ArrayNode;
 import tools.jackson.databind.node.JsonNodeFactory;
 import tools.jackson.databind.node.ObjectNode;
 
 /** The pieces that replies and published messages are made of. */
 final class Replies {
-
-    private static final JsonMapper MAPPER = JsonMapper.shared();
 
     private Replies() {}
 
@@ -49,7 +47,7 @@ final class Replies {
     /** Puts data and metadata of a bundle. */
     static void putBundle(ObjectNode content, MimeBundle bundle) {
         putData(content, bundle);
-        content.set("metadata", MAPPER.valueToTree(bundle.metadata()));
+        content.set("metadata", JsonText.tree(bundle.metadata()));
     }
 
     static void putData(ObjectNode content, MimeBundle bundle) {
@@ -61,7 +59,7 @@ final class Replies {
     private static JsonNode form(String mediaType, String form) {
         if (mediaType.equals("application/json") || mediaType.endsWith("+json")) {
             try {
-                return MAPPER.readTree(form);
+                return JsonText.standard().read(form);
             } catch (JacksonException e) {
                 return JsonNodeFactory.instance.stringNode(form);
             }

@@ -53,7 +53,6 @@ public record ConnectionFile(
             PosixFilePermission.GROUP_WRITE,
             PosixFilePermission.OTHERS_READ,
             PosixFilePermission.OTHERS_WRITE);
-    private static final JsonMapper MAPPER = JsonMapper.shared();
 
     public ConnectionFile {
         ports = Map.copyOf(ports);
@@ -110,7 +109,7 @@ public record ConnectionFile(
     public static ConnectionFile parse(String text, String where) {
         JsonNode root;
         try {
-            root = MAPPER.readTree(text);
+            root = JsonText.standard().read(text);
         } catch (JacksonException e) {
             // The parser's own text could quote the key.
             throw new IllegalArgumentException("The connection file " + where + " is not JSON (line "
@@ -198,7 +197,7 @@ public record ConnectionFile(
         fields.put("signature_scheme", SCHEME);
         fields.put("key", key);
         fields.put("kernel_name", kernelName);
-        return MAPPER.writerWithDefaultPrettyPrinter().writeValueAsString(fields);
+        return JsonMapper.shared().writerWithDefaultPrettyPrinter().writeValueAsString(fields);
     }
 
     /** Returns the port of a channel. */

@@ -6,10 +6,7 @@ import java.util.Arrays;
 import java.util.List;
 import tools.jackson.core.JacksonException;
 import tools.jackson.core.StreamReadConstraints;
-import tools.jackson.core.json.JsonFactory;
-import tools.jackson.databind.DeserializationFeature;
 import tools.jackson.databind.JsonNode;
-import tools.jackson.databind.json.JsonMapper;
 import tools.jackson.databind.node.JsonNodeFactory;
 import tools.jackson.databind.node.ObjectNode;
 
@@ -28,7 +25,7 @@ final class MessageCodec {
 
     private final Signer signer;
     private final ReplayGuard replayGuard;
-    private final JsonMapper mapper;
+    private final JsonText json;
 
     MessageCodec(String key, WireLimits limits) {
         this.signer = new Signer(key);
@@ -38,10 +35,7 @@ final class MessageCodec {
                 .maxStringLength(limits.frameBytes())
                 .maxNumberLength(400)
                 .build();
-        this.mapper = JsonMapper.builder(
-                        JsonFactory.builder().streamReadConstraints(constraints).build())
-                .enable(DeserializationFeature.FAIL_ON_TRAILING_TOKENS)
-                .build();
+        this.json = new JsonText(constraints);
     }
 
     List<byte[]> encode(Envelope envelope) {
@@ -101,7 +95,7 @@ final class MessageCodec {
     private ObjectNode object(byte[] frame, String part) throws MalformedMessageException {
         JsonNode node;
         try {
-            node = mapper.readTree(frame);
+            node = json.read(frame);
         } catch (JacksonException e) {
             // The parser's own text quotes the input, so only the kind of trouble is told.
             throw new MalformedMessageException(
@@ -115,6 +109,6 @@ final class MessageCodec {
 
     /** Goes through a string because a lone surrogate, which any cell can print, must come out as '?', not fail. */
     private byte[] bytes(ObjectNode node) {
-        return mapper.writeValueAsString(node).getBytes(StandardCharsets.UTF_8);
+        return json.write(node).getBytes(StandardCharsets.UTF_8);
     }
 }

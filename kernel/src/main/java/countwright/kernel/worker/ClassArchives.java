@@ -18,8 +18,8 @@ public record ClassArchives(Path folder) {
     /** The system property by which the launcher names the folder. */
     public static final String FOLDER_PROPERTY = "countwright.archives";
 
-    /** The JVM option that prepares a JVM to write down its classes. */
-    public static final String RECORD = "-XX:+RecordDynamicDumpInfo";
+    /** The JVM option, to be followed by a file, that has a JVM write down its classes when it ends. */
+    public static final String RECORD = "-XX:ArchiveClassesAtExit=";
 
     /** Returns the archives of this installation; empty where the launcher named no place for them. */
     public static Optional<ClassArchives> ofInstallation() {

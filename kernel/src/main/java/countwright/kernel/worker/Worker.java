@@ -44,11 +44,18 @@ public final class Worker implements AutoCloseable {
     private final Interrupter interrupter;
     private final AtomicReference<@Nullable CompletableFuture<Frame.Reply>> waiting = new AtomicReference<>();
     private final CompletableFuture<String> loss = new CompletableFuture<>();
+    private final boolean recordsClasses;
     private volatile boolean leaving;
 
     private record Connection(Socket socket, FrameStream stream) {}
 
-    private Worker(Process process, Connection connection, Debugger debugger, WorkerListener listener) {
+    private Worker(
+            Process process,
+            Connection connection,
+            Debugger debugger,
+            WorkerListener listener,
+            WorkerSettings settings) {
+        this.recordsClasses = settings.recordsClasses();
         this.process = process;
         this.socket = connection.socket();
         this.stream = connection.stream();
@@ -76,7 +83,7 @@ public final class Worker implements AutoCloseable {
             try {
                 String token = newToken();
                 tell(process, server.getLocalPort() + " " + token + "\n");
-                Worker worker = new Worker(process, accept(server, token), debugger, listener);
+                Worker worker = new Worker(process, accept(server, token), debugger, listener, settings);
                 Thread reader = new Thread(worker::readForever, "from worker");
                 reader.setDaemon(true);
                 reader.start();
@@ -157,9 +164,13 @@ public final class Worker implements AutoCloseable {
         return loss.copy();
     }
 
-    /** Ends the worker within the given time. */
+    /** Ends the worker within the given time; one that writes down its classes is left to do so. */
     public void close(Duration patience) {
         leaving = true;
+        if (recordsClasses) {
+            send(new Frame.Leave());
+            return;
+        }
         interrupter.close();
         // By another thread, since a worker that does not read can hold up the sending.
         CompletableFuture.delayedExecutor(patience.toMillis(), TimeUnit.MILLISECONDS)
@@ -262,7 +273,9 @@ public final class Worker implements AutoCloseable {
     private static Process spawn(WorkerSettings settings, Debugger debugger) throws IOException {
         List<String> command = new ArrayList<>();
         command.add(ProcessHandle.current().info().command().orElse(javaOfThisJvm()));
-        if (!settings.recordsClasses()) {
+        if (settings.recordsClasses()) {
+            command.add("-D" + WorkerMain.RECORDS_CLASSES + "=true");
+        } else {
             command.add("-agentlib:jdwp=transport=dt_socket,server=n,suspend=n,address=" + debugger.address());
         }
         command.add("-Djava.awt.headless=true");

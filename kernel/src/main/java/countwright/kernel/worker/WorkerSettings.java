@@ -62,8 +62,8 @@ public record WorkerSettings(List<Path> classPath, List<String> jvmOptions, Map<
     }
 
     /** Tells whether the worker is to write down its classes, which no JVM does that has a debugger. */
-    boolean recordsClasses() {
-        return jvmOptions.contains(ClassArchives.RECORD);
+    public boolean recordsClasses() {
+        return jvmOptions.stream().anyMatch(option -> option.startsWith(ClassArchives.RECORD));
     }
 
     /** Returns the class path in the form the java command takes. */

@@ -60,6 +60,9 @@ public final class CellThread extends Thread {
     /** The connection that this thread waits for in native code, where no stop reaches it; written by the kernel. */
     static volatile @Nullable Object awaited;
 
+    private volatile boolean busy;
+    private volatile long lastEnd = System.nanoTime();
+
     private final BlockingQueue<Frame.Request> requests = new LinkedBlockingQueue<>();
     private final Outbox outbox;
     private final ClassKeeper classes = new ClassKeeper();
@@ -138,10 +141,17 @@ public final class CellThread extends Thread {
         }
     }
 
+    /** Tells whether no request has been under way for some time. */
+    boolean hasRested(long millis) {
+        return !busy && System.nanoTime() - lastEnd > millis * 1_000_000;
+    }
+
     private void serveNext() {
         Frame.Reply reply;
         try {
-            reply = answer(requests.take());
+            Frame.Request next = requests.take();
+            busy = true;
+            reply = answer(next);
         } catch (InterruptedException lateInterrupt) {
             return;
         } catch (OutOfMemoryError full) {
@@ -158,6 +168,8 @@ public final class CellThread extends Thread {
             reserve = NOTHING;
             outbox.put(reply);
         }
+        lastEnd = System.nanoTime();
+        busy = false;
     }
 
     private Frame.Reply answer(Frame.Request request) {

@@ -25,10 +25,13 @@ public final class WorkerMain {
     /** Exit status when the kernel has gone. */
     public static final int LOST_KERNEL = 86;
 
-    /** Long enough for a first cell to be under way: loading native parts must not compete with it. */
-    private static final long WARM_UP_DELAY_MILLIS = 700;
+    /** Loading native parts must not compete with the first cells, so it waits until none has run for so long. */
+    private static final long IDLE_MILLIS = 1_000;
 
     private static final long LAST_WORDS_MILLIS = 500;
+
+    /** The system property by which the kernel says that this JVM writes a class-data archive when it ends. */
+    public static final String RECORDS_CLASSES = "countwright.records.classes";
 
     private WorkerMain() {}
 
@@ -64,7 +67,7 @@ public final class WorkerMain {
         CommThread comms = new CommThread(outbox);
         comms.start();
         Runtime.getRuntime().addShutdownHook(new Thread(() -> sayLastWords(outbox), "last words"));
-        startWarmUp();
+        startWarmUp(cells);
         try {
             while (true) {
                 Frame frame = stream.read();
@@ -119,11 +122,13 @@ public final class WorkerMain {
         }
     }
 
-    private static void startWarmUp() {
+    private static void startWarmUp(CellThread cells) {
         Thread warming = new Thread(
                 () -> {
                     try {
-                        Thread.sleep(WARM_UP_DELAY_MILLIS);
+                        do {
+                            Thread.sleep(IDLE_MILLIS);
+                        } while (!cells.hasRested(IDLE_MILLIS));
                         ServiceLoader.load(WarmUp.class).forEach(WarmUp::warmUp);
                     } catch (InterruptedException | RuntimeException | Error e) {
                         // The real use comes later and reports better.
@@ -135,8 +140,11 @@ public final class WorkerMain {
         warming.start();
     }
 
-    /** Leaves even if user code blocks the orderly way. */
+    /** Leaves even if user code blocks the orderly way; a JVM that writes down its classes at exit is given the time. */
     private static void exit() {
+        if (Boolean.getBoolean(RECORDS_CLASSES)) {
+            System.exit(0);
+        }
         Thread last = new Thread(
                 () -> {
                     try {
