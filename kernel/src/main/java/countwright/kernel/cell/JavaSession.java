@@ -32,6 +32,9 @@ final class JavaSession {
     private final CellMap cells = new CellMap();
     private final CellEvents events = new CellEvents(cells);
     private final WorkerExecution execution = new WorkerExecution(worker, compilerLock);
+    /** Held from the first piece of a cell to its last, while the compiler lock comes and goes. */
+    private final ReentrantLock evaluating = new ReentrantLock();
+
     private final CompletableFuture<Void> imports = new CompletableFuture<>();
     private final JShell shell;
     private final SnippetLedger ledger;
@@ -100,18 +103,27 @@ final class JavaSession {
                 });
             }
             imports.complete(null);
-            holdingCompiler(() -> {
-                if (!used) {
-                    // The first evaluation is ten times slower than the next, in the compiler as in the worker.
-                    execution.prepare(Frame.Want.BUNDLE);
-                    shell.eval(ShownValue.statement("1 + 1").orElseThrow())
-                            .forEach(event -> ledger.forget(event.snippet()));
-                }
-                return true;
-            });
+            evaluateOnce();
         } catch (RuntimeException | Error e) {
             // With the worker gone the session is replaced anyway; otherwise each cell tells of it.
             imports.completeExceptionally(e);
+        }
+    }
+
+    /** The first evaluation is ten times slower than the next, in the compiler as in the worker. */
+    private void evaluateOnce() {
+        evaluating.lock();
+        try {
+            if (!used) {
+                holdingCompiler(() -> {
+                    execution.prepare(Frame.Want.BUNDLE);
+                    shell.eval(ShownValue.statement("1 + 1").orElseThrow())
+                            .forEach(event -> ledger.forget(event.snippet()));
+                    return true;
+                });
+            }
+        } finally {
+            evaluating.unlock();
         }
     }
 
@@ -156,8 +168,18 @@ final class JavaSession {
      */
     CellOutcome run(CellText cell, CellListener listener, SucceededCells lost, Supplier<Boolean> stopRequested) {
         used = true;
-        restored = false;
         awaitImports(cell.code());
+        evaluating.lock();
+        try {
+            return runInTurn(cell, listener, lost, stopRequested);
+        } finally {
+            evaluating.unlock();
+        }
+    }
+
+    private CellOutcome runInTurn(
+            CellText cell, CellListener listener, SucceededCells lost, Supplier<Boolean> stopRequested) {
+        restored = false;
         events.listenWith(listener);
         execution.askBeforeRunning(stopRequested);
         Optional<Worker> runner = startedWorker();

@@ -13,6 +13,7 @@ import com.sun.jdi.VirtualMachine;
 import countwright.worker.CellThread;
 import java.util.List;
 import java.util.Set;
+import java.util.concurrent.locks.LockSupport;
 import org.jspecify.annotations.Nullable;
 
 /**
@@ -34,6 +35,11 @@ final class CellStopper {
 
     /** How long the threads of a pool are stopped, share after share. */
     private static final long POOL_MILLIS = 400;
+
+    /** How long a pool must have had nothing to stop: between two shares a thread looks idle. */
+    private static final long QUIET_MILLIS = 40;
+
+    private static final long LOOK_AGAIN_MILLIS = 4;
 
     private static final String OUTBOX = "countwright.worker.Outbox";
     private static final String TASK = "java.util.concurrent.ForkJoinTask";
@@ -113,14 +119,22 @@ final class CellStopper {
         List<ThreadReference> pool = machine.allThreads().stream()
                 .filter(thread -> thread.name().startsWith(COMMON_POOL))
                 .toList();
-        long deadline = System.nanoTime() + POOL_MILLIS * 1_000_000;
-        boolean quiet = false;
-        while (!quiet && System.nanoTime() < deadline) {
-            quiet = true;
+        long start = System.nanoTime();
+        long lastSeen = start;
+        while (millisSince(lastSeen) < QUIET_MILLIS && millisSince(start) < POOL_MILLIS) {
+            boolean quiet = true;
             for (ThreadReference thread : pool) {
                 quiet &= stopWorkerOfPool(thread, stop);
             }
+            if (!quiet) {
+                lastSeen = System.nanoTime();
+            }
+            LockSupport.parkNanos(LOOK_AGAIN_MILLIS * 1_000_000);
         }
+    }
+
+    private static long millisSince(long nanoTime) {
+        return (System.nanoTime() - nanoTime) / 1_000_000;
     }
 
     /** Returns whether nothing is left to stop. */
