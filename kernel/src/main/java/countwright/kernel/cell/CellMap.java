@@ -1,5 +1,7 @@
 package countwright.kernel.cell;
 
+import java.util.Iterator;
+import java.util.LinkedHashMap;
 import java.util.Map;
 import java.util.Optional;
 import java.util.concurrent.ConcurrentHashMap;
@@ -22,10 +24,17 @@ final class CellMap {
     /** A cell and what is to be added to a line of a compiled source to get the line of the cell. */
     private record Remainder(CellText cell, int shift) {}
 
+    private static final long MOST_CHARACTERS = 8 << 20;
+    private static final long ENTRY_CHARACTERS = 200;
+
     private static final Pattern COMPILED = Pattern.compile("REPL\\.\\$JShell\\$\\w+");
 
     private final Map<String, Origin> origins = new ConcurrentHashMap<>();
-    private final Map<String, Remainder> remainders = new ConcurrentHashMap<>();
+
+    /** The oldest go first; a late trace then lacks its line. */
+    private final Map<String, Remainder> remainders = new LinkedHashMap<>();
+
+    private long remainingCharacters;
 
     void remember(Snippet snippet, CellText cell, int start) {
         origins.put(snippet.id(), new Origin(cell, cell.placeOf(start).line()));
@@ -44,8 +53,36 @@ final class CellMap {
             for (int i = 0; i < Math.min(start, compiled.length()); i++) {
                 firstCompiled += compiled.charAt(i) == '\n' ? 1 : 0;
             }
-            remainders.put(wrapper.fullClassName(), new Remainder(origin.cell(), origin.firstLine() - firstCompiled));
+            keep(wrapper.fullClassName(), new Remainder(origin.cell(), origin.firstLine() - firstCompiled));
         }
+    }
+
+    /** Forgets a snippet that has left nothing behind. */
+    void forget(Snippet snippet) {
+        origins.remove(snippet.id());
+    }
+
+    private void keep(String className, Remainder remainder) {
+        synchronized (remainders) {
+            remainders.put(className, remainder);
+            remainingCharacters += size(remainder);
+            Iterator<Remainder> oldest = remainders.values().iterator();
+            while (remainingCharacters > MOST_CHARACTERS && oldest.hasNext()) {
+                remainingCharacters -= size(oldest.next());
+                oldest.remove();
+            }
+        }
+    }
+
+    private Optional<Remainder> remainder(String className) {
+        synchronized (remainders) {
+            return Optional.ofNullable(remainders.get(className));
+        }
+    }
+
+    /** The text counts for each piece of its cell: more than it takes, never less. */
+    private static long size(Remainder remainder) {
+        return ENTRY_CHARACTERS + remainder.cell().code().length();
     }
 
     /** Returns the cell that a snippet came from. */
@@ -80,7 +117,7 @@ final class CellMap {
     private Optional<Location> locateForgotten(StackTraceElement frame) {
         Matcher compiled = COMPILED.matcher(frame.getClassName());
         return compiled.lookingAt()
-                ? Optional.ofNullable(remainders.get(compiled.group()))
+                ? remainder(compiled.group())
                         .map(left -> new Location(left.cell(), Math.max(1, frame.getLineNumber() + left.shift())))
                 : Optional.empty();
     }

@@ -120,7 +120,7 @@ final class CellRun {
         ledger.hideUnnamed(statement);
         List<SnippetEvent> events = shell.eval(statement);
         if (isRejected(events)) {
-            events.forEach(event -> ledger.forget(event.snippet()));
+            forgetRejected(events);
             ledger.showAll();
             return Optional.empty();
         }
@@ -133,11 +133,16 @@ final class CellRun {
         List<SnippetEvent> events = shell.eval(piece.source());
         if (hidden && isRejected(events)) {
             // Perhaps for lack of what was hidden; if not, the report should know of everything.
-            events.forEach(event -> ledger.forget(event.snippet()));
+            forgetRejected(events);
             ledger.showAll();
             events = shell.eval(piece.source());
         }
         return outcomeOf(events, piece);
+    }
+
+    /** Other declarations that were touched are none of ours. */
+    private void forgetRejected(List<SnippetEvent> events) {
+        events.stream().filter(event -> event.causeSnippet() == null).forEach(event -> ledger.forget(event.snippet()));
     }
 
     /** Tells whether nothing has been declared or run. */
@@ -149,6 +154,7 @@ final class CellRun {
 
     private CellOutcome outcomeOf(List<SnippetEvent> events, Piece piece) {
         execution.loadPending();
+        ledger.hasRun(piece.source());
         if (execution.loss().isPresent()) {
             return lost(execution.loss().get());
         }
@@ -187,6 +193,10 @@ final class CellRun {
             }
             case RECOVERABLE_NOT_DEFINED -> {
                 if (!(snippet instanceof DeclarationSnippet declaration) || !waitsForThisCell(declaration)) {
+                    if (snippet instanceof VarSnippet variable && event.previousStatus() == Snippet.Status.VALID) {
+                        tell("Note: '" + variable.name()
+                                + "' is gone, because its new declaration does not compile. Declare it again.");
+                    }
                     return rejected(snippet, piece);
                 }
                 waiting.add(new Waiting(declaration, piece));
@@ -209,6 +219,7 @@ final class CellRun {
 
     private CellOutcome.Failure rejected(Snippet snippet, Piece piece) {
         CellOutcome.Failure failure = compileReport.of(snippet, piece, cell);
+        cells.forget(snippet);
         ledger.forget(snippet);
         return failure;
     }
@@ -278,7 +289,9 @@ final class CellRun {
                 ledger.className(snippet).ifPresent(owner -> execution.release(owner, variable.name()));
             }
             ledger.forget(snippet);
-        } else if (snippet instanceof VarSnippet variable && event.status() == Snippet.Status.OVERWRITTEN) {
+        } else if (snippet instanceof VarSnippet variable
+                && event.status() == Snippet.Status.OVERWRITTEN
+                && !ledger.mayBeNamed(variable.name())) {
             // Declared anew in the very same words, a variable keeps its class.
             Optional<String> successor =
                     Optional.ofNullable(event.causeSnippet()).flatMap(ledger::className);

@@ -18,6 +18,9 @@ import jdk.jshell.Snippet;
 /** Tells of code that does not compile: the line as written, a caret under the place, what is wrong, what to do. */
 final class CompileReport {
 
+    /** The name of a failure to compile. */
+    static final String NAME = "CompileError";
+
     private static final Pattern SYMBOL = Pattern.compile("symbol:\\s+(\\w+)\\s+([^\\s(<]+)");
     private static final Pattern LOCATION = Pattern.compile("location:\\s+(.+)");
 
@@ -51,7 +54,7 @@ final class CompileReport {
             lines.add(header(cell, place));
             lines.add(first);
         }
-        return new CellOutcome.Failure("CompileError", first.lines().findFirst().orElse(first), lines);
+        return new CellOutcome.Failure(NAME, first.lines().findFirst().orElse(first), lines);
     }
 
     /** Says, after the name of a declaration, why it cannot be used as things are; a sentence without its subject. */

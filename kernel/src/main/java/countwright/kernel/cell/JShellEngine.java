@@ -103,6 +103,12 @@ public final class JShellEngine implements CellEngine {
                 succeeded.sessionLost();
                 return withOffer(failure);
             }
+            if (outcome instanceof CellOutcome.Failure failure
+                    && failure.name().equals(CompileReport.NAME)
+                    && !runner.hasRestored()) {
+                // A name that is not known is most likely one that went with the worker.
+                return withOffer(failure);
+            }
             if (outcome instanceof CellOutcome.Success && remembering == Remembering.YES && !runner.hasRestored()) {
                 succeeded.add(cell);
             }

@@ -168,12 +168,20 @@ final class JavaSession {
      */
     CellOutcome run(CellText cell, CellListener listener, SucceededCells lost, Supplier<Boolean> stopRequested) {
         used = true;
-        awaitImports(cell.code());
-        evaluating.lock();
+        // Before anything is waited for, so that an interrupt finds something to stop: a worker that hangs can be ended
+        // then.
+        Optional<Worker> runner = startedWorker();
+        runner.ifPresent(started -> started.cellStarted(lost.lostCount()));
         try {
-            return runInTurn(cell, listener, lost, stopRequested);
+            awaitImports(cell.code());
+            evaluating.lock();
+            try {
+                return runInTurn(cell, listener, lost, stopRequested);
+            } finally {
+                evaluating.unlock();
+            }
         } finally {
-            evaluating.unlock();
+            runner.ifPresent(Worker::cellEnded);
         }
     }
 
@@ -182,8 +190,6 @@ final class JavaSession {
         restored = false;
         events.listenWith(listener);
         execution.askBeforeRunning(stopRequested);
-        Optional<Worker> runner = startedWorker();
-        runner.ifPresent(started -> started.cellStarted(lost.lostCount()));
         RestoreRun restore = new RestoreRun(
                 lost, listener, stopRequested, (again, quiet) -> runAgain(again, quiet, listener, stopRequested));
         Supplier<Optional<CellOutcome.Failure>> restoreIfAsked = () -> {
@@ -193,12 +199,8 @@ final class JavaSession {
             restored = true;
             return restore.run();
         };
-        try {
-            return holdingCompiler(() ->
-                    new CellRun(shell, ledger, execution, cells, cell, listener, stopRequested, restoreIfAsked).run());
-        } finally {
-            runner.ifPresent(Worker::cellEnded);
-        }
+        return holdingCompiler(() ->
+                new CellRun(shell, ledger, execution, cells, cell, listener, stopRequested, restoreIfAsked).run());
     }
 
     /** Runs a lost cell again in the turn of another, which asked for it and is between two of its pieces. */

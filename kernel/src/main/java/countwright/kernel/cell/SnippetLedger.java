@@ -26,7 +26,8 @@ import jdk.jshell.VarSnippet;
  * <p>JShell forgets nothing: the classes of all snippets ever run, dropped ones too, are read again by the compiler several
  * times for each new snippet, and every living variable is imported into it. After a thousand cells a cell takes twice its
  * time, among a thousand variables five times. Nothing of that is needed, so this class strikes out what has gone, and hides
- * from the compiler, for one snippet, the variables that the snippet does not name.
+ * from the compiler, for one snippet, the variables that the snippet does not name. That also keeps their values: a variable
+ * declared with {@code var} would be emptied when one that its initialiser names is declared anew.
  *
  * <p>The books are private to JShell. They can be reached only where its package is opened to the kernel by
  * {@value #OPENED}; otherwise everything works as well, but gets slower with time. The caller holds the compiler lock.
@@ -38,9 +39,6 @@ final class SnippetLedger {
 
     private static final Logger LOG = System.getLogger(SnippetLedger.class.getName());
 
-    /** With fewer names than this the compiler has read them sooner than they are hidden. */
-    private static final int NAMES_WORTH_HIDING = 40;
-
     private static final Pattern IDENTIFIER =
             Pattern.compile("[\\p{javaJavaIdentifierStart}][\\p{javaJavaIdentifierPart}]*");
 
@@ -50,6 +48,10 @@ final class SnippetLedger {
     private final JShell shell;
     private final SourceCodeAnalysis analysis;
     private final Optional<Books> books;
+    /** What a piece with one of these in it may leave behind names its variables for as long as it lives. */
+    private static final Pattern LEAVES_CODE = Pattern.compile("->|::|\\bclass\\b|\\bnew\\b[^;{}]*\\)\\s*\\{");
+
+    private final Set<String> namedByCodeLeftBehind = new HashSet<>();
     private final Map<Snippet, Set<String>> namedByDeclarations = new LinkedHashMap<>();
     private final Map<Integer, Snippet> hiddenSnippets = new LinkedHashMap<>();
     private final Map<String, Object> hiddenClasses = new LinkedHashMap<>();
@@ -94,6 +96,18 @@ final class SnippetLedger {
         });
     }
 
+    /** Takes note of a piece that has run: a lambda or an object that it made may name variables later. */
+    void hasRun(String source) {
+        if (LEAVES_CODE.matcher(source).find()) {
+            namedByCodeLeftBehind.addAll(identifiers(source));
+        }
+    }
+
+    /** Tells whether code that earlier pieces left behind may still name a variable, also after it is declared anew. */
+    boolean mayBeNamed(String variable) {
+        return namedByCodeLeftBehind.contains(variable);
+    }
+
     /** Returns the full name of the class that JShell has made of a snippet, if it has. */
     Optional<String> className(Snippet snippet) {
         try {
@@ -115,9 +129,6 @@ final class SnippetLedger {
         }
         Books open = books.get();
         List<VarSnippet> variables = shell.variables().toList();
-        if (variables.size() < NAMES_WORTH_HIDING) {
-            return false;
-        }
         Set<String> named = identifiers(source);
         if (DECLARING.stream().anyMatch(named::contains)) {
             return false;

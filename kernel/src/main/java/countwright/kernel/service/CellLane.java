@@ -30,6 +30,7 @@ final class CellLane {
     private final KernelSockets sockets;
     private final Outbox outbox;
     private final SafeAnswer execute;
+    private final Runnable beginTurn;
     private final ReentrantLock turn;
     private final Thread thread;
 
@@ -41,12 +42,14 @@ final class CellLane {
     /**
      * Makes a lane.
      *
+     * @param beginTurn called before a cell is said to be busy: an interrupt is meant for that cell from then on
      * @param turn held while a cell runs; fair, and shared by all lanes
      */
-    CellLane(KernelSockets sockets, Outbox outbox, SafeAnswer execute, ReentrantLock turn) {
+    CellLane(KernelSockets sockets, Outbox outbox, SafeAnswer execute, Runnable beginTurn, ReentrantLock turn) {
         this.sockets = sockets;
         this.outbox = outbox;
         this.execute = execute;
+        this.beginTurn = beginTurn;
         this.turn = turn;
         this.thread = new Thread(this::run, "countwright-cells");
         thread.setDaemon(true);
@@ -128,6 +131,7 @@ final class CellLane {
     }
 
     private void runCell(Request request) throws InterruptedException {
+        beginTurn.run();
         outbox.cellBusy(request.header());
         List<Request> aborted = List.of();
         try {
@@ -139,8 +143,9 @@ final class CellLane {
             outbox.reply(request, reply);
         } finally {
             outbox.cellIdle(request.header());
+            // Whatever went wrong: those that sent them wait.
+            aborted.forEach(this::abort);
         }
-        aborted.forEach(this::abort);
     }
 
     private static boolean stopsOnError(Request request) {
@@ -168,8 +173,12 @@ final class CellLane {
     }
 
     private void abort(Request request) {
-        outbox.busy(request.header());
-        outbox.reply(request, Replies.aborted());
-        outbox.idle(request.header());
+        try {
+            outbox.busy(request.header());
+            outbox.reply(request, Replies.aborted());
+            outbox.idle(request.header());
+        } catch (RuntimeException | Error e) {
+            LOG.log(Level.ERROR, "An aborted cell could not be answered; the next one will be.", e);
+        }
     }
 }

@@ -103,7 +103,7 @@ final class CommDesk {
             content.put("target_name", message.target());
         }
         content.set("data", JsonValues.toJson(message.data()));
-        outbox.publish(type(message.kind()), cause, content);
+        outbox.publishWhenRoom(type(message.kind()), cause, content);
     }
 
     /** Takes nothing more. */
@@ -140,7 +140,8 @@ final class CommDesk {
         Optional<CommMessage> message = Optional.empty();
         try {
             message = reading.apply(request.content());
-        } catch (IllegalArgumentException e) {
+        } catch (RuntimeException e) {
+            // Of any kind: the idle below must come.
             LOG.log(Level.WARNING, "Ignored a message to a comm: " + e.getMessage());
         }
         if (message.isEmpty()) {
@@ -150,6 +151,9 @@ final class CommDesk {
         CommMessage taken = message.get();
         if (underWay.incrementAndGet() > MOST_UNDER_WAY) {
             LOG.log(Level.WARNING, "Dropped a message to a comm: its handlers do not keep up.");
+            if (taken.kind() == CommMessage.Kind.OPEN) {
+                publish(request.header(), new CommMessage(CommMessage.Kind.CLOSE, taken.commId(), "", Map.of()));
+            }
             handled(request);
             return;
         }

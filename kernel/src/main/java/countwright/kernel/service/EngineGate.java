@@ -41,10 +41,13 @@ final class EngineGate {
     }
 
     /** Begins the turn of a cell: from now on an interrupt is meant for it. Called by the thread that runs cells. */
-    Turn beginTurn() {
-        Turn begun = new Turn(engine.copy());
-        turn = begun;
-        return begun;
+    void beginTurn() {
+        turn = new Turn(engine.copy());
+    }
+
+    /** Returns the turn of the cell that runs. */
+    Turn turn() {
+        return turn;
     }
 
     /** Asks the running cell to stop, also one that is about to run or waits for the engine. */

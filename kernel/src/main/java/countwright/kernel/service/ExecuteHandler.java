@@ -46,7 +46,7 @@ final class ExecuteHandler implements Handler {
         boolean silent = content.flag("silent", false);
         boolean counts = !silent && content.flag("store_history", true) && !code.isBlank();
         Map<String, String> expressions = content.texts("user_expressions");
-        EngineGate.Turn turn = engine.beginTurn();
+        EngineGate.Turn turn = engine.turn();
         CellBroadcast broadcast = new CellBroadcast(request, outbox, inputDesk, comms, turn::isInterrupted);
         if (counts) {
             executionCount++;

@@ -42,7 +42,10 @@ final class History {
     // Touched on that thread only.
     private final Deque<HistoryEntry> current = new ArrayDeque<>();
     private OptionalInt session = OptionalInt.empty();
+    private static final long RETRY_NANOS = 30_000_000_000L;
+
     private boolean isWritable = true;
+    private long failedAt;
     private boolean isReadable = true;
 
     /** Makes a history that is kept in a file, or else in memory. */
@@ -124,7 +127,7 @@ final class History {
             current.removeFirst();
         }
         current.addLast(entry);
-        if (file.isPresent() && isWritable && input.length() <= LONGEST_INPUT) {
+        if (file.isPresent() && isTimeToWrite() && input.length() <= LONGEST_INPUT) {
             try {
                 file.get().append(entry);
             } catch (IOException | RuntimeException e) {
@@ -151,12 +154,20 @@ final class History {
         return past().stream().mapToInt(HistoryEntry::session).max().orElse(0) + 1;
     }
 
+    private boolean isTimeToWrite() {
+        return isWritable || System.nanoTime() - failedAt > RETRY_NANOS;
+    }
+
+    /** A full disk or a kernel that holds the lock may pass; the next try comes after a while. */
     private void giveUpWriting(Exception cause) {
-        isWritable = false;
-        LOG.log(
-                Level.WARNING,
-                "The history cannot be written, so this session's cells will not be found by later ones: " + cause
-                        + ". Set " + HistoryPlace.VARIABLE + " to a file that can be written, or to off.");
+        failedAt = System.nanoTime();
+        if (isWritable) {
+            isWritable = false;
+            LOG.log(
+                    Level.WARNING,
+                    "The history cannot be written now, so these cells will not be found by later sessions: " + cause
+                            + ". Set " + HistoryPlace.VARIABLE + " to a file that can be written, or to off.");
+        }
     }
 
     private static String cut(String output) {

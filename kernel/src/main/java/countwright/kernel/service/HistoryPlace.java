@@ -17,7 +17,12 @@ public final class HistoryPlace {
 
     /** Returns the file of this user on this machine; empty if the user wants none. */
     public static Optional<Path> ofThisUser() {
-        return of(System.getenv(), System.getProperty("os.name", ""), Path.of(System.getProperty("user.home", "")));
+        String system = System.getProperty("os.name", "");
+        // Java asks the system's list of users for the home folder, where all else on the machine takes it from HOME.
+        Optional<Path> home = system.toLowerCase(Locale.ROOT).startsWith("windows")
+                ? Optional.empty()
+                : folder(System.getenv(), "HOME");
+        return of(System.getenv(), system, home.orElseGet(() -> Path.of(System.getProperty("user.home", ""))));
     }
 
     /** The data folder is where each kind of system expects it; on Linux where the XDG base directories say. */

@@ -95,10 +95,17 @@ final class InputDesk {
                 .put("prompt", first.input().prompt())
                 .put("password", first.input().echo() == Stage.Echo.HIDDEN);
         Request cell = first.cell();
-        sent = Optional.of(outbox.ask(
-                cell.route(),
-                cell.header(),
-                content,
-                () -> cancel("The front end does not listen for questions on stdin, so this one cannot be asked.")));
+        sent = Optional.of(outbox.ask(cell.route(), cell.header(), content, () -> undeliverable(first)));
+    }
+
+    /** Told late, the question may be over, and the next cell's must not suffer for it. */
+    private void undeliverable(Question question) {
+        boolean isOpen;
+        synchronized (this) {
+            isOpen = question.equals(open.peekFirst());
+        }
+        if (isOpen) {
+            cancel("The front end does not listen for questions on stdin, so this one cannot be asked.");
+        }
     }
 }

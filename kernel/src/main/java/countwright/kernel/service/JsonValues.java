@@ -41,7 +41,7 @@ final class JsonValues {
         if (node.isIntegralNumber() && node.canConvertToLong()) {
             return node.longValue();
         }
-        return node.isNumber() ? (Object) node.asDouble() : Optional.empty();
+        return node.isNumber() ? (Object) node.numberValue().doubleValue() : Optional.empty();
     }
 
     static ObjectNode toJson(Map<?, ?> values) {

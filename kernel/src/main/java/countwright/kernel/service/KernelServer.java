@@ -67,7 +67,7 @@ public final class KernelServer implements AutoCloseable {
         this.comms = new CommDesk(engine, outbox);
         SafeAnswer execute = new SafeAnswer(new ExecuteHandler(engine, outbox, inputDesk, comms, history));
         ReentrantLock turn = new ReentrantLock(true);
-        this.shells = new Subshells(() -> new Shell(new CellLane(sockets, outbox, execute, turn)));
+        this.shells = new Subshells(() -> new Shell(new CellLane(sockets, outbox, execute, engine::beginTurn, turn)));
         QuestionHandlers about = new QuestionHandlers(engine);
         Dispatcher dispatcher = new Dispatcher(outbox, inputDesk, shells)
                 .atOnce("kernel_info_request", new KernelInfo())

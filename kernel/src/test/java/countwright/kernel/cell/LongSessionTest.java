@@ -148,6 +148,27 @@ class LongSessionTest {
     }
 
     @Test
+    void variableThatALambdaNamesKeepsItsValueForIt() {
+        session.run("var seen = List.of(1, 2, 3);\njava.util.function.Supplier<Integer> size = () -> seen.size();");
+        session.run("var seen = List.of(9);");
+        assertThat(session.resultOf("size.get()")).isIn("3", "1");
+        session.run("var calls = new ArrayList<java.util.function.Supplier<Integer>>();");
+        session.run("int[] counted = {1};");
+        session.run("calls.add(() -> counted.length);");
+        session.run("String counted = \"other\";");
+        assertThat(session.resultOf("calls.get(0).get()")).isEqualTo("1");
+    }
+
+    @Test
+    void variableMadeFromAnotherKeepsItsValueWhenThatIsDeclaredAnew() {
+        session.run("int base = 1;\nvar next = base + 1;");
+        session.run("int base = 5;");
+        assertThat(session.resultOf("next")).isEqualTo("2");
+        session.run("long base = 6;");
+        assertThat(session.resultOf("next + base")).isEqualTo("8");
+    }
+
+    @Test
     void valueOfABareExpressionIsReleased() {
         session.run("Object shown = new Object(); var look = new java.lang.ref.WeakReference<>(shown);");
         session.run("look.get()");

@@ -52,6 +52,9 @@ final class CommThread extends Thread {
             } catch (InterruptedException lateInterrupt) {
                 // It was meant for a handler that has ended meanwhile.
                 number = NONE;
+            } catch (OutOfMemoryError full) {
+                // Without an answer the message would never be over; a worker that is gone is replaced.
+                Runtime.getRuntime().halt(WorkerMain.OUT_OF_MEMORY);
             }
         }
     }
