@@ -13,7 +13,9 @@ import java.util.Optional;
 import java.util.concurrent.CompletableFuture;
 import java.util.concurrent.CompletionException;
 import java.util.concurrent.CopyOnWriteArrayList;
+import java.util.concurrent.TimeUnit;
 import java.util.concurrent.atomic.AtomicBoolean;
+import java.util.concurrent.atomic.AtomicInteger;
 import java.util.function.Function;
 
 /** Cells compiled by JShell in this process and run in a worker, which is replaced whenever it is lost. */
@@ -42,6 +44,10 @@ public final class JShellEngine implements CellEngine {
     /** Completed by an interrupt, so that a cell need not wait for a session that is still starting. */
     private volatile CompletableFuture<Void> stop = new CompletableFuture<>();
 
+    private static final int MOST_STARTS_IN_A_ROW = 4;
+    private static final long START_AGAIN_MILLIS = 200;
+
+    private final AtomicInteger startsFailed = new AtomicInteger();
     private final List<Runnable> lossActions = new CopyOnWriteArrayList<>();
 
     private JShellEngine(WorkerSettings settings) {
@@ -258,7 +264,25 @@ public final class JShellEngine implements CellEngine {
 
     /** Only called once it is the session that the next cell runs in: it may be lost already. */
     private void watch(CompletableFuture<JavaSession> taken) {
-        var unused = taken.thenAccept(started -> started.onLoss(() -> replaceIdle(taken, started)));
+        var unused = taken.whenComplete((started, failure) -> {
+            if (failure == null) {
+                startsFailed.set(0);
+                started.onLoss(() -> replaceIdle(taken, started));
+            } else if (startsFailed.incrementAndGet() <= MOST_STARTS_IN_A_ROW) {
+                // Killed at birth, as when memory is short for a moment. What fails again and again waits for the next
+                // cell.
+                CompletableFuture.delayedExecutor(START_AGAIN_MILLIS, TimeUnit.MILLISECONDS)
+                        .execute(() -> replaceUnstarted(taken));
+            }
+        });
+    }
+
+    private void replaceUnstarted(CompletableFuture<JavaSession> failed) {
+        synchronized (turns) {
+            if (!running) {
+                replace(failed, Optional.empty());
+            }
+        }
     }
 
     /** A worker lost while a cell runs is told of by that cell and replaced when it ends; one lost in between, at once. */

@@ -99,14 +99,18 @@ final class SessionReserve implements AutoCloseable {
 
     private JavaSession startLiving() {
         for (int attempt = 1; true; attempt++) {
-            JavaSession started = JavaSession.start(settings);
-            Optional<String> stillborn = started.loss();
-            if (stillborn.isEmpty()) {
-                return started;
-            }
-            started.close(Duration.ZERO);
-            if (attempt == ATTEMPTS) {
+            try {
+                JavaSession started = JavaSession.start(settings);
+                Optional<String> stillborn = started.loss();
+                if (stillborn.isEmpty()) {
+                    return started;
+                }
+                started.close(Duration.ZERO);
                 throw new IllegalStateException(stillborn.get());
+            } catch (IllegalStateException e) {
+                if (attempt == ATTEMPTS) {
+                    throw e;
+                }
             }
         }
     }
