@@ -17,6 +17,9 @@ final class FrameDecoder {
 
     private final WireLimits limits;
     private final Receiver receiver;
+    /** A message of so many times too many frames is not waited for to end. */
+    private static final int MOST_TIMES = 1_000;
+
     private final byte[] header = new byte[9];
     private int headerLength;
     private boolean inBody;
@@ -94,6 +97,9 @@ final class FrameDecoder {
         inBody = true;
         if (!isCommand()) {
             frameCount++;
+            if (frameCount > MOST_TIMES * limits.frames()) {
+                throw new WireViolation("it sent a message of more frames than can be skipped");
+            }
             messageBytes += length;
             if (isSkipping()) {
                 frames = new ArrayList<>();

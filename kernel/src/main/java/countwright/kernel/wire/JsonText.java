@@ -50,17 +50,6 @@ public final class JsonText {
         }
     }
 
-    /**
-     * Reads one value and nothing behind it, in the encoding that the bytes show, mostly UTF-8.
-     *
-     * @throws JacksonException if that is not what the bytes are
-     */
-    JsonNode read(byte[] bytes) {
-        try (JsonParser parser = factory.createParser(ObjectReadContext.empty(), bytes)) {
-            return whole(parser);
-        }
-    }
-
     /** Writes a value, in one line. */
     public String write(JsonNode node) {
         StringWriter text = new StringWriter();

@@ -95,7 +95,8 @@ final class MessageCodec {
     private ObjectNode object(byte[] frame, String part) throws MalformedMessageException {
         JsonNode node;
         try {
-            node = json.read(frame);
+            // Read leniently: a lone surrogate from a front end should not cost it the answer.
+            node = json.read(new String(frame, StandardCharsets.UTF_8));
         } catch (JacksonException e) {
             // The parser's own text quotes the input, so only the kind of trouble is told.
             throw new MalformedMessageException(

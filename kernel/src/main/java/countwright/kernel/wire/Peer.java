@@ -31,6 +31,9 @@ final class Peer {
     /** Less is not reading: a peer that takes a byte now and then would hold up all output. */
     private static final int PROGRESS_BYTES = 512 << 10;
 
+    /** What a queued piece costs in memory besides its bytes: many short ones must not come cheap. */
+    private static final int PIECE_OVERHEAD = 100;
+
     private final SocketChannel channel;
     private final SelectionKey key;
     private final String socketType;
@@ -47,6 +50,8 @@ final class Peer {
     private byte[] identity = {};
     private boolean joined;
     private boolean authentic;
+    private boolean awaitingRoom;
+    private boolean deaf;
     private boolean closed;
 
     Peer(SocketChannel channel, SelectionKey key, String socketType, WireLimits limits, Host host) {
@@ -106,7 +111,25 @@ final class Peer {
         return subscriptions;
     }
 
-    /** Returns the bytes that are still to be written to it. */
+    /** Returns whether the system takes no more for it until the selector says so. */
+    boolean isAwaitingRoom() {
+        return awaitingRoom;
+    }
+
+    /** Returns whether it takes nothing any more, though requests it has sent may still be unread. */
+    boolean isDeaf() {
+        return deaf;
+    }
+
+    /** Drops what is queued, now and in future; reading goes on. */
+    void setDeaf() {
+        deaf = true;
+        queue.clear();
+        queuedBytes = 0;
+        updateInterest();
+    }
+
+    /** Returns the memory of what is still to be written to it, in bytes; 0 if that is nothing. */
     long queuedBytes() {
         return queuedBytes;
     }
@@ -175,6 +198,9 @@ final class Peer {
 
     /** Says whether it wants messages of a topic. */
     boolean wants(byte[] topic) {
+        if (deaf) {
+            return false;
+        }
         for (byte[] prefix : subscriptions) {
             if (prefix.length <= topic.length && Arrays.equals(prefix, 0, prefix.length, topic, 0, prefix.length)) {
                 return true;
@@ -185,12 +211,15 @@ final class Peer {
 
     /** Queues bytes; they are kept, not copied. Call {@link #flush} soon. */
     void queue(List<byte[]> pieces) {
+        if (deaf) {
+            return;
+        }
         if (queuedBytes == 0) {
             lastProgress = System.nanoTime();
         }
         for (byte[] piece : pieces) {
             queue.add(ByteBuffer.wrap(piece));
-            queuedBytes += piece.length;
+            queuedBytes += piece.length + PIECE_OVERHEAD;
         }
     }
 
@@ -216,26 +245,32 @@ final class Peer {
                 break;
             }
         }
+        updateInterest();
+    }
+
+    private void updateInterest() {
+        awaitingRoom = queuedBytes > 0;
         if (key.isValid()) {
-            key.interestOps(queuedBytes > 0 ? SelectionKey.OP_READ | SelectionKey.OP_WRITE : SelectionKey.OP_READ);
+            key.interestOps(awaitingRoom ? SelectionKey.OP_READ | SelectionKey.OP_WRITE : SelectionKey.OP_READ);
         }
     }
 
     private void forget(int written) {
         queuedBytes -= written;
         takenSince += written;
-        if (takenSince >= PROGRESS_BYTES || queuedBytes == 0) {
-            takenSince = 0;
-            lastProgress = System.nanoTime();
-        }
         int left = written;
         for (ByteBuffer piece = queue.peek(); piece != null && left >= piece.remaining(); piece = queue.peek()) {
             left -= piece.remaining();
+            queuedBytes -= PIECE_OVERHEAD;
             queue.remove();
         }
         if (left > 0) {
             ByteBuffer piece = queue.element();
             piece.position(piece.position() + left);
+        }
+        if (takenSince >= PROGRESS_BYTES || queuedBytes == 0) {
+            takenSince = 0;
+            lastProgress = System.nanoTime();
         }
     }
 

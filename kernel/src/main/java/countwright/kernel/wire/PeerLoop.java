@@ -11,7 +11,9 @@ import java.nio.channels.Selector;
 import java.nio.channels.ServerSocketChannel;
 import java.nio.channels.SocketChannel;
 import java.util.ArrayList;
+import java.util.Comparator;
 import java.util.List;
+import java.util.Optional;
 import java.util.Queue;
 import java.util.Set;
 import java.util.concurrent.ConcurrentLinkedQueue;
@@ -116,11 +118,12 @@ final class PeerLoop implements Peer.Host {
         if (peer.isClosed()) {
             return;
         }
-        peer.queue(pieces);
+        // Before the message is queued: one that is large by itself puts nobody behind.
         if (peer.queuedBytes() > FAR_BEHIND_BYTES) {
             disconnect(peer, "it is " + (FAR_BEHIND_BYTES >> 20) + " MB behind in reading");
         } else {
-            flush(peer);
+            peer.queue(pieces);
+            flushIfRoom(peer);
         }
     }
 
@@ -153,7 +156,7 @@ final class PeerLoop implements Peer.Host {
                     upkeepDue = System.nanoTime() + TimeUnit.MILLISECONDS.toNanos(UPKEEP_MILLIS);
                 }
             } catch (IOException | RuntimeException | Error e) {
-                complaints.tell("The " + name + " socket met an error and goes on: " + e);
+                complain("The ", " socket met an error and goes on: ", e);
             }
         }
         try {
@@ -172,8 +175,9 @@ final class PeerLoop implements Peer.Host {
             runAll(whenAllIsRead);
         } else {
             serveSelected();
-            selector.wakeup();
         }
+        // The look just now may have used up the wakeup of a task that has come meanwhile.
+        selector.wakeup();
     }
 
     private void runAll(Queue<Runnable> queue) {
@@ -201,7 +205,7 @@ final class PeerLoop implements Peer.Host {
     private void serve(Peer peer, SelectionKey key) {
         try {
             if (key.isValid() && key.isWritable()) {
-                peer.flush(writeBuffer);
+                flush(peer);
             }
             if (key.isValid() && key.isReadable()) {
                 if (!peer.read(readBuffer)) {
@@ -210,7 +214,7 @@ final class PeerLoop implements Peer.Host {
                 }
                 peer.feed(readBuffer);
                 checkHeld(peer);
-                flush(peer);
+                flushIfRoom(peer);
             }
         } catch (WireViolation e) {
             disconnect(peer, String.valueOf(e.getMessage()));
@@ -219,8 +223,8 @@ final class PeerLoop implements Peer.Host {
             remove(peer);
         } catch (RuntimeException | Error e) {
             // Memory running short included: the socket must outlive whatever one peer does.
-            LOG.log(Level.ERROR, "A message on " + name + " could not be taken; its sender is disconnected.", e);
             remove(peer);
+            complain("A message on ", " could not be taken; its sender is disconnected: ", e);
         }
     }
 
@@ -238,6 +242,9 @@ final class PeerLoop implements Peer.Host {
 
     private void welcome(SocketChannel channel) throws IOException {
         if (peers.size() >= MOST_PEERS) {
+            idlest().ifPresent(peer -> disconnect(peer, "others wait for its place"));
+        }
+        if (peers.size() >= MOST_PEERS) {
             channel.close();
             complaints.tell("Refused a connection on " + name + ": " + MOST_PEERS + " are open.");
             return;
@@ -246,6 +253,10 @@ final class PeerLoop implements Peer.Host {
             channel.configureBlocking(false);
             if (channel.supportedOptions().contains(StandardSocketOptions.TCP_NODELAY)) {
                 channel.setOption(StandardSocketOptions.TCP_NODELAY, true);
+            }
+            if (channel.supportedOptions().contains(StandardSocketOptions.SO_KEEPALIVE)) {
+                // A peer whose machine is gone must not keep its place for ever.
+                channel.setOption(StandardSocketOptions.SO_KEEPALIVE, true);
             }
             SelectionKey key = channel.register(selector, SelectionKey.OP_READ);
             Peer peer = new Peer(channel, key, traffic.socketType(), limits, this);
@@ -259,6 +270,13 @@ final class PeerLoop implements Peer.Host {
         }
     }
 
+    /** Writes, but not to a peer that the selector watches: each try would gather the backlog in vain. */
+    private void flushIfRoom(Peer peer) {
+        if (!peer.isAwaitingRoom()) {
+            flush(peer);
+        }
+    }
+
     private void flush(Peer peer) {
         if (peer.isClosed()) {
             return;
@@ -266,8 +284,9 @@ final class PeerLoop implements Peer.Host {
         try {
             peer.flush(writeBuffer);
         } catch (IOException e) {
-            LOG.log(Level.DEBUG, () -> "A peer on " + name + " is gone: " + e);
-            remove(peer);
+            // It may have closed right after a request, which is still to be read.
+            LOG.log(Level.DEBUG, () -> "A peer on " + name + " takes nothing any more: " + e);
+            peer.setDeaf();
         }
     }
 
@@ -297,6 +316,24 @@ final class PeerLoop implements Peer.Host {
             } else if (peer.queuedBytes() > BEHIND_BYTES && now - peer.lastProgress() > STALL_NANOS) {
                 disconnect(peer, "it has stopped reading");
             }
+        }
+    }
+
+    /** Returns the peer with the least claim to its place: it has neither shown the key nor subscribed, and is the oldest. */
+    private Optional<Peer> idlest() {
+        long now = System.nanoTime();
+        return peers.stream()
+                .filter(peer -> !peer.isAuthentic() && peer.subscriptions().isEmpty())
+                .filter(peer -> now - peer.since() > HANDSHAKE_NANOS)
+                .max(Comparator.comparingLong(peer -> now - peer.since()));
+    }
+
+    /** Memory may be what is short: then not even this may end the thread. */
+    private void complain(String before, String after, Throwable cause) {
+        try {
+            complaints.tell(before + name + after + cause);
+        } catch (RuntimeException | Error unsaid) {
+            return;
         }
     }
 

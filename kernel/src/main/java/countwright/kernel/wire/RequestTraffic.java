@@ -1,6 +1,7 @@
 package countwright.kernel.wire;
 
 import java.nio.ByteBuffer;
+import java.security.SecureRandom;
 import java.util.ArrayDeque;
 import java.util.ArrayList;
 import java.util.Deque;
@@ -21,7 +22,9 @@ final class RequestTraffic implements Traffic {
 
     private final Predicate<List<byte[]>> receiver;
     private final Map<ByteBuffer, Deque<Peer>> peers = new HashMap<>();
-    private int unnamed;
+
+    /** Each socket begins somewhere else, so that an answer on one is not taken for the same front end's on another. */
+    private int unnamed = new SecureRandom().nextInt();
 
     /** Passes on frames with the identity in front; the receiver says whether they were a message that bears the key. */
     RequestTraffic(Predicate<List<byte[]>> receiver) {
@@ -83,7 +86,9 @@ final class RequestTraffic implements Traffic {
 
     /** Returns the peer that a route leads to. */
     Optional<Peer> find(byte[] identity) {
-        return Optional.ofNullable(peers.get(ByteBuffer.wrap(identity))).map(Deque::peekFirst);
+        return Optional.ofNullable(peers.get(ByteBuffer.wrap(identity)))
+                .flatMap(namesakes ->
+                        namesakes.stream().filter(peer -> !peer.isDeaf()).findFirst());
     }
 
     private static ByteBuffer key(Peer peer) {
