@@ -204,7 +204,8 @@ class WireSafetyTest {
         // See the same setting of ClientSockets.
         socket.setHandshakeIvl(400);
         socket.setLinger(0);
-        socket.setReceiveTimeOut(10_000);
+        // Longer than the stall that the setting above mostly cures.
+        socket.setReceiveTimeOut(45_000);
         socket.setIdentity(bytes(identity));
         socket.connect(connection.address(channel));
         return socket;
@@ -229,8 +230,8 @@ class WireSafetyTest {
     }
 
     private Envelope next() throws InterruptedException {
-        Envelope envelope = atKernel.poll(10, TimeUnit.SECONDS);
-        assertThat(envelope).as("a message within 10 s").isNotNull();
+        Envelope envelope = atKernel.poll(45, TimeUnit.SECONDS);
+        assertThat(envelope).as("a message within 45 s").isNotNull();
         return envelope;
     }
 
