@@ -22,7 +22,7 @@ import tools.jackson.databind.node.JsonNodeFactory;
 import tools.jackson.databind.node.ObjectNode;
 
 /** What someone who reaches the ports but has no key can and cannot do. */
-@Timeout(30)
+@Timeout(60)
 @SuppressWarnings("NullAway.Init")
 class WireSafetyTest {
 
