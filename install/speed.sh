@@ -18,7 +18,4 @@ python=${COUNTWRIGHT_PYTHON:-python3}
 "$python" -c 'import jupyter_client, ipykernel' 2>/dev/null ||
     fail "$python has no jupyter_client and ipykernel, which measure and compare." \
         "Get them with 'python3 -m venv DIR && DIR/bin/pip install jupyter_client ipykernel', and set COUNTWRIGHT_PYTHON=DIR/bin/python."
-# Ten thousand measured cells are nothing their user has typed.
-COUNTWRIGHT_HISTORY=off
-export COUNTWRIGHT_HISTORY
 exec "$python" "$install/src/speed/speed.py" "$home" --java "$java" "$@"
